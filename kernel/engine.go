@@ -1,0 +1,78 @@
+// Package kernel runs cells for front ends: it reads requests, asks an [Engine] and publishes what cells show.
+package kernel
+
+import "context"
+
+// Kind says what an [Output] is.
+type Kind int
+
+// The kinds of output.
+const (
+	Stream  Kind = iota // text on stdout or stderr
+	Display             // something shown; with ID it can be updated later
+	Update              // a new content for the display of that ID
+	Result              // the value of an expression statement
+	Clear               // drop the cell's outputs so far (Wait: when the next one arrives)
+)
+
+// Output is one thing that a cell shows. Data maps MIME types to contents (text as string, JSON as any).
+type Output struct {
+	Kind     Kind
+	Name     string // Stream: "stdout" or "stderr"
+	Text     string // Stream: the text
+	Data     map[string]any
+	Metadata map[string]any
+	ID       string // Display, Update: the display's id; empty: none
+	Wait     bool   // Clear
+}
+
+// Sink takes outputs in order. It is safe for calls from several goroutines.
+type Sink func(Output)
+
+// Cell is one piece of source to run.
+type Cell struct {
+	ID     string // the notebook's id of the cell; empty: none
+	Number int    // execution count, from 1; names the cell in messages: "cell 4, line 2"
+	Source string
+}
+
+// Fault is what stopped a cell.
+type Fault struct {
+	Name      string   // stable name of the kind of failure
+	Text      string   // one line: "cell 4, line 2: what; way out"
+	Traceback []string // Text, the source line with a mark, the user's own functions
+}
+
+// Outcome is how a cell ended.
+type Outcome struct {
+	Fault       *Fault // nil: it ran to its end
+	Interrupted bool
+}
+
+// Completion is what fits at a cursor. Start and End count Unicode code points.
+type Completion struct {
+	Matches    []string
+	Types      []string // one per match: "function", "unit", "variable", ...
+	Signatures []string
+	Start, End int
+}
+
+// Language describes the cell language to front ends.
+type Language struct {
+	Name, Version, MIMEType, Extension, Lexer, Mirror, Banner string
+}
+
+// Engine runs and explains cells. Run is called by one goroutine at a time; the others may be called while a cell
+// runs.
+type Engine interface {
+	// Run runs a cell. Cancelling ctx interrupts it. Outputs go to out before Run returns.
+	Run(ctx context.Context, c Cell, out Sink) Outcome
+	// Complete lists what fits at the cursor, counted in code points.
+	Complete(source string, cursor int) Completion
+	// Inspect explains the name at the cursor as a MIME bundle; ok tells whether anything is known.
+	Inspect(source string, cursor int) (data map[string]any, ok bool)
+	// IsComplete tells "complete", "incomplete" (with the indent of the next line), "invalid" or "unknown".
+	IsComplete(source string) (status, indent string)
+	// Language describes the language.
+	Language() Language
+}
