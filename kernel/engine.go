@@ -1,7 +1,10 @@
 // Package kernel runs cells for front ends: it reads requests, asks an [Engine] and publishes what cells show.
 package kernel
 
-import "context"
+import (
+	"context"
+	"errors"
+)
 
 // Kind says what an [Output] is.
 type Kind int
@@ -26,7 +29,8 @@ type Output struct {
 	Wait     bool   // Clear
 }
 
-// Sink takes outputs in order. It is safe for calls from several goroutines.
+// Sink takes outputs in order. It is safe for calls from several goroutines. It may be called after Run has returned:
+// such late outputs still go to the cell that Run was given. A call may wait while front ends catch up.
 type Sink func(Output)
 
 // Cell is one piece of source to run.
@@ -34,7 +38,16 @@ type Cell struct {
 	ID     string // the notebook's id of the cell; empty: none
 	Number int    // execution count, from 1; names the cell in messages: "cell 4, line 2"
 	Source string
+
+	// Transient marks source that a front end sends beside the notebook: it takes no number and no history.
+	Transient bool
+	// Ask has the user type a line and waits for it; hidden keeps it off the screen. It fails with [ErrNoInput]
+	// where the front end offers none and with the context's error when ctx ends. Nil: no input.
+	Ask func(ctx context.Context, prompt string, hidden bool) (string, error)
 }
+
+// ErrNoInput tells that the front end offers no input for the running cell.
+var ErrNoInput = errors.New("this front end takes no input here; set the value in the cell")
 
 // Fault is what stopped a cell.
 type Fault struct {
@@ -75,4 +88,17 @@ type Engine interface {
 	IsComplete(source string) (status, indent string)
 	// Language describes the language.
 	Language() Language
+}
+
+// Evaluator is an [Engine] that also evaluates single expressions, which front ends send along with a cell. An engine
+// without it gets them as transient cells.
+type Evaluator interface {
+	// Evaluate gives the value of an expression as a MIME bundle, or what stopped it.
+	Evaluate(ctx context.Context, expression string) (data map[string]any, fault *Fault)
+}
+
+// Closer is an [Engine] that wants to know about the end of the kernel.
+type Closer interface {
+	// Close is called once, after the last cell has ended or was left behind.
+	Close() error
 }
