@@ -1,6 +1,9 @@
 package wire
 
-import "sync"
+import (
+	"encoding/hex"
+	"sync"
+)
 
 // guardSize is how many signatures are remembered.
 const guardSize = 1 << 16
@@ -19,10 +22,12 @@ func newGuard(size int) *guard {
 	return &guard{seen: make(map[[16]byte]struct{}), size: size}
 }
 
-// fresh records a signature and tells whether it is new.
+// fresh records a signature in hexadecimal and tells whether it is new.
 func (g *guard) fresh(signature []byte) bool {
 	var k [16]byte
-	copy(k[:], signature)
+	if _, err := hex.Decode(k[:], signature[:min(len(signature), 2*len(k))]); err != nil {
+		return false
+	}
 	g.mu.Lock()
 	defer g.mu.Unlock()
 	if _, old := g.seen[k]; old {

@@ -1,7 +1,6 @@
 package wire
 
 import (
-	"bytes"
 	"crypto/rand"
 	"encoding/hex"
 	"encoding/json"
@@ -109,7 +108,7 @@ func (s *Session) Decode(frames [][]byte) (*Message, error) {
 	if err := m.check(); err != nil {
 		return nil, err
 	}
-	if !s.signer.open && !s.guard.fresh(bytes.ToLower(signature)) {
+	if !s.signer.open && !s.guard.fresh(signature) {
 		return nil, ErrReplay
 	}
 	return m, nil
