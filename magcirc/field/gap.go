@@ -70,7 +70,7 @@ const defaultSteps = 32
 //
 //	F = flux / (mu0 w/g),  flux per metre and unit difference of potential
 //
-// Inputs: the gap p, lengths in m. Valid: any ratio of the lengths from 1/1000 to 1000; the pole's side up to Wall
+// Inputs: the gap p, lengths in m. Valid: any ratio of the lengths from 1/100000 to 100000; the pole's side up to Wall
 // counts as part of the pole. The result is extrapolated from two grids by the second order of the method.
 // Errors: [magcirc.BadValue] for a length that is not positive and finite, or a ratio out of range;
 // [magcirc.NoConvergence] if the equations do not meet their tolerance.
@@ -121,7 +121,7 @@ type named struct {
 }
 
 // maxRatio is the largest ratio of two lengths of one gap that the grid is made for.
-const maxRatio = 1000
+const maxRatio = 100000
 
 func check(steps int, b Boundary, lengths ...named) error {
 	if steps != 0 && (steps < 8 || steps > 256 || steps%2 != 0) {
