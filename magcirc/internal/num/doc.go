@@ -1,0 +1,8 @@
+// Package num holds the small numerical tools that the packages above share: pure mathematics on float64.
+//
+//	Langevin      coth z - 1/z with its derivative and its integral, accurate for every z
+//	Increasing    a strictly increasing piecewise cubic through points: value, slope, inverse, exact integral
+//	Root          a bracketed Newton iteration for a monotone function
+//
+// A wrong call (unsorted points, no bracket) is a fault of the caller and panics with a text that begins "num: ".
+package num
