@@ -1,0 +1,107 @@
+package chart_test
+
+import (
+	"encoding/xml"
+	"errors"
+	"io"
+	"math"
+	"os"
+	"path/filepath"
+	"strings"
+	"testing"
+
+	"ampturn/dsl/chart"
+)
+
+// samples are charts as notebooks draw them: curves of invented cores.
+func samples() map[string]interface{ SVG() string } {
+	curve := func(top, knee float64) chart.Series {
+		s := chart.Series{}
+		for i := 0; i <= 80; i++ {
+			x := 16 * float64(i) / 80
+			s.X = append(s.X, x)
+			s.Y = append(s.Y, top/(1+math.Pow(x/knee, 6)))
+		}
+		return s
+	}
+	cold, warm, hot := curve(9.9e-6, 17), curve(9.8e-6, 15), curve(9.75e-6, 14.2)
+	cold.Name, warm.Name, hot.Name = "-40 degC", "25 degC", "110 degC"
+	wave := chart.Series{Name: "current"}
+	for i := 0; i <= 200; i++ {
+		x := float64(i) / 200 * 20e-6
+		wave.X = append(wave.X, x)
+		wave.Y = append(wave.Y, 8+3*math.Abs(math.Mod(x/5e-6, 2)-1))
+	}
+	return map[string]interface{ SVG() string }{
+		"bias": &chart.Chart{Title: "Inductance over current, limit at the peak current", X: chart.Axis{Label: "current", Unit: "A"}, Y: chart.Axis{Label: "inductance", Unit: "H"},
+			Series: []chart.Series{cold, warm, hot}, Bands: []chart.Band{{Low: math.Inf(-1), High: 8e-6, Text: "at least 8 uH"}}, Zero: true},
+		"band": &chart.Chart{Title: "Within", X: chart.Axis{Label: "current", Unit: "A"}, Y: chart.Axis{Label: "inductance", Unit: "H"},
+			Series: []chart.Series{warm}, Bands: []chart.Band{{Low: math.Inf(-1), High: 4e-6, Text: "at least 4 uH"}, {Low: 11e-6, High: math.Inf(1), Text: "at most 11 uH"}, {Low: 13, High: math.Inf(1), Text: "overload", OnX: true}}},
+		"wave": &chart.Chart{Title: "Winding current", X: chart.Axis{Label: "time", Unit: "s"}, Y: chart.Axis{Label: "current", Unit: "A"}, Series: []chart.Series{wave}, Wide: true},
+		"bars": &chart.Bars{Title: "Reluctance of one gap by five methods", Axis: chart.Axis{Label: "reluctance", Unit: "1/H"},
+			Names: []string{"no fringing", "add the gap", "logarithmic rule", "conformal map", "field solution"}, Values: []float64{5.77e6, 5.2e6, 4.7e6, 4.62e6, 4.6e6},
+			Bands: []chart.Band{{Low: math.Inf(-1), High: 4.4e6, Text: "at least 4.4e6"}}},
+	}
+}
+
+// TestPictures checks that each picture is well-formed, says what it shows, and is the same every time. With
+// AMPTURN_PICTURES naming a folder it leaves the pictures there to be looked at.
+func TestPictures(t *testing.T) {
+	for name, c := range samples() {
+		svg := c.SVG()
+		if again := c.SVG(); again != svg {
+			t.Errorf("%s: two drawings differ", name)
+		}
+		dec := xml.NewDecoder(strings.NewReader(svg))
+		for {
+			_, err := dec.Token()
+			if errors.Is(err, io.EOF) {
+				break
+			}
+			if err != nil {
+				t.Fatalf("%s: not well-formed: %v", name, err)
+			}
+		}
+		for _, want := range []string{"<title>", "<desc>", "viewBox", "#767676"} {
+			if !strings.Contains(svg, want) {
+				t.Errorf("%s: no %s", name, want)
+			}
+		}
+		if dir := os.Getenv("AMPTURN_PICTURES"); dir != "" {
+			if err := os.WriteFile(filepath.Join(dir, "chart-"+name+".svg"), []byte(svg), 0o644); err != nil {
+				t.Fatal(err)
+			}
+		}
+	}
+}
+
+// TestWords checks the text twin: extremes and the crossing of a limit, on a line whose crossing is known.
+func TestWords(t *testing.T) {
+	c := &chart.Chart{Title: "L", X: chart.Axis{Label: "current", Unit: "A"}, Y: chart.Axis{Label: "inductance", Unit: "H"},
+		Series: []chart.Series{{Name: "hot", X: []float64{0, 10, 20}, Y: []float64{10e-6, 9e-6, 4e-6}}},
+		Bands:  []chart.Band{{Low: math.Inf(-1), High: 8e-6, Text: "at least 8 uH"}}}
+	text := c.Text()
+	for _, want := range []string{"lowest 4 uH at 20 A", "highest 10 uH at 0 A", "at least 8 uH", "hot crosses it at 12 A"} {
+		if !strings.Contains(text, want) {
+			t.Errorf("%q is not in\n%s", want, text)
+		}
+	}
+}
+
+// TestRefusals: data that cannot be drawn are named, in the picture and in the words.
+func TestRefusals(t *testing.T) {
+	six := make([]chart.Series, 6)
+	for name, c := range map[string]chart.Chart{
+		"a chart needs at least one series":     {},
+		"6 series are too many for one picture": {Series: six},
+		"2 values over 1 positions":             {Series: []chart.Series{{Name: "s", X: []float64{1}, Y: []float64{1, 2}}}},
+		"no finite point to draw":               {Series: []chart.Series{{Name: "s", X: []float64{1}, Y: []float64{math.NaN()}}}},
+	} {
+		if err := c.Check(); err == nil || !strings.Contains(err.Error(), name) {
+			t.Errorf("%v, want %q", err, name)
+		}
+		if !strings.Contains(c.SVG(), "no picture: ") || !strings.Contains(c.Text(), name) {
+			t.Errorf("%q is not said in place of the picture", name)
+		}
+	}
+}
