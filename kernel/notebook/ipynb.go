@@ -89,11 +89,12 @@ func parseCell(n *node, where string) (*Cell, error) {
 		return nil, faultAt(n, "%s is no object", where)
 	}
 	d := decoder{object: object, at: n, where: where}
+	kind := object["cell_type"]
 	c := &Cell{Kind: Kind(d.text("cell_type", true))}
 	switch c.Kind {
 	case Code, Markdown, Raw:
 	default:
-		d.fail(object["cell_type"], "the cell_type of %s is %q; it can be code, markdown or raw", where, c.Kind)
+		d.fail(kind, "the cell_type of %s is %q; it can be code, markdown or raw", where, c.Kind)
 	}
 	c.Source = d.text("source", true)
 	c.Metadata = d.mapping("metadata", true)
@@ -120,6 +121,7 @@ func parseOutput(n *node, where string) (*Output, error) {
 		return nil, faultAt(n, "%s is no object", where)
 	}
 	d := decoder{object: object, at: n, where: where}
+	kind := object["output_type"]
 	o := &Output{Kind: OutputKind(d.text("output_type", true))}
 	switch o.Kind {
 	case Stream:
@@ -139,7 +141,7 @@ func parseOutput(n *node, where string) (*Output, error) {
 			o.Traceback = append(o.Traceback, text)
 		}
 	default:
-		d.fail(object["output_type"], "%s is of the unknown type %q", where, o.Kind)
+		d.fail(kind, "%s is of the unknown type %q", where, o.Kind)
 	}
 	o.Extra = d.rest()
 	return o, d.err

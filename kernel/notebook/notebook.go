@@ -181,9 +181,10 @@ func (nb *Notebook) nameCells() {
 		}
 		taken[c.ID] = true
 	}
+	equals := map[string]int{} // how many cells of that kind and source have been named
 	for _, c := range nb.Cells {
-		for n := 0; c.ID == ""; n++ {
-			sum := sha256.Sum256(fmt.Appendf(nil, "%s %d\n%s", c.Kind, n, c.Source))
+		for content := string(c.Kind) + "\n" + c.Source; c.ID == ""; equals[content]++ {
+			sum := sha256.Sum256(fmt.Appendf(nil, "%d %s", equals[content], content))
 			if id := hex.EncodeToString(sum[:4]); !taken[id] {
 				c.ID, taken[id] = id, true
 			}

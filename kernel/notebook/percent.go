@@ -132,7 +132,7 @@ func readMark(mark string) *Cell {
 	c := &Cell{Kind: Code, Metadata: map[string]any{}}
 	_, rest, _ := strings.Cut(mark, "%%")
 	rest = strings.TrimSpace(rest)
-	for i := 0; i < len(rest); i++ {
+	for i := 0; i < len(rest) && strings.HasSuffix(rest, "}"); i++ {
 		if rest[i] != '{' || i > 0 && rest[i-1] != ' ' {
 			continue
 		}
