@@ -1,5 +1,23 @@
-// Package material holds magnetisation laws and the materials that carry them over temperature.
+// Package material holds magnetisation laws B(H) and the materials that carry them over temperature.
+//
+//	law                       parameters                     form, with J = B - mu0 H
+//	[NewLinear]               mu_r                           B = mu0 mu_r H
+//	[NewFroehlich]            mu_i, Bs                       J = Bs H/(H + a)
+//	[NewArctan]               mu_i, Bs                       J = (2 Bs/pi) atan(H/c)
+//	[NewLangevin]             Ms, a, alpha                   M = Ms L((H + alpha M)/a)
+//	[NewCurve], [Points.Law]  measured points                monotone piecewise cubic, mu0 beyond the data
+//	[Tabulate]                a function of one's own        the same, through points close enough
+//
+//	law, err := material.NewFroehlich(2200, 0.49)
+//	fer, err := material.New("lot 12", law).Also(100, hot)   // 25 degC and 100 degC
+//	hotter, notes, err := fer.Law(80)
+//	b, slope := hotter.At(120)                               // T and H/m at 120 A/m
+//
+// Laws are single-valued: loops and memory are not theirs. Field strength in A/m, flux density in T, energy
+// densities in J/m3, temperatures in degC.
 package material
+
+import "math"
 
 // Law is a single-valued magnetisation law B(H), odd and monotone: dB/dH >= mu0 everywhere. Laws are immutable
 // values, safe for use by many goroutines.
@@ -14,4 +32,22 @@ type Law interface {
 	Range() (hmax, bmax float64)
 	// Describe gives the law in words with its parameters: "Froehlich-Kennelly, mu_i 2200, Bs 0.49 T".
 	Describe() string
+}
+
+// newton solves rise(z) = target for z >= 0, where rise is concave and increasing from 0: from any start the
+// second iterate lies left of the root and the rest approach it from there, so it needs no bracket but z > 0.
+func newton(rise func(z float64) (y, slope float64), z, target float64) float64 {
+	for range 100 {
+		y, slope := rise(z)
+		next := z + (target-y)/slope
+		if next <= 0 {
+			next = z / 16
+		}
+		done := math.Abs(next-z) <= 1e-9*next
+		z = next
+		if done {
+			break
+		}
+	}
+	return z
 }
