@@ -1,12 +1,15 @@
 package reluct
 
-import "strconv"
+import (
+	"math"
+
+	"ampturn/magcirc/phys"
+)
 
 // show prints a quantity for a message.
 func show(x float64, unit string) string {
-	s := strconv.FormatFloat(x, 'g', 4, 64)
-	if unit != "" {
-		s += " " + unit
+	if unit == "" && x == math.Trunc(x) && math.Abs(x) < 1e6 {
+		return phys.FormatDigits(x, "", 7)
 	}
-	return s
+	return phys.Format(x, unit)
 }

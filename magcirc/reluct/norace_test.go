@@ -1,0 +1,5 @@
+//go:build !race
+
+package reluct_test
+
+const raceDetector = false
