@@ -91,15 +91,17 @@ func (d *descent) sweep(x, g, slope []float64) {
 }
 
 // measure sets the residual of every row, its size and its rounding floor, and the largest relative residual. A row
-// that is met to the rounding of its terms counts as met.
+// that is met to the rounding of its terms counts as met, and so does one that is below nothing (1e-24 of the largest
+// term in the network): what a part without a source of its own receives is the rounding of the others.
 func (d *descent) measure() {
-	const eps = 4 * 0x1p-52
+	const eps, nothing = 4 * 0x1p-52, 0x1p-80
 	for j := range d.row {
 		d.row[j], d.scale[j], d.floor[j] = 0, 0, 0
 		if d.c != nil {
 			d.row[j], d.scale[j] = -d.c[j], math.Abs(d.c[j])
 		}
 	}
+	largest := 0.0
 	for k := range d.m {
 		reach := math.Abs(d.x0[k])
 		for p := d.start[k]; p < d.start[k+1]; p++ {
@@ -107,6 +109,7 @@ func (d *descent) measure() {
 		}
 		size := math.Abs(d.g[k]+d.shift[k]) + d.base[k]
 		d.reach[k] = reach
+		largest = max(largest, size)
 		blur := eps * (d.slope[k]*reach + size)
 		for p := d.start[k]; p < d.start[k+1]; p++ {
 			j, z := d.index[p], d.coef[p]
@@ -117,7 +120,7 @@ func (d *descent) measure() {
 	}
 	d.residual, d.worst = 0, 0
 	for j, r := range d.row {
-		if math.Abs(r) <= d.floor[j] {
+		if math.Abs(r) <= d.floor[j]+nothing*largest {
 			continue
 		}
 		if rel := math.Abs(r) / d.scale[j]; !(rel <= d.residual) {
@@ -139,8 +142,8 @@ func (d *descent) direction() bool {
 		d.jacobi[j] = 1 / math.Sqrt(diag)
 	}
 	for i := range n {
-		h := d.hess[i*n : i*n+n]
-		for j := i; j < n; j++ {
+		h := d.hess[i*n : i*n+i+1]
+		for j := range h {
 			h[j] *= d.jacobi[i] * d.jacobi[j]
 		}
 	}
@@ -150,10 +153,10 @@ func (d *descent) direction() bool {
 	for j := range n {
 		d.step[j] = -d.row[j] * d.jacobi[j]
 	}
-	t := blas64.Triangular{Uplo: blas.Upper, Diag: blas.NonUnit, N: n, Stride: n, Data: d.hess}
+	t := blas64.Triangular{Uplo: blas.Lower, Diag: blas.NonUnit, N: n, Stride: n, Data: d.hess}
 	v := blas64.Vector{N: n, Data: d.step, Inc: 1}
-	blas64.Trsv(blas.Trans, t, v)
 	blas64.Trsv(blas.NoTrans, t, v)
+	blas64.Trsv(blas.Trans, t, v)
 	for j := range n {
 		d.step[j] *= d.jacobi[j]
 		if !finite(d.step[j]) {
@@ -164,7 +167,7 @@ func (d *descent) direction() bool {
 	return true
 }
 
-// assemble sets the upper half of the matrix sum_k slope_k z_k z_k^T.
+// assemble sets the lower half of the matrix sum_k slope_k z_k z_k^T.
 func (d *descent) assemble() {
 	n := d.n
 	clear(d.hess)
@@ -173,7 +176,7 @@ func (d *descent) assemble() {
 		for p := lo; p < hi; p++ {
 			f := d.slope[k] * d.coef[p]
 			h := d.hess[d.index[p]*n:]
-			for q := p; q < hi; q++ { // indices of a term rise
+			for q := lo; q <= p; q++ { // indices of a term rise
 				h[d.index[q]] += f * d.coef[q]
 			}
 		}
@@ -188,13 +191,13 @@ func (d *descent) factor() bool {
 		if lift > 0 {
 			d.assemble()
 			for i := range n {
-				for j := i; j < n; j++ {
+				for j := range i + 1 {
 					d.hess[i*n+j] *= d.jacobi[i] * d.jacobi[j]
 				}
 				d.hess[i*n+i] += lift
 			}
 		}
-		if _, ok := lapack64.Potrf(blas64.Symmetric{Uplo: blas.Upper, N: n, Stride: n, Data: d.hess}); ok {
+		if _, ok := lapack64.Potrf(blas64.Symmetric{Uplo: blas.Lower, N: n, Stride: n, Data: d.hess}); ok {
 			return true
 		}
 	}
