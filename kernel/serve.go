@@ -4,7 +4,6 @@ import (
 	"context"
 	"os"
 	"os/signal"
-	"os/user"
 	"syscall"
 	"time"
 
@@ -114,8 +113,10 @@ func (k *Kernel) live(ctx context.Context) {
 }
 
 func userName() string {
-	if u, err := user.Current(); err == nil {
-		return u.Username
+	for _, name := range []string{"USER", "LOGNAME", "USERNAME"} {
+		if u := os.Getenv(name); u != "" {
+			return u
+		}
 	}
 	return "kernel"
 }
