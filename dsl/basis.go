@@ -1,0 +1,94 @@
+package dsl
+
+import (
+	"fmt"
+
+	"ampturn/dsl/doc"
+	"ampturn/magcirc"
+)
+
+// based is a result that knows its method, the method's published source and its validity.
+type based interface {
+	basis() []basisRow
+}
+
+// basisRow is one method.
+type basisRow struct{ what, method, source, validity string }
+
+// Basis shows by which method a result was computed, where that is published and where it holds. A bare number does
+// not know: ask the operating point, the curve, the matrix, the gap comparison or the material it came from.
+func Basis(result any) *TableView {
+	b, ok := result.(based)
+	if !ok {
+		refuse(magcirc.WrongUse, "Basis", fmt.Sprintf("%T does not carry its method", result), "ask what it came from: Basis(op)")
+	}
+	t := doc.Table{Columns: []doc.Column{{Name: "what"}, {Name: "method"}, {Name: "source"}, {Name: "valid for"}}}
+	for _, r := range b.basis() {
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.what), doc.Text(r.method), doc.Text(r.source), doc.Text(r.validity)})
+	}
+	return &TableView{table: t}
+}
+
+var solutionBasis = basisRow{"fluxes", "loop fluxes of least energy by Newton's method with a line search",
+	"W. Millar, Phil. Mag. 42 (1951) 1150 (minimum of energy in nonlinear networks)", "static; laws without hysteresis; no eddy currents"}
+
+var inductanceBasis = basisRow{"inductances", "differentiation of the solved network", "derivative of the loop equations at the solution", "small signals about this point, without eddy currents"}
+
+func (op *OperatingPoint) basis() []basisRow {
+	op.given()
+	return append(append([]basisRow{solutionBasis, inductanceBasis}, op.model.gapBasis(&op.circuit)...), op.circuit.lawBasis()...)
+}
+
+// gapBasis lists the gaps with their methods.
+func (m *model) gapBasis(c *MagneticCircuit) []basisRow {
+	var rows []basisRow
+	for i := range c.paths {
+		for k := range c.paths[i].parts {
+			if r, ok := m.gaps[place{i, k}]; ok {
+				rows = append(rows, basisRow{c.paths[i].full(c.name, k), r.Method.String(), r.Source, r.Validity})
+			}
+		}
+	}
+	return rows
+}
+
+// lawBasis lists the materials with their laws.
+func (c *MagneticCircuit) lawBasis() []basisRow {
+	var rows []basisRow
+	seen := map[*MagneticMaterial]bool{}
+	for i := range c.paths {
+		for _, part := range c.paths[i].parts {
+			if leg, ok := part.(LegPart); ok && !seen[leg.material] {
+				seen[leg.material] = true
+				rows = append(rows, leg.material.basis()...)
+			}
+		}
+	}
+	return rows
+}
+
+func (m *MagneticMaterial) basis() []basisRow {
+	m.given()
+	var rows []basisRow
+	for _, t := range m.below.Temperatures() {
+		rows = append(rows, basisRow{"material " + m.Name(), m.law(t).Describe(), "as its author gives it (Cite)", fmt.Sprintf("%g degC", t)})
+	}
+	return rows
+}
+
+func (b *BiasCurve) basis() []basisRow {
+	b.given()
+	return append([]basisRow{solutionBasis, inductanceBasis}, b.circuit.lawBasis()...)
+}
+
+func (g *GapComparison) basis() []basisRow {
+	var rows []basisRow
+	for _, c := range g.all {
+		if c.Err == nil {
+			rows = append(rows, basisRow{g.elem, c.Method.String(), c.Result.Source, c.Result.Validity})
+		}
+	}
+	return rows
+}
+
+func (m *InductanceMatrix) basis() []basisRow { m.given(); return []basisRow{inductanceBasis} }

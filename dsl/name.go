@@ -1,0 +1,166 @@
+package dsl
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"ampturn/magcirc"
+)
+
+// pathOf finds a path by name: "centre" or "T1.centre".
+func (c *MagneticCircuit) pathOf(name string) int {
+	c.given()
+	short := strings.TrimPrefix(name, c.name+".")
+	for i := range c.paths {
+		if c.paths[i].name == short {
+			return i
+		}
+	}
+	var have []string
+	for i := range c.paths {
+		have = append(have, c.paths[i].name)
+	}
+	c.unknown("path", name, have)
+	return -1
+}
+
+// place is a part: its path and its index there.
+type place struct{ path, part int }
+
+// partOf finds a part: "T1.centre.gap", "centre.gap", or "gap" where only one path has such a part. kinds limits what
+// is looked for; none means every kind but windings, which are found by their own name.
+func (c *MagneticCircuit) partOf(name string, kinds ...partKind) place {
+	c.given()
+	short := strings.TrimPrefix(name, c.name+".")
+	var found []place
+	var all, fits []string
+	for i := range c.paths {
+		p := &c.paths[i]
+		for k := range p.parts {
+			kind := p.parts[k].part()
+			if kind == windingKind || len(kinds) > 0 && !slices.Contains(kinds, kind) {
+				continue
+			}
+			full := p.name + "." + p.names[k]
+			all = append(all, full)
+			if full == short {
+				return place{i, k}
+			}
+			if p.names[k] == short {
+				found, fits = append(found, place{i, k}), append(fits, full)
+			}
+		}
+	}
+	switch {
+	case len(found) == 1:
+		return found[0]
+	case len(found) > 1:
+		refuse(magcirc.Ambiguous, c.name, fmt.Sprintf("has several parts named %q", short), "say which: "+strings.Join(fits, ", "))
+	}
+	what := "part"
+	if len(kinds) > 0 {
+		what = string(kinds[0])
+	}
+	c.unknown(what, name, all)
+	return place{}
+}
+
+// pathOrPart finds a path, or a part of one (part >= 0), for the questions that both can answer.
+func (c *MagneticCircuit) pathOrPart(name string) place {
+	c.given()
+	short := strings.TrimPrefix(name, c.name+".")
+	for i := range c.paths {
+		if c.paths[i].name == short {
+			return place{i, -1}
+		}
+	}
+	if strings.Contains(short, ".") || c.hasPart(short) {
+		return c.partOf(name)
+	}
+	return place{c.pathOf(name), -1}
+}
+
+func (c *MagneticCircuit) hasPart(name string) bool {
+	for i := range c.paths {
+		for k, own := range c.paths[i].names {
+			if own == name && c.paths[i].parts[k].part() != windingKind {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+// windings lists the windings in the order of their first mention.
+func (c *MagneticCircuit) windings() []string {
+	var names []string
+	for i := range c.paths {
+		for k, part := range c.paths[i].parts {
+			if part.part() == windingKind && !slices.Contains(names, c.paths[i].names[k]) {
+				names = append(names, c.paths[i].names[k])
+			}
+		}
+	}
+	return names
+}
+
+// windingOf finds a winding: "main" or "T1.main".
+func (c *MagneticCircuit) windingOf(name string) int {
+	c.given()
+	have := c.windings()
+	if i := slices.Index(have, strings.TrimPrefix(name, c.name+".")); i >= 0 {
+		return i
+	}
+	c.unknown("winding", name, have)
+	return -1
+}
+
+// unknown refuses a name that is not there, with those that are.
+func (c *MagneticCircuit) unknown(what, name string, have []string) {
+	msg := fmt.Sprintf("has no %s %q", what, name)
+	switch near := nearest(name, have); {
+	case len(have) == 0:
+		refuse(magcirc.UnknownName, "", c.name+" "+msg, "it has none")
+	case len(have) > mostNames && near != "":
+		refuse(magcirc.UnknownName, "", c.name+" "+msg, fmt.Sprintf("did you mean %q?", near))
+	case len(have) > mostNames:
+		have = append(have[:mostNames:mostNames], "...")
+	}
+	refuse(magcirc.UnknownName, "", c.name+" "+msg, "it has "+strings.Join(have, ", "))
+}
+
+// mostNames is how many candidates a message lists.
+const mostNames = 8
+
+// nearest is the candidate that differs in the fewest letters, "" where none is near.
+func nearest(name string, have []string) string {
+	best, least := "", len(name)/2+1
+	for _, h := range have {
+		if d := distance(strings.ToLower(name), strings.ToLower(h)); d < least {
+			best, least = h, d
+		}
+	}
+	return best
+}
+
+// distance counts the letters to insert, drop or change between two words (Levenshtein).
+func distance(a, b string) int {
+	row := make([]int, len(b)+1)
+	for j := range row {
+		row[j] = j
+	}
+	for i := 1; i <= len(a); i++ {
+		diagonal := row[0]
+		row[0] = i
+		for j := 1; j <= len(b); j++ {
+			cost := 1
+			if a[i-1] == b[j-1] {
+				cost = 0
+			}
+			next := min(row[j]+1, row[j-1]+1, diagonal+cost)
+			diagonal, row[j] = row[j], next
+		}
+	}
+	return row[len(b)]
+}

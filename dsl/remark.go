@@ -1,0 +1,59 @@
+package dsl
+
+import (
+	"strings"
+
+	"ampturn/dsl/doc"
+	"ampturn/dsl/review"
+	"ampturn/dsl/session"
+	"ampturn/magcirc"
+)
+
+// Note puts a line into the document.
+func Note(text string) { say("note", "", text) }
+
+// Cite names the source of what follows.
+func Cite(text string) { say("cite", "source: ", text) }
+
+// Warn puts a warning into the document, which its reader cannot overlook.
+func Warn(text string) { say("warn", "warning: ", text) }
+
+func say(class, lead, text string) {
+	if strings.TrimSpace(text) == "" {
+		refuse(magcirc.BadValue, strings.ToUpper(class[:1])+class[1:], "has no text", "")
+	}
+	session.Display(doc.Bundle(lead+text, doc.Line(class, lead+text), ""))
+}
+
+// Revision states the revision of the document, its date and what changed. A date is what its author states, never the
+// clock.
+func Revision(name, date, change string) {
+	say("revision", "revision ", name+", "+date+": "+change)
+}
+
+// SVG shows a picture of one's own.
+func SVG(text string) *Figure {
+	if !strings.Contains(text, "<svg") {
+		refuse(magcirc.BadValue, "SVG", "is not a picture", "it wants text that begins with <svg")
+	}
+	return &Figure{svg: text, text: "a picture"}
+}
+
+// Clear clears what the cell has shown so far.
+func Clear() { session.Clear(false) }
+
+// Assumptions marks the place of the list of what results of the notebook assume or extrapolate; the finished run fills
+// it.
+func Assumptions() { review.PlaceAssumptions() }
+
+// keepAssumptions enters what a result assumes or extrapolates into the notebook's list.
+func (op *OperatingPoint) keepAssumptions() {
+	for _, n := range op.Notes() {
+		if n.Kind != magcirc.Remark {
+			review.Assume(n.String())
+		}
+	}
+	if !op.circuit.asked {
+		review.Assume(op.circuit.name + ": computed at 25 degC, nobody chose a temperature")
+	}
+}

@@ -1,0 +1,189 @@
+package dsl
+
+import (
+	"math"
+	"slices"
+
+	"ampturn/dsl/session"
+	"ampturn/magcirc"
+	"ampturn/magcirc/design"
+	"ampturn/magcirc/gap"
+	"ampturn/magcirc/phys"
+	"ampturn/magcirc/reluct"
+)
+
+// GapFor is the length of a gap at which a winding has an inductance without current. It answers and changes nothing:
+//
+//	T1.With(Length("centre.gap", T1.GapFor("centre.gap", "main", 630*uH)))
+func (c *MagneticCircuit) GapFor(part, winding string, inductance Henry) Metre {
+	at := c.partOf(part, gapKind)
+	w := c.windingOf(winding)
+	p := &c.paths[at.path]
+	elem := p.full(c.name, at.part)
+	wantPositive(elem, "wanted inductance", inductance, "H")
+	most := p.parts[at.part].(GapPart).length * 100
+	if beside := p.beside(elem, at.part); beside != nil {
+		most = beside.length
+	}
+	seek := func(length float64) (float64, error) { return c.changed(lengthOf(at, length)).zeroBias(w) }
+	return must(design.Gap(session.Context(), elem, seek, inductance, p.parts[at.part].(GapPart).length, leastGap, most))
+}
+
+// CurrentFor is the current of a winding at which the first leg of the circuit reaches a flux density; the other
+// windings carry none.
+func (c *MagneticCircuit) CurrentFor(winding string, fluxDensity Tesla) Ampere {
+	w := c.windingOf(winding)
+	elem := "winding " + c.name + "." + c.windings()[w]
+	wantPositive(elem, "wanted flux density", fluxDensity, "T")
+	m := c.model()
+	seek := func(i float64) (float64, error) {
+		s, err := m.net.Solve(session.Context(), reluct.Drive{Current: map[int]float64{w: i}}, nil)
+		if err != nil {
+			return 0, err
+		}
+		op := &OperatingPoint{circuit: *c, model: m, solution: s}
+		most := 0.0
+		for i := range c.paths {
+			if k := op.fullest(i); k >= 0 {
+				most = max(most, math.Abs(op.state(place{i, k}).B))
+			}
+		}
+		return most, nil
+	}
+	return must(design.Current(session.Context(), elem, seek, fluxDensity, mostCurrent))
+}
+
+// mostCurrent ends the search for a current, A.
+const mostCurrent = 1e7
+
+// TurnsFor is the smallest whole number of turns of a winding that gives at least an inductance without current. A
+// winding that lies on several paths keeps its one number for all of them.
+func (c *MagneticCircuit) TurnsFor(winding string, inductance Henry) Turns {
+	w := c.windingOf(winding)
+	elem := "winding " + c.name + "." + c.windings()[w]
+	wantPositive(elem, "wanted inductance", inductance, "H")
+	seek := func(turns float64) (float64, error) { return c.changed(turnsOf(c.windings()[w], turns)).zeroBias(w) }
+	return must(design.Turns(session.Context(), elem, seek, inductance, mostTurns))
+}
+
+// mostTurns ends the search for a number of turns.
+const mostTurns = 1 << 20
+
+// zeroBias is the incremental inductance of a winding without any current.
+func (c *MagneticCircuit) zeroBias(w int) (inductance float64, err error) {
+	err = Try(func() {
+		s := c.model().solve(reluct.Drive{})
+		inductance = must(s.Incremental()).At(w, w)
+	})
+	return inductance, err
+}
+
+// changed is a copy of the circuit with a change to its parts, unchecked.
+func (c *MagneticCircuit) changed(change func(paths []path)) *MagneticCircuit {
+	next := *c
+	next.variant = true
+	next.paths = slices.Clone(c.paths)
+	for i := range next.paths {
+		next.paths[i].parts = slices.Clone(c.paths[i].parts)
+	}
+	change(next.paths)
+	return &next
+}
+
+func lengthOf(at place, length float64) func([]path) {
+	return func(paths []path) {
+		switch part := paths[at.path].parts[at.part].(type) {
+		case GapPart:
+			part.length = length
+			paths[at.path].parts[at.part] = part
+		case LegPart:
+			part.length = length
+			paths[at.path].parts[at.part] = part
+		case MagnetPart:
+			part.length = length
+			paths[at.path].parts[at.part] = part
+		}
+	}
+}
+
+func turnsOf(winding string, turns float64) func([]path) {
+	return func(paths []path) {
+		for i := range paths {
+			for k, part := range paths[i].parts {
+				if w, ok := part.(WindingPart); ok && paths[i].names[k] == winding {
+					w.turns = turns
+					paths[i].parts[k] = w
+				}
+			}
+		}
+	}
+}
+
+// Reluctance is the reluctance of a gap, a stray path, or a leg without flux.
+func (c *MagneticCircuit) Reluctance(part string) PerHenry {
+	at := c.partOf(part)
+	m := c.model()
+	return design.Reluctance(m.net.Branches()[at.path].Elements[m.element[at.path][at.part]])
+}
+
+// Fringing shows the methods for the flux around a gap side by side, each with its validity.
+func (c *MagneticCircuit) Fringing(part string) *GapComparison {
+	at := c.partOf(part, gapKind)
+	p := &c.paths[at.path]
+	elem := p.full(c.name, at.part)
+	g := p.parts[at.part].(GapPart)
+	return compareGap(elem, g.spec(elem, p.beside(elem, at.part)))
+}
+
+// compareGap asks every method.
+func compareGap(elem string, s gap.Spec) *GapComparison {
+	return &GapComparison{elem: elem, length: s.Length, face: s.Face.Describe(), chosen: s.Method, all: gap.Compare(s)}
+}
+
+// At is the circuit at a temperature: its core laws there. Never asked, it is 25 degC, and every result says so.
+func (c *MagneticCircuit) At(temperature Celsius) *MagneticCircuit {
+	c.given()
+	wantTemperature("circuit "+c.name, temperature)
+	next := *c
+	next.temperature, next.asked, next.variant = temperature, true, true
+	return &next
+}
+
+// Temperature is the temperature at which the circuit is computed.
+func (c *MagneticCircuit) Temperature() Celsius { c.given(); return c.temperature }
+
+// Change is what [MagneticCircuit.With] changes: [Length].
+type Change struct {
+	part     string
+	quantity string
+	value    float64
+}
+
+// Length is the change of a gap, a leg or a magnet to another length.
+func Length(part string, length Metre) Change {
+	wantPositive("Length", "length of "+part, length, "m")
+	return Change{part: part, quantity: "length", value: length}
+}
+
+// With is a variant of the circuit; the circuit itself stays as it is.
+//
+//	T1.With(Length("centre.gap", 0.55*mm)).Solve().Inductance("main")
+func (c *MagneticCircuit) With(changes ...Change) *MagneticCircuit {
+	c.given()
+	next := *c
+	next.variant = true
+	for _, change := range changes {
+		if change.quantity == "" {
+			refuse(magcirc.BadValue, "With", "is given an empty change", `write With(Length("centre.gap", 0.55*mm))`)
+		}
+		at := next.partOf(change.part, gapKind, legKind, magnetKind)
+		said := next.changes
+		next = *next.changed(lengthOf(at, change.value))
+		p := &next.paths[at.path]
+		next.changes = append(slices.Clone(said), p.name+"."+p.names[at.part]+" "+phys.Format(change.value, "m"))
+		for k := range p.parts {
+			p.checkPart(c.name, k)
+		}
+	}
+	return &next
+}

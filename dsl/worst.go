@@ -1,0 +1,53 @@
+package dsl
+
+import (
+	"fmt"
+
+	"ampturn/magcirc/design"
+	"ampturn/magcirc/phys"
+)
+
+// LegState is the state of one leg.
+type LegState struct {
+	name, conditions string
+	b, h, share      float64
+}
+
+// worst finds the leg that is driven furthest towards the saturation of its law, nil where there is none.
+func (op *OperatingPoint) worst() *LegState {
+	var worst *LegState
+	for i := range op.circuit.paths {
+		p := &op.circuit.paths[i]
+		for k, part := range p.parts {
+			leg, ok := part.(LegPart)
+			if !ok {
+				continue
+			}
+			s := op.state(place{i, k})
+			share := design.Nearness(leg.material.law(op.circuit.temperature), s.H)
+			if worst == nil || share > worst.share {
+				worst = &LegState{name: p.full(op.circuit.name, k), conditions: op.conditions(), b: s.B, h: s.H, share: share}
+			}
+		}
+	}
+	return worst
+}
+
+// Name is the leg's name: "leg T1.centre.leg".
+func (l *LegState) Name() string { return l.name }
+
+// FluxDensity is the flux density in the leg, along its path's arrow.
+func (l *LegState) FluxDensity() Tesla { return l.b }
+
+// FieldStrength is the field strength in the leg.
+func (l *LegState) FieldStrength() AmperePerMetre { return l.h }
+
+// Saturation is the share of the material's saturation polarisation that is reached.
+func (l *LegState) Saturation() Ratio { return l.share }
+
+// MIMEBundle shows the leg in one line.
+func (l *LegState) MIMEBundle() map[string]any { return words(l.text()) }
+
+func (l *LegState) text() string {
+	return fmt.Sprintf("%s: %s, %s of saturation (%s)", l.name, phys.Format(l.b, "T"), phys.Format(l.share, "percent"), l.conditions)
+}
