@@ -59,7 +59,7 @@ func (l *blend) Describe() string {
 	if l.w < 0 || l.w > 1 {
 		verb = "extrapolated"
 	}
-	return fmt.Sprintf("%s to %s between %s: %s; %s: %s", verb, phys.Format(l.t, "degC"),
+	return fmt.Sprintf("%s to %s from %s (%s) and %s (%s)", verb, phys.Format(l.t, "degC"),
 		phys.Format(l.tCold, "degC"), l.cold.Describe(), phys.Format(l.tHot, "degC"), l.hot.Describe())
 }
 

@@ -9,7 +9,11 @@ import (
 	"ampturn/magcirc/phys"
 )
 
-type langevin struct{ ms, a, alpha float64 }
+type langevin struct {
+	ms, a, alpha float64
+	ofB          rising // B/mu0 over the reduced effective field z = x/a
+	ofH          rising // H over z; not used where alpha is 0
+}
 
 // NewLangevin gives the Langevin law with saturation magnetisation ms in A/m, shape parameter a in A/m and
 // mean-field parameter alpha >= 0.
@@ -40,70 +44,40 @@ func NewLangevin(ms, a, alpha float64) (Law, error) {
 		return nil, &magcirc.Error{Code: magcirc.BadValue, Elem: elem, Quantity: "alpha Ms/(3a)", Got: r, Limit: 1,
 			Msg: fmt.Sprintf("the curve folds (alpha Ms/(3a) = %s, it must stay below 1)", phys.FormatDigits(r, "", 3)), Hint: "lower alpha or raise a"}
 	}
-	l := langevin{ms, a, alpha}
-	if err := checkMu(elem, "initial permeability", 1+l.chi()); err != nil {
+	if err := checkMu(elem, "initial permeability", 1+ms/(3*a-alpha*ms)); err != nil {
 		return nil, err
+	}
+	effective := func(m float64) rising {
+		return newRising(func(z float64) (float64, float64) {
+			v, d := num.Langevin(z)
+			return a*z + m*v, a + m*d
+		})
+	}
+	l := &langevin{ms: ms, a: a, alpha: alpha, ofB: effective((1 - alpha) * ms)}
+	if alpha > 0 {
+		l.ofH = effective(-alpha * ms)
 	}
 	return l, nil
 }
 
-func (l langevin) chi() float64 { return l.ms / (3*l.a - l.alpha*l.ms) }
+func (l *langevin) chi() float64 { return l.ms / (3*l.a - l.alpha*l.ms) }
 
-// at gives B and dB/dH at the reduced effective field z = x/a, where chi = dM/dx:
-//
-//	dB/dH = (dB/dx)/(dH/dx) = mu0 (1 + (1-alpha) chi)/(1 - alpha chi)
-func (l langevin) at(z float64) (b, slope float64) {
-	v, d := num.Langevin(z)
-	chi := l.ms / l.a * d
-	return phys.Mu0 * (l.a*z + (1-l.alpha)*l.ms*v), phys.Mu0 * (1 + chi/(1-l.alpha*chi))
-}
-
-// effective gives the reduced effective field at field strength h: the root of a z - alpha ms L(z) = h. The left
-// side is convex for z > 0, so Newton steps from an upper bound (L < z/3, L < 1) approach it from the right.
-func (l langevin) effective(h float64) float64 {
-	if l.alpha == 0 || h == 0 {
+// effective gives the reduced effective field at field strength h.
+func (l *langevin) effective(h float64) float64 {
+	if l.alpha == 0 {
 		return h / l.a
 	}
-	y, r := math.Abs(h)/l.a, l.alpha*l.ms/l.a
-	z := math.Min(y/(1-r/3), y+r)
-	for range 200 {
-		v, d := num.Langevin(z)
-		step := (z - r*v - y) / (1 - r*d)
-		z -= step
-		if math.Abs(step) <= 1e-9*z {
-			break
-		}
-	}
-	return math.Copysign(z, h)
+	return math.Copysign(l.ofH.solve(math.Abs(h)), h)
 }
 
-func (l langevin) At(h float64) (b, slope float64) {
-	z := l.effective(h)
-	v, d := num.Langevin(z)
-	chi := l.ms / l.a * d
+func (l *langevin) At(h float64) (b, slope float64) {
+	v, d := num.Langevin(l.effective(h))
+	chi := l.ms / l.a * d // dM/dx; dM/dH = chi/(1 - alpha chi)
 	return phys.Mu0 * (h + l.ms*v), phys.Mu0 * (1 + chi/(1-l.alpha*chi))
 }
 
-// Inverse solves for the effective field by Newton steps from the larger of two lower bounds, L <= z/3 and
-// L <= z/(1+z), on the concave B(z) of alpha < 1; the rare alpha >= 1, for which B(z) is convex, by a bracket.
-func (l langevin) Inverse(b float64) (h, slope float64) {
-	if b == 0 {
-		return b, 1 / (phys.Mu0 * (1 + l.chi()))
-	}
-	y := math.Abs(b) / phys.Mu0
-	m := (1 - l.alpha) * l.ms
-	rise := func(z float64) (float64, float64) {
-		v, d := num.Langevin(z)
-		return l.a*z + m*v, l.a + m*d
-	}
-	var z float64
-	if m > 0 {
-		p := l.a + m - y
-		z = newton(rise, math.Max(y/(l.a+m/3), quadratic(l.a, p, y)), y)
-	} else {
-		f := func(z float64) (float64, float64) { v, d := rise(z); return v - y, d }
-		z = num.Root(f, 0, math.Min((y-m)/l.a, y/(l.a+m/3)), y/(l.a+m/3), 1e-14)
-	}
+func (l *langevin) Inverse(b float64) (h, slope float64) {
+	z := l.ofB.solve(math.Abs(b) / phys.Mu0)
 	v, d := num.Langevin(z)
 	chi := l.ms / l.a * d
 	return math.Copysign(l.a*z-l.alpha*l.ms*v, b), (1 - l.alpha*chi) / (phys.Mu0 * (1 + (1-l.alpha)*chi))
@@ -112,16 +86,16 @@ func (l langevin) Inverse(b float64) (h, slope float64) {
 // Coenergy is mu0 (H^2/2 + integral of M dH) with dH = dx - alpha dM:
 //
 //	integral of M dH = ms a ln(sinh z/z) - alpha M^2/2
-func (l langevin) Coenergy(h float64) float64 {
+func (l *langevin) Coenergy(h float64) float64 {
 	z := l.effective(h)
 	v, _ := num.Langevin(z)
 	m := l.ms * v
 	return phys.Mu0 * (h*h/2 + l.ms*l.a*num.LangevinIntegral(z) - l.alpha*m*m/2)
 }
 
-func (l langevin) Range() (hmax, bmax float64) { return math.Inf(1), math.Inf(1) }
+func (l *langevin) Range() (hmax, bmax float64) { return math.Inf(1), math.Inf(1) }
 
-func (l langevin) Describe() string {
+func (l *langevin) Describe() string {
 	s := "Langevin, Ms " + phys.Format(l.ms, "A/m") + ", a " + phys.Format(l.a, "A/m")
 	if l.alpha > 0 {
 		s += ", alpha " + phys.Format(l.alpha, "")

@@ -17,8 +17,6 @@
 // densities in J/m3, temperatures in degC.
 package material
 
-import "math"
-
 // Law is a single-valued magnetisation law B(H), odd and monotone: dB/dH >= mu0 everywhere. Laws are immutable
 // values, safe for use by many goroutines.
 type Law interface {
@@ -32,22 +30,4 @@ type Law interface {
 	Range() (hmax, bmax float64)
 	// Describe gives the law in words with its parameters: "Froehlich-Kennelly, mu_i 2200, Bs 0.49 T".
 	Describe() string
-}
-
-// newton solves rise(z) = target for z >= 0, where rise is concave and increasing from 0: from any start the
-// second iterate lies left of the root and the rest approach it from there, so it needs no bracket but z > 0.
-func newton(rise func(z float64) (y, slope float64), z, target float64) float64 {
-	for range 100 {
-		y, slope := rise(z)
-		next := z + (target-y)/slope
-		if next <= 0 {
-			next = z / 16
-		}
-		done := math.Abs(next-z) <= 1e-9*next
-		z = next
-		if done {
-			break
-		}
-	}
-	return z
 }

@@ -54,8 +54,11 @@ func (t *table) sample(hmax float64) error {
 	if err != nil {
 		return err
 	}
-	if one := t.f(hmax); math.Abs(zero) > 1e-9*math.Abs(one) {
+	if math.Abs(zero) > 1e-9*math.Abs(t.f(hmax)) {
 		return refuseFunction(magcirc.BadValue, 0, zero, 0, fmt.Sprintf("B is %s at H = 0", phys.Format(zero, "T")), "a law without memory passes zero")
+	}
+	if _, err := t.value(hmax); err != nil { // the likeliest place to show what is wrong
+		return err
 	}
 	t.h, t.b = []float64{0}, []float64{0}
 	t.slope = []float64{t.difference(0, hmax*1e-9)}
@@ -82,11 +85,11 @@ func (t *table) refine(h float64, depth int) error {
 		return err
 	}
 	cubic := (b0+b)/2 + w/8*(s0-slope)
-	if math.Abs(cubic-mid) <= tableError/4*math.Abs(mid) || depth > 40 {
+	if math.Abs(cubic-mid) <= tableError/4*math.Abs(mid) {
 		t.h, t.b, t.slope = append(t.h, h), append(t.b, b), append(t.slope, slope)
 		return nil
 	}
-	if len(t.h) > tablePoints {
+	if len(t.h) > tablePoints || depth > 40 {
 		return refuseFunction(magcirc.NoConvergence, h, b, 0, fmt.Sprintf("no table follows it at %s: it jumps or has no slope there", phys.Format(h, "A/m")), "")
 	}
 	if err := t.refine(h0+w/2, depth+1); err != nil {
