@@ -169,7 +169,7 @@ func (p *path) checkPart(circuit string, i int) {
 // slipOfLength asks whether a length was meant a thousand times smaller.
 func slipOfLength(length float64) string {
 	meant := length / 1000
-	return fmt.Sprintf("Was %s*mm or %s*um meant?", doc.Number(meant*1e3, 4), doc.Number(meant*1e6, 4))
+	return fmt.Sprintf("Was %s*mm or %s*um meant?", phys.Format(meant*1e3, ""), phys.Format(meant*1e6, ""))
 }
 
 // beside is the leg whose section a gap takes: the nearest one before it, else after it; nil where the gap has faces

@@ -1,0 +1,87 @@
+package doc_test
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"ampturn/dsl/doc"
+)
+
+func sample() doc.Table {
+	return doc.Table{
+		Caption: "T1 at 25 degC, main 3.2 A",
+		Columns: []doc.Column{{Name: "path"}, {Name: "flux", Unit: "Wb"}, {Name: "share"}},
+		Rows: [][]doc.Cell{
+			{doc.Text("centre"), doc.Num(48.123456e-6), doc.Num(1)},
+			{doc.Text("left <yoke>"), doc.Num(-2.4e-6), doc.Num(0.05)},
+			{doc.Text("window"), doc.Num(0)},
+		},
+		Notes: []string{"beyond the data"},
+	}
+}
+
+func TestTextAlignsAtThePoint(t *testing.T) {
+	want := strings.Join([]string{
+		"T1 at 25 degC, main 3.2 A",
+		"path         flux (uWb)    share",
+		"-----------  ----------  -------",
+		"centre           48.12   1.000",
+		"left <yoke>      -2.400  0.05000",
+		"window            0",
+		"note: beyond the data",
+	}, "\n")
+	if got := sample().Text(); got != want {
+		t.Errorf("got\n%s\nwant\n%s", got, want)
+	}
+}
+
+func TestHTML(t *testing.T) {
+	got := sample().HTML()
+	for _, want := range []string{
+		`<table class="at">` + "\n" + `<caption>T1 at 25 degC, main 3.2 A</caption>`,
+		`<th scope="col" class="num">flux (uWb)</th>`,
+		`<td class="num" data-value="4.8123456e-05">48.12` + "\u2007</td>", // the full value stays with the number
+		"<td>left &lt;yoke&gt;</td>",
+		`<p class="note">beyond the data</p>`,
+	} {
+		if !strings.Contains(got, want) {
+			t.Errorf("%q is missing in\n%s", want, got)
+		}
+	}
+}
+
+func TestMetadataIsFull(t *testing.T) {
+	m := sample().Metadata()["ampturn"].(map[string]any)
+	if got := m["rows"].([]any)[0].([]any)[1]; got != 48.123456e-6 {
+		t.Errorf("flux in the metadata: %v", got)
+	}
+	if got := m["columns"].([]any)[1]; got != "flux Wb" {
+		t.Errorf("header in the metadata: %v", got)
+	}
+}
+
+func TestNumber(t *testing.T) {
+	for _, c := range []struct {
+		x      float64
+		digits int
+		want   string
+	}{
+		{0, 4, "0"}, {1, 4, "1.000"}, {9.9996, 4, "10.00"}, {-0.31415926, 4, "-0.3142"}, {123456.7, 4, "123457"},
+		{1.23456e-5, 4, "1.235e-05"}, {1e7, 3, "1.00e+07"}, {math.Inf(-1), 4, "-inf"}, {math.NaN(), 4, "not a number"},
+	} {
+		if got := doc.Number(c.x, c.digits); got != c.want {
+			t.Errorf("Number(%g, %d) = %q, want %q", c.x, c.digits, got, c.want)
+		}
+	}
+}
+
+func TestMixedColumnPrintsEachUnit(t *testing.T) {
+	table := doc.Table{Columns: []doc.Column{{Name: "value", Mixed: true}},
+		Rows: [][]doc.Cell{{doc.Quantity(630e-6, "H")}, {doc.Quantity(0.32, "T")}}}
+	for _, want := range []string{"630 uH", "0.32 T"} {
+		if got := table.Text(); !strings.Contains(got, want) {
+			t.Errorf("%q is missing in\n%s", want, got)
+		}
+	}
+}
