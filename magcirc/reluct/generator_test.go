@@ -5,6 +5,7 @@ import (
 	"math/rand/v2"
 	"strconv"
 
+	"ampturn/magcirc/material"
 	"ampturn/magcirc/phys"
 	"ampturn/magcirc/reluct"
 )
@@ -35,8 +36,33 @@ func (g *generator) logUniform(lo, hi float64) float64 {
 	return lo * math.Exp(g.rng.Float64()*math.Log(hi/lo))
 }
 
+// known is a law of package material with the parameters it was made from.
+type known struct {
+	material.Law
+	shape   int
+	mui, bs float64
+}
+
+func newLaw(shape int, mui, bs float64) known {
+	var law material.Law
+	var err error
+	switch shape {
+	case langevin:
+		ms := bs / phys.Mu0
+		law, err = material.NewLangevin(ms, ms/(3*(mui-1)), 0)
+	case arctan:
+		law, err = material.NewArctan(mui, bs)
+	default:
+		law, err = material.NewFroehlich(mui, bs)
+	}
+	if err != nil {
+		panic(err)
+	}
+	return known{law, shape, mui, bs}
+}
+
 func (g *generator) leg() reluct.Element {
-	return reluct.Element{Name: "leg", Law: polarised(g.rng.IntN(3), g.logUniform(1e2, 1e5), 0.3+1.7*g.rng.Float64()),
+	return reluct.Element{Name: "leg", Law: newLaw(g.rng.IntN(3), g.logUniform(1e2, 1e5), 0.3+1.7*g.rng.Float64()),
 		Length: g.logUniform(5e-3, 0.2), Area: g.logUniform(1e-5, 1e-3)}
 }
 
@@ -134,12 +160,12 @@ func (g *generator) prescribe(s *sample, tree int) {
 	want := 1 + g.rng.IntN(4)
 	for i := tree; i < len(s.Branches) && want > 0; i++ {
 		e := &s.Branches[i].Elements[0]
-		law, ok := e.Law.(saturating)
+		law, ok := e.Law.(known)
 		if !ok {
 			continue
 		}
 		turns := float64(1 + g.rng.IntN(100))
-		flux := 2 * (2*g.rng.Float64() - 1) * law.ms * phys.Mu0 * e.Area
+		flux := 2 * (2*g.rng.Float64() - 1) * law.bs * e.Area
 		w := s.Windings
 		s.Windings++
 		want--

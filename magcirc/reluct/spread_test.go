@@ -6,7 +6,6 @@ import (
 	"slices"
 	"testing"
 
-	"ampturn/magcirc/phys"
 	"ampturn/magcirc/reluct"
 )
 
@@ -33,8 +32,8 @@ func (sp *spread) add(s *sample) {
 			sp.extra++
 		}
 		for _, e := range b.Elements {
-			if law, ok := e.Law.(saturating); ok {
-				sp.mui, sp.bs = append(sp.mui, 1+law.chi), append(sp.bs, law.ms*phys.Mu0)
+			if law, ok := e.Law.(known); ok {
+				sp.mui, sp.bs = append(sp.mui, law.mui), append(sp.bs, law.bs)
 			}
 			if e.Kind == reluct.Gap {
 				sp.gaps = append(sp.gaps, e.Length)
