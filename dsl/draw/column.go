@@ -30,7 +30,7 @@ func (l *layout) reach(node int) (lo, hi float64) {
 		if p.From == node || p.To == node {
 			lo, hi = min(lo, l.x[l.lane[i]]), max(hi, l.x[l.lane[i]])
 			if p.From == p.To {
-				lo = l.x[l.lane[i]] - loopBack
+				lo = min(lo, l.x[l.lane[i]]-loopBack)
 			}
 		}
 	}

@@ -119,6 +119,21 @@ func TestColumnsClear(t *testing.T) {
 	}
 }
 
+// TestBarsReach: the bar of a node runs through the ends of all its paths.
+func TestBarsReach(t *testing.T) {
+	rnd := rand.New(rand.NewSource(4))
+	for range 300 {
+		l := randomNetwork(rnd).layout()
+		for i, p := range l.paths {
+			for _, node := range []int{p.From, p.To} {
+				if lo, hi := l.reach(node); l.x[l.lane[i]] < lo || l.x[l.lane[i]] > hi {
+					t.Fatalf("path %d ends at %g, the bar of node %d runs from %g to %g", i, l.x[l.lane[i]], node, lo, hi)
+				}
+			}
+		}
+	}
+}
+
 // TestSigns: dots, arrows and dashes follow the positive direction.
 func TestSigns(t *testing.T) {
 	p, err := threeLimb().Draw()

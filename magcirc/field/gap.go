@@ -61,7 +61,7 @@ type Solution struct {
 	Coarse      float64 // factor on the grid of half as many steps
 	Unknowns    int     // of the fine grid
 	Iterations  int     // of the conjugate gradients on the fine grid
-	Map         Map     // the field on the coarse grid, for drawing
+	Map         Map     // the field on the fine grid, for drawing
 }
 
 const defaultSteps = 32
@@ -172,6 +172,6 @@ func solve(g geometry, steps int) (*Solution, error) {
 		Coarse:      coarse.factor,
 		Unknowns:    fine.unknowns,
 		Iterations:  fine.iterations,
-		Map:         coarse.chart(),
+		Map:         fine.chart(),
 	}, nil
 }
