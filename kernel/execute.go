@@ -137,7 +137,10 @@ func (x *run) call(ctx context.Context) (outcome Outcome, result *string) {
 	c := Cell{
 		ID: x.cellID, Number: x.number, Source: x.content.Code, Transient: !x.content.store(),
 		Ask: func(askCtx context.Context, prompt string, hidden bool) (string, error) {
-			if !isTrue(x.content.AllowStdin) || ctx.Err() != nil {
+			switch {
+			case ctx.Err() != nil: // interrupted, or the cell has ended
+				return "", ctx.Err()
+			case !isTrue(x.content.AllowStdin):
 				return "", ErrNoInput
 			}
 			flush()

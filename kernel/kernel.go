@@ -92,9 +92,9 @@ func New(e Engine, link Link, s *wire.Session, o *Options) *Kernel {
 }
 
 // The text that goes to front ends, in bytes and bytes a second: a burst and three seconds of the rate stay below the
-// 3*10^6 bytes that a notebook server lets pass in its window of 3 s.
+// 3*10^6 bytes that a notebook server lets pass in its window of 3 s, with room for what JSON adds.
 const (
-	textBurst = 1_100_000
+	textBurst = 800_000
 	textRate  = 600_000
 )
 

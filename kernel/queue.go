@@ -24,13 +24,27 @@ func (q *queue) push(r *request) {
 	}
 }
 
-// take takes everything that has arrived so far.
+// take takes the cells that have arrived so far. Other requests stay.
 func (q *queue) take() []*request {
 	q.mu.Lock()
 	defer q.mu.Unlock()
-	all := q.items
-	q.items = nil
-	return all
+	var cells, others []*request
+	for _, r := range q.items {
+		if r.family.lane == cell {
+			cells = append(cells, r)
+		} else {
+			others = append(others, r)
+		}
+	}
+	q.items = others
+	return cells
+}
+
+// empty tells whether nothing waits.
+func (q *queue) empty() bool {
+	q.mu.Lock()
+	defer q.mu.Unlock()
+	return len(q.items) == 0
 }
 
 func (q *queue) pop() *request {

@@ -13,6 +13,7 @@ type lane int
 
 const (
 	atOnce   lane = iota // by the goroutine that received it: needs no engine
+	inTurn               // at once, but on shell behind the cells that wait there
 	question             // beside the cells, in order
 	cell                 // with the cells, in order
 )
@@ -29,7 +30,7 @@ var families = map[string]family{
 	"complete_request":    {question, (*Kernel).complete},
 	"inspect_request":     {question, (*Kernel).inspect},
 	"is_complete_request": {question, (*Kernel).isComplete},
-	"kernel_info_request": {atOnce, (*Kernel).info},
+	"kernel_info_request": {inTurn, (*Kernel).info},
 	"history_request":     {atOnce, (*Kernel).tellHistory},
 	"comm_info_request":   {atOnce, (*Kernel).commInfo},
 	"comm_open":           {atOnce, (*Kernel).commOpen},
@@ -63,7 +64,7 @@ func newRequest(k *Kernel, ch Channel, m *wire.Message) *request {
 func (k *Kernel) dispatch(r *request) {
 	f, known := families[r.typ]
 	switch {
-	case (r.channel == Stdin) != (r.typ == "input_reply"), r.channel == Control && f.lane != atOnce:
+	case (r.channel == Stdin) != (r.typ == "input_reply"), r.channel == Control && f.lane > inTurn:
 		known = false
 	}
 	if !known {
@@ -75,10 +76,10 @@ func (k *Kernel) dispatch(r *request) {
 		return
 	}
 	r.family = f
-	switch f.lane {
-	case cell:
+	switch {
+	case f.lane == cell, f.lane == inTurn && r.channel == Shell && !k.cells.empty():
 		k.cells.push(r)
-	case question:
+	case f.lane == question:
 		k.questions.push(r)
 	default:
 		f.serve(k, context.Background(), r)
