@@ -60,11 +60,23 @@ const (
 	tallSpread = 0.25
 )
 
+// Field lines of the mapping that leave the pole's side at the height y land about y beside it: a wall at the span
+// takes those from above that height away. Compared with the field between a pole and a wall that no flux crosses, a
+// side that ends at the height of the span is right within wallSpread of the fringing for spans from two gaps on.
+const (
+	wallSpread = 0.1
+	wallNote   = 2.0 // span over gap: a note below this
+)
+
 // conformalMap multiplies the factors of two planes for a rectangle; a round pole counts as the square of equal area,
-// a thin ring as a strip bent round.
+// a thin ring as a strip bent round. The window's wall, if known, lies beside the width of a rectangle.
 func (s Spec) conformalMap() (Result, error) {
 	h, _ := s.side()
 	g := s.Length
+	low := h // of the side that faces the wall
+	if s.Span > 0 {
+		low = min(h, s.Span)
+	}
 	r := Result{
 		Validity: fmt.Sprintf("gap up to %g of the shorter side (note from %g); pole sides up to %g radii of the disc of equal area (note from %g)",
 			mapEnd, mapNote, tallEnd, tallNote),
@@ -73,10 +85,11 @@ func (s Spec) conformalMap() (Result, error) {
 	switch f := s.Face; f.Shape {
 	case geom.Rectangle:
 		shorter = min(f.W, f.D)
-		r.Factor = strip(f.W, g, h) * strip(f.D, g, h)
+		r.Factor = strip(f.W, g, low) * strip(f.D, g, h)
 	case geom.Round:
 		shorter = f.Do * math.Sqrt(math.Pi) / 2
-		r.Factor = math.Pow(strip(shorter, g, h), 2)
+		r.Factor = math.Pow(strip(shorter, g, low), 2)
+		h = low
 		r.note(magcirc.Remark, s.Elem, "a round pole counts as the square of equal area")
 	case geom.Ring:
 		w := (f.Do - f.Di) / 2
@@ -85,7 +98,7 @@ func (s Spec) conformalMap() (Result, error) {
 				phys.Format(w, "m"), phys.Format(f.Di, "m")), bend, ringBend)
 		}
 		shorter = w
-		r.Factor = strip(w, g, h)
+		r.Factor = strip(w, g, low)
 		r.note(magcirc.Remark, s.Elem, "a ring counts as a straight strip of its breadth")
 	default:
 		return Result{}, s.outside("shape", "ConformalMap wants the shape of the faces, and only their area is known", 0, 0)
@@ -94,8 +107,11 @@ func (s Spec) conformalMap() (Result, error) {
 		return Result{}, err
 	}
 	s.noteSide(&r)
-	if s.Span > 0 && s.Span < 3*g {
-		r.note(magcirc.OutOfRange, s.Elem, fmt.Sprintf("the window's wall is %s beside the pole; the mapping knows no wall, FieldSolve does", phys.Format(s.Span, "m")))
+	if s.Span > 0 {
+		r.Uncertainty += wallSpread * (r.Factor - 1) / r.Factor
+	}
+	if s.Span > 0 && s.Span < wallNote*g {
+		r.note(magcirc.OutOfRange, s.Elem, fmt.Sprintf("the window's wall is only %s beside the pole: compare with FieldSolve", phys.Format(s.Span, "m")))
 	}
 	return r, nil
 }
