@@ -111,10 +111,10 @@ func (m *MagneticMaterial) MIMEBundle() map[string]any {
 	if m == nil || m.below == nil {
 		return nil
 	}
-	t := doc.Table{Caption: "material " + m.Name(), Columns: []doc.Column{{Name: "temperature", Unit: "degC"}, {Name: "law"}, {Name: "data to", Unit: "T"}}}
+	t := doc.Table{Caption: "material " + m.Name(), Columns: []doc.Column{{Name: "temperature"}, {Name: "law"}, {Name: "data to", Unit: "T"}}}
 	for _, at := range m.below.Temperatures() {
 		law := m.law(at)
-		row := []doc.Cell{doc.Num(at), doc.Text(law.Describe()), doc.Text("formula")}
+		row := []doc.Cell{doc.Text(phys.Format(at, "degC")), doc.Text(law.Describe()), doc.Text("formula")}
 		if _, b := law.Range(); !math.IsInf(b, 1) {
 			row[2] = doc.Num(b)
 		}

@@ -11,7 +11,7 @@ import (
 
 // InductanceMatrix is the matrix of self and mutual inductances of windings, with what follows from it.
 type InductanceMatrix struct {
-	matrix  induct.Matrix
+	matrix  *induct.Matrix
 	owner   string // the circuit, for messages
 	caption string
 	remarks []Remark
@@ -40,7 +40,7 @@ func (m *InductanceMatrix) indices(windings []string) []int {
 }
 
 func (m *InductanceMatrix) given() {
-	if m == nil || len(m.matrix.Names) == 0 {
+	if m == nil || m.matrix == nil {
 		refuse(magcirc.BadValue, "inductance matrix", "there is none", "take it from an operating point: op.Matrix()")
 	}
 }
@@ -83,7 +83,15 @@ func (m *InductanceMatrix) InPhase(windings ...string) Henry {
 func (m *InductanceMatrix) EquivalentCircuit(primary, secondary string) *EquivalentCircuit {
 	i := m.indices([]string{primary, secondary})
 	c := must(m.matrix.EquivalentCircuit(i[0], i[1]))
-	return &EquivalentCircuit{circuit: c, primary: primary, secondary: secondary, caption: m.caption}
+	return &EquivalentCircuit{matrix: m, at: [2]int(i), circuit: c, primary: m.matrix.Names[i[0]], secondary: m.matrix.Names[i[1]]}
+}
+
+// Definite says what kind of network the matrix can belong to: "positive definite", "singular" (an ideal network
+// without leakage) or "not positive definite" (no part is like that).
+func (m *InductanceMatrix) Definite() string {
+	m.given()
+	d, _ := m.matrix.Definite()
+	return d.String()
 }
 
 // Notes lists what a reader must know about this result.
@@ -91,7 +99,7 @@ func (m *InductanceMatrix) Notes() []Remark { m.given(); return slices.Clone(m.r
 
 // MIMEBundle shows the matrix and the coupling factors.
 func (m *InductanceMatrix) MIMEBundle() map[string]any {
-	if m == nil {
+	if m == nil || m.matrix == nil {
 		return nil
 	}
 	return doc.Join(m.tables()...)
@@ -123,5 +131,9 @@ func (m *InductanceMatrix) tables() []doc.Table {
 	}
 	last := &tables[len(tables)-1]
 	last.Notes = append(last.Notes, noteLines(m.remarks)...)
+	if len(m.matrix.Names) > 1 {
+		_, detail := m.matrix.Definite()
+		last.Notes = append(last.Notes, detail.Text)
+	}
 	return tables
 }

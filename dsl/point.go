@@ -2,6 +2,7 @@ package dsl
 
 import (
 	"math"
+	"strconv"
 
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
@@ -162,28 +163,32 @@ func (op *OperatingPoint) EquivalentCircuit(primary, secondary string) *Equivale
 
 // Matrix is the matrix of the incremental inductances.
 func (op *OperatingPoint) Matrix() *InductanceMatrix {
-	op.given()
+	op.wantWindings()
 	if op.incremental == nil {
 		l := must(op.solution.Incremental())
-		op.incremental = op.matrix(induct.Matrix{Names: op.circuit.windings(), L: l}, "incremental inductances")
+		op.incremental = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)), "incremental inductances")
 	}
 	return op.incremental
 }
 
 // SecantMatrix is the matrix of the secant inductances: permeabilities as they are at this point.
 func (op *OperatingPoint) SecantMatrix() *InductanceMatrix {
-	op.given()
+	op.wantWindings()
 	if op.secant == nil {
 		l := must(op.solution.Secant())
-		op.secant = op.matrix(induct.Matrix{Names: op.circuit.windings(), L: l}, "secant inductances")
+		op.secant = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)), "secant inductances")
 	}
 	return op.secant
 }
 
-func (op *OperatingPoint) matrix(m induct.Matrix, what string) *InductanceMatrix {
-	if len(m.Names) == 0 {
+func (op *OperatingPoint) wantWindings() {
+	op.given()
+	if len(op.circuit.windings()) == 0 {
 		refuse(magcirc.WrongUse, "circuit "+op.circuit.name, "has no winding", `give a path one: Winding("main", 34*turn)`)
 	}
+}
+
+func (op *OperatingPoint) matrix(m *induct.Matrix, what string) *InductanceMatrix {
 	return &InductanceMatrix{matrix: m, owner: op.circuit.name, caption: what + ": " + op.conditions(), remarks: op.Notes()}
 }
 
@@ -254,7 +259,7 @@ func (op *OperatingPoint) Balance() *TableView {
 	add("sum of fluxes at the worst node, relative to the largest flux", s.NodeBalance)
 	add("sum of mmf along the worst path, relative to the largest mmf", s.MMFBalance)
 	add("residual of the worst loop, relative to its terms", s.Residual)
-	add("iterations", float64(s.Iterations))
+	t.Rows = append(t.Rows, []doc.Cell{doc.Text("iterations"), doc.Text(strconv.Itoa(s.Iterations))})
 	return &TableView{table: t}
 }
 

@@ -57,3 +57,19 @@ func (op *OperatingPoint) keepAssumptions() {
 		review.Assume(op.circuit.name + ": computed at 25 degC, nobody chose a temperature")
 	}
 }
+
+// Fragment is a piece of HTML of one's own.
+type Fragment struct {
+	html string
+}
+
+// HTML shows HTML of one's own. A page that is made of the notebook runs no script in it.
+func HTML(text string) *Fragment { return &Fragment{text} }
+
+// MIMEBundle shows the fragment.
+func (f *Fragment) MIMEBundle() map[string]any {
+	if f == nil {
+		return nil
+	}
+	return doc.Bundle(f.html, f.html, "")
+}
