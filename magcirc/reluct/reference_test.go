@@ -309,7 +309,7 @@ func TestReferenceTransformer(t *testing.T) {
 	t.Logf("magnetising current %.6f A rms, %.6f A peak", rms, peak)
 	for _, r := range []reference{
 		{"2.14", "Chapman, 5th ed., ex 2-10", "magnetising current, A rms", rms, 0.485110, 1e-3, 0.485, 3},
-		{"2.14", "Chapman, 5th ed., ex 2-10", "magnetising current, A peak", peak, 0.807405, 1e-3, 0, 0},
+		{"2.14", "Chapman, 5th ed., ex 2-10", "magnetising current, A peak", peak, 0.807405, 2e-3, 0, 0},
 	} {
 		r.check(t)
 	}
