@@ -58,11 +58,21 @@ func (r FringeRule) method() gap.Method {
 // MIMEBundle shows the method in words.
 func (r FringeRule) MIMEBundle() map[string]any { return words("fringing by " + r.method().String()) }
 
-// WindowRule is a [FringeRule] with the height of the winding window.
+// WindowRule is a [FringeRule] with the size of the winding window.
 type WindowRule struct {
-	rule   FringeRule
-	window float64
+	rule            FringeRule
+	window, breadth float64
 }
+
+// Breadth gives the breadth of the window: from the pole's side to the wall beside it.
+func (r WindowRule) Breadth(breadth Metre) WindowRule {
+	wantPositive("Breadth", "breadth of the window", breadth, "m")
+	r.breadth = breadth
+	return r
+}
+
+// MIMEBundle shows the method in words.
+func (r WindowRule) MIMEBundle() map[string]any { return r.rule.MIMEBundle() }
 
 func (r WindowRule) fringing() WindowRule { return r }
 
@@ -129,7 +139,7 @@ func (g GapPart) spec(elem string, beside *LegPart) gap.Spec {
 		s.Face = g.faces.shape
 	}
 	if g.rule != nil {
-		s.Method, s.Window = g.rule.rule.method(), g.rule.window
+		s.Method, s.Window, s.Span = g.rule.rule.method(), g.rule.window, g.rule.breadth
 	} else {
 		s.Method = gap.DefaultFor(s.Face, 0)
 	}

@@ -15,6 +15,7 @@ type InductanceMatrix struct {
 	owner   string // the circuit, for messages
 	caption string
 	remarks []Remark
+	checks  *doc.Table // the readings it was made from
 }
 
 // index finds a winding.
@@ -128,6 +129,9 @@ func (m *InductanceMatrix) tables() []doc.Table {
 	tables := []doc.Table{t}
 	if len(m.matrix.Names) > 1 {
 		tables = append(tables, k)
+	}
+	if m.checks != nil {
+		tables = append(tables, *m.checks)
 	}
 	last := &tables[len(tables)-1]
 	last.Notes = append(last.Notes, noteLines(m.remarks)...)

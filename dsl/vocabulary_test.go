@@ -114,7 +114,7 @@ func TestCircuitBlocks(t *testing.T) {
 // TestFringingChoices gives each method by name.
 func TestFringingChoices(t *testing.T) {
 	var last float64
-	for _, rule := range []Fringing{NoFringe, AddTheGap, LogRule.Window(25 * mm), ConformalMap.Window(25 * mm), FieldSolve.Window(25 * mm)} {
+	for _, rule := range []Fringing{NoFringe, AddTheGap, LogRule.Window(25 * mm), ConformalMap.Window(25 * mm), FieldSolve.Window(25 * mm), FieldSolve.Window(25 * mm).Breadth(9 * mm)} {
 		c := Magnetic("C")
 		c.Ring("core", Leg(fer(), 60*mm, Rect(12*mm, 15*mm)), Gap(0.6*mm).Fringe(rule).As("pole"), Winding("N", 20*turn))
 		l := c.Solve().Inductance("N")
