@@ -91,4 +91,20 @@ func (g *GapComparison) basis() []basisRow {
 	return rows
 }
 
-func (m *InductanceMatrix) basis() []basisRow { m.given(); return []basisRow{inductanceBasis} }
+var readingBasis = basisRow{"inductances", "weighted least squares over the readings; aiding and opposing give M = (La - Lo)/4",
+	"B. S. Guru, H. R. Hiziroglu, Electric Machinery and Transformers, 3rd ed. 2004, ch. 2", "at the meter's frequency and level; resistances left out"}
+
+var equivalentBasis = basisRow{"equivalent circuit", "series = Lp - M^2/Ls, magnetising = M^2/Ls, ratio = M/Ls", "two-port of coupled coils (any textbook)", "two windings, all others open"}
+
+func (m *InductanceMatrix) basis() []basisRow {
+	m.given()
+	if m.checks != nil {
+		return []basisRow{readingBasis}
+	}
+	return []basisRow{solutionBasis, inductanceBasis}
+}
+
+func (e *EquivalentCircuit) basis() []basisRow {
+	e.given()
+	return append(e.matrix.basis(), equivalentBasis)
+}

@@ -67,6 +67,7 @@ func (c *MagneticCircuit) BiasCurve(winding string, from, to Ampere, others ...D
 	named(elem, err)
 	b.curve = curve
 	b.remarks = onePerPart(b.remarks)
+	c.keepAssumptions(b.remarks)
 	return b
 }
 

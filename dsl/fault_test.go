@@ -25,7 +25,7 @@ func TestFaultsByMessage(t *testing.T) {
 		{"unknown path", "UnknownName", func() { op.Flux("center") }, `T1 has no path "center"; it has centre, left, right, window`},
 		{"unknown winding", "UnknownName", func() { op.Inductance("mian") }, `T1 has no winding "mian"; it has main`},
 		{"unknown part", "UnknownName", func() { op.MMF("centre.air") }, `T1 has no part "centre.air"; it has centre.leg, centre.gap, left.leg, right.leg, window.stray`},
-		{"short name that fits several", "Ambiguous", func() { op.MMF("leg") }, `T1: has several parts named "leg"; say which: centre.leg, left.leg, right.leg`},
+		{"short name that fits several", "Ambiguous", func() { op.MMF("leg") }, `T1 has several parts named "leg"; say which: centre.leg, left.leg, right.leg`},
 		{"drive of an unknown winding", "UnknownName", func() { T1.Solve(Currents{"P": 1}) }, `T1 has no winding "P"; it has main`},
 		{"drive twice", "Inconsistent", func() { T1.Solve(Currents{"main": 1}, Linkages{"main": 1e-3}) }, "winding T1.main: is driven twice"},
 		{"nil drive", "BadValue", func() { T1.Solve(nil) }, "is given no drive (nil)"},
@@ -63,7 +63,7 @@ func TestFaultsByMessage(t *testing.T) {
 		{"kelvin for a temperature", "Implausible", func() { T1.At(1373) }, "was kelvin meant?"},
 		{"temperature beyond the data", "OutsideData", func() { T1.At(150 * degC).Solve() }, "FER-A"},
 		{"variant is complete", "Sealed", func() { T1.At(100*degC).Path("x", "bottom -> top", leg) }, "is a variant: nothing can be added to it"},
-		{"change of a stray path", "UnknownName", func() { T1.With(Length("window.stray", 1*mm)) }, `has no gap "window.stray"`},
+		{"change of a stray path", "UnknownName", func() { T1.With(Length("window.stray", 1*mm)) }, `T1 has no gap, leg or magnet "window.stray"`},
 		{"flux density of a stray path", "WrongUse", func() { op.FluxDensity("window") }, "path T1.window: has no leg"},
 		{"fringing rule without its window", "WrongUse", func() {
 			c := Magnetic("T2")

@@ -56,14 +56,26 @@ func (c *MagneticCircuit) partOf(name string, kinds ...partKind) place {
 	case len(found) == 1:
 		return found[0]
 	case len(found) > 1:
-		refuse(magcirc.Ambiguous, c.name, fmt.Sprintf("has several parts named %q", short), "say which: "+strings.Join(fits, ", "))
+		refuse(magcirc.Ambiguous, "", fmt.Sprintf("%s has several parts named %q", c.name, short), "say which: "+strings.Join(fits, ", "))
 	}
-	what := "part"
-	if len(kinds) > 0 {
-		what = string(kinds[0])
-	}
-	c.unknown(what, name, all)
+	c.unknown(kindWords(kinds), name, all)
 	return place{}
+}
+
+// kindWords names what is looked for: "gap, leg or magnet", "part" for every kind.
+func kindWords(kinds []partKind) string {
+	words := "part"
+	for i, k := range kinds {
+		switch {
+		case i == 0:
+			words = string(k)
+		case i == len(kinds)-1:
+			words += " or " + string(k)
+		default:
+			words += ", " + string(k)
+		}
+	}
+	return words
 }
 
 // pathOrPart finds a path, or a part of one (part >= 0), for the questions that both can answer.

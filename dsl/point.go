@@ -30,7 +30,7 @@ func (c *MagneticCircuit) Solve(drives ...Drive) *OperatingPoint {
 	m := c.model()
 	d := c.driveOf(drives)
 	op := &OperatingPoint{circuit: *c, drive: d, model: m, solution: m.solve(d)}
-	op.keepAssumptions()
+	c.keepAssumptions(op.Notes())
 	return op
 }
 

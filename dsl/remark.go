@@ -46,15 +46,15 @@ func Clear() { session.Clear(false) }
 // it.
 func Assumptions() { review.PlaceAssumptions() }
 
-// keepAssumptions enters what a result assumes or extrapolates into the notebook's list.
-func (op *OperatingPoint) keepAssumptions() {
-	for _, n := range op.Notes() {
+// keepAssumptions enters what a result of the circuit assumes or extrapolates into the notebook's list.
+func (c *MagneticCircuit) keepAssumptions(notes []magcirc.Note) {
+	for _, n := range notes {
 		if n.Kind != magcirc.Remark {
 			review.Assume(n.String())
 		}
 	}
-	if !op.circuit.asked {
-		review.Assume(op.circuit.name + ": computed at 25 degC, nobody chose a temperature")
+	if !c.asked {
+		review.Assume(c.name + ": computed at 25 degC, nobody chose a temperature")
 	}
 }
 

@@ -278,7 +278,7 @@ func TestSameBytesTwice(t *testing.T) {
 		op := T1.Solve(Currents{"main": 3.2 * amp})
 		return fmt.Sprint(op.MIMEBundle(), op.MIMEMetadata(), T1.Draw().MIMEBundle(), T1.BiasCurve("main", 0, 6).MIMEBundle(), T1.Fringing("gap").MIMEBundle())
 	}
-	if show() != show() {
+	if first, second := show(), show(); first != second {
 		t.Error("the same results show different bytes")
 	}
 }

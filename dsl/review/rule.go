@@ -52,14 +52,14 @@ func NewRule(kind Kind, unit string, first, second float64) (Rule, error) {
 	switch kind {
 	case AtMost:
 		if first < 0 && unit != celsius {
-			return refuse("limit "+phys.Format(first, unit)+" is negative, and AtMost judges the magnitude", "write Within(low, high) for a signed bound")
+			return refuse("limit "+phys.Format(first, known(unit))+" is negative, and AtMost judges the magnitude", "write Within(low, high) for a signed bound")
 		}
 		r.High = first
 	case AtLeast:
 		r.Low = first
 	case Within:
 		if first >= second {
-			return refuse("the lower bound "+phys.Format(first, unit)+" is not below the upper one, "+phys.Format(second, unit), "write Within(low, high)")
+			return refuse("the lower bound "+phys.Format(first, known(unit))+" is not below the upper one, "+phys.Format(second, known(unit)), "write Within(low, high)")
 		}
 		r.Low, r.High = first, second
 	case Tolerance:

@@ -87,7 +87,7 @@ func TestContext(t *testing.T) {
 	}
 	ctx, cancel := context.WithCancel(context.Background())
 	session.SetContext(ctx)
-	defer session.SetContext(nil)
+	defer session.SetContext(context.Background())
 	cancel()
 	if session.Context().Err() == nil {
 		t.Error("the interrupt does not reach the context")
