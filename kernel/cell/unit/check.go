@@ -1,17 +1,22 @@
 package unit
 
 import (
+	"cmp"
 	"go/ast"
 	"go/token"
 	"go/types"
+	"slices"
 )
 
 // Checker checks the cells of one notebook one after another. It keeps the dimensions of the objects that earlier
 // cells declared. A Checker serves one goroutine at a time.
 type Checker struct {
-	table *table
 	// Quote gives the source text of a piece of the cell, as typed, for messages; nil prints the syntax tree.
 	Quote func(pos, end token.Pos) string
+
+	reader *reader
+	kept   map[any]value
+	named  map[string]types.Object // the object of each name of the notebook
 }
 
 // New makes a checker for the names of a table.
@@ -20,7 +25,7 @@ func New(t *Table) (*Checker, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Checker{table: r}, nil
+	return &Checker{reader: newReader(r), kept: map[any]value{}, named: map[string]types.Object{}}, nil
 }
 
 // Diagnostic is a refusal at a place in the cell.
@@ -32,21 +37,101 @@ type Diagnostic struct {
 // Report is what a check found in one cell.
 type Report struct {
 	Diagnostics []Diagnostic // in order of their positions; empty: the cell may run
-	checker     *Checker
+
+	checker *Checker
+	in      *inference
+	pkg     *types.Package
 }
 
 // Check checks one cell after its type check succeeded. The files hold the cell's declarations and statements, info
-// their types, definitions, uses, selections and instances; pkg is the package of the cell. Nothing is remembered for later
+// their types, definitions, uses and selections; pkg is the package of the cell. Nothing is remembered for later
 // cells until [Report.Commit].
 func (c *Checker) Check(fset *token.FileSet, files []*ast.File, info *types.Info, pkg *types.Package) *Report {
-	return &Report{checker: c}
+	in := &inference{
+		reader: c.reader, kept: c.kept, info: info, quote: c.Quote,
+		declared: map[types.Object]value{}, defined: map[types.Object]bool{},
+	}
+	in.run(files)
+	return &Report{Diagnostics: ordered(in.refused), checker: c, in: in, pkg: pkg}
+}
+
+// ordered sorts refusals by place and keeps one of those that say the same.
+func ordered(list []Diagnostic) []Diagnostic {
+	slices.SortStableFunc(list, func(a, b Diagnostic) int { return cmp.Compare(a.Pos, b.Pos) })
+	return slices.Compact(list)
 }
 
 // Text gives the unit text of an expression of the cell as it is shown: "m2", "A/m"; "" for what has no unit (plain
 // numbers, whole numbers, text), "?" for what could not be traced, "{Vin=V;Core=degC}" for a struct and for a container
-// of structs. A plain number typed as a literal has "#" appended.
-func (r *Report) Text(e ast.Expr) string { return "?" }
+// of structs. A plain number typed as a literal gives "#".
+func (r *Report) Text(e ast.Expr) string {
+	v, ok := r.in.values[e]
+	if !ok {
+		v = lost
+	}
+	return r.in.textOf(e, r.in.info.TypeOf(e), v)
+}
 
 // Commit keeps the dimensions of the cell's objects for the cells that follow. Call it when the cell's names are
 // committed.
-func (r *Report) Commit() {}
+func (r *Report) Commit() {
+	for key, v := range r.in.env {
+		switch k := key.(type) {
+		case types.Object:
+			if r.lasting(k) {
+				r.keep(k, v)
+			}
+		case result:
+			if fn, ok := k.of.(*types.Func); ok {
+				r.checker.kept[k] = v
+				r.name(fn)
+			}
+		}
+	}
+	for obj, v := range r.in.declared {
+		if r.lasting(obj) {
+			delete(r.checker.kept, obj)
+			r.checker.kept[declaredKey{obj}] = v
+			r.name(obj)
+		}
+	}
+}
+
+// keep keeps what is known of an object: all that was assigned to it since it was defined.
+func (r *Report) keep(obj types.Object, v value) {
+	if old, ok := r.checker.kept[obj]; ok && !r.in.defined[obj] {
+		v = join(old, v)
+	}
+	delete(r.checker.kept, declaredKey{obj})
+	r.checker.kept[obj] = v
+	r.name(obj)
+}
+
+// name notes the object of a name and forgets what was known of the one before.
+func (r *Report) name(obj types.Object) {
+	if v, ok := obj.(*types.Var); ok && v.IsField() {
+		return
+	}
+	if fn, ok := obj.(*types.Func); ok && fn.Signature().Recv() != nil {
+		return
+	}
+	c := r.checker
+	if old := c.named[obj.Name()]; old != nil && old != obj {
+		delete(c.kept, old)
+		delete(c.kept, declaredKey{old})
+		if fn, ok := old.(*types.Func); ok {
+			for i := range fn.Signature().Results().Len() {
+				delete(c.kept, result{fn, i})
+			}
+		}
+	}
+	c.named[obj.Name()] = obj
+}
+
+// lasting tells whether later cells can meet an object: a field, or a name of the notebook.
+func (r *Report) lasting(obj types.Object) bool {
+	if v, ok := obj.(*types.Var); ok && v.IsField() {
+		return true
+	}
+	return obj.Parent() == nil && obj.Pkg() == r.pkg || obj.Parent() == r.pkg.Scope() || r.in.kept[obj].kind != unset
+}

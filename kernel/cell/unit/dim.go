@@ -144,8 +144,8 @@ func (r *table) text(d Dim) string {
 // composed looks for d as "U m2", "U/m", "U2" and the like: a symbol times or divided by a power of another.
 func (r *table) composed(d Dim) string {
 	best := ""
-	take := func(s string) {
-		if best == "" || len(s) < len(best) {
+	take := func(s string) { // the shortest, products before quotients
+		if best == "" || len(s)+strings.Count(s, "/") < len(best)+strings.Count(best, "/") {
 			best = s
 		}
 	}
@@ -159,27 +159,32 @@ func (r *table) composed(d Dim) string {
 	if best != "" {
 		return best
 	}
-	for _, u := range r.Symbols {
-		if u.Name == "degC" || r.symbols[u.Name] == Number {
-			continue
-		}
-		rest, ok := d.mul(r.symbols[u.Name], -1)
-		if !ok {
-			continue
-		}
-		for _, v := range r.Symbols {
-			if v.Name == "degC" || r.symbols[v.Name] == Number {
-				continue
-			}
-			for _, p := range []float64{1, -1, 2, -2, 3, -3, 0.5, -0.5} {
-				if e, ok := r.symbols[v.Name].pow(p); ok && e == rest {
-					take(productText(u.Name, v.Name, p))
+	for _, base := range []bool{true, false} {
+		for _, u := range r.Symbols {
+			for _, v := range r.Symbols {
+				if isBase(v) != base || r.symbols[u.Name].Point || r.symbols[v.Name].Point {
+					continue
+				}
+				rest, ok := d.mul(r.symbols[u.Name], -1)
+				if !ok || r.symbols[u.Name] == Number || r.symbols[v.Name] == Number {
+					continue
+				}
+				for _, p := range []float64{1, -1, 2, -2, 3, -3, 0.5, -0.5} {
+					if e, ok := r.symbols[v.Name].pow(p); ok && e == rest {
+						take(productText(u.Name, v.Name, p))
+					}
 				}
 			}
+		}
+		if best != "" {
+			return best
 		}
 	}
 	return best
 }
+
+// isBase tells whether a symbol is a base unit.
+func isBase(s Symbol) bool { return s.Name == s.Base }
 
 // powerText writes a symbol with its power: "m2", "1/H".
 func powerText(name string, p float64) string {

@@ -24,13 +24,14 @@ import (
 
 // Table is what the check knows about the names of a vocabulary. Unit texts are as [ParseDim] reads them.
 type Table struct {
-	Symbols   []Symbol          // symbols of unit texts; the first of a dimension is the one that is shown
-	Words     map[string]string // words for units without a symbol, by unit text: "m2" -> "square metre"
-	Bare      []string          // units that a bare number may stand for
-	Constants []Constant        // unit constants; the first of a unit is the one that hints suggest
-	Aliases   map[string]string // alias type -> unit text: "Metre" -> "m"
-	Value     string            // alias type of a number in the unit that a call is about
-	Functions map[string]string // further names of functions: "sqrt" -> "math.Sqrt"
+	Symbols   []Symbol           // symbols of unit texts; the first of a dimension is the one that is shown
+	Words     map[string]string  // words for units without a symbol, by unit text: "m2" -> "square metre"
+	Bare      []string           // units that a bare number may stand for
+	Constants []Constant         // unit constants; the first of a unit is the one that hints suggest
+	Aliases   map[string]string  // alias type -> unit text: "Metre" -> "m"
+	Value     string             // alias type of a number in the unit that a call is about
+	Functions map[string]string  // further names of functions: "sqrt" -> "math.Sqrt"
+	Powers    map[string]float64 // functions that give a power of their argument: "dsl.Squared" -> 2
 }
 
 // Symbol is a unit symbol.

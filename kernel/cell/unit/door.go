@@ -1,0 +1,153 @@
+package unit
+
+import (
+	"go/ast"
+	"go/constant"
+	"go/printer"
+	"go/token"
+	"math"
+	"strings"
+)
+
+// place names in messages what a value goes into: "length of Gap", "field Peak of Case".
+type place struct{ what string }
+
+// door checks a value that goes where a unit is due. What is untraced passes, and 0, and a bare number or a table of
+// bare numbers where the unit has no symbol of its own or data are given.
+func (in *inference) door(v value, want quantity, where place, from ast.Expr) {
+	switch {
+	case v.kind != known:
+	case v.dim == want.dim:
+		in.angle(v, want, where, from)
+	case v.dim == Number && (in.bare[want.dim] || v.table):
+	case v.dim == Number:
+		in.refuse(from, where.what+" wants "+in.word(want)+"; "+in.bareHint(from, want))
+	default:
+		in.refuse(from, where.what+" wants "+in.word(want)+"; "+in.source(from)+" is in "+in.word(v.quantity)+pointHint(v.dim, want.dim))
+	}
+}
+
+// angle refuses a bare number of more than a full turn where an angle is due: degrees were meant.
+func (in *inference) angle(v value, want quantity, where place, from ast.Expr) {
+	if want.as != radian || v.as == radian || !isLiteral(from) {
+		return
+	}
+	tv := in.info.Types[from]
+	if tv.Value == nil {
+		return
+	}
+	if x, _ := constant.Float64Val(constant.ToFloat(tv.Value)); math.Abs(x) > 2*math.Pi {
+		in.refuse(from, where.what+" wants an angle; "+in.source(from)+" alone is in radian: write "+in.source(from)+"*"+in.hints[radian])
+	}
+}
+
+// bareHint says what to write in place of a number without unit.
+func (in *inference) bareHint(from ast.Expr, want quantity) string {
+	unit := in.hints[want.as]
+	if unit == "" {
+		unit = in.hintDims[want.dim]
+	}
+	s := in.source(from) + " has no unit"
+	if unit == "" {
+		return s
+	}
+	return s + ": write " + in.times(from, unit)
+}
+
+// times writes an expression times a unit.
+func (in *inference) times(e ast.Expr, unit string) string {
+	s := in.source(e)
+	if b, ok := ast.Unparen(e).(*ast.BinaryExpr); ok && e == ast.Expr(b) && (b.Op == token.ADD || b.Op == token.SUB) {
+		s = "(" + s + ")"
+	}
+	return s + "*" + unit
+}
+
+// pointHint tells temperatures and their differences apart.
+func pointHint(got, want Dim) string {
+	switch {
+	case got.Point && got.difference() == want:
+		return ", a temperature; a difference is written with kelvin"
+	case want.Point && want.difference() == got:
+		return ", a difference; a temperature is written with degC"
+	}
+	return ""
+}
+
+// refuseSum refuses x+y or x-y.
+func (in *inference) refuseSum(op token.Token, ex ast.Expr, x value, ey ast.Expr, y value) {
+	text := "adds "
+	if op == token.SUB {
+		text = "subtracts "
+	}
+	sx, sy := in.source(ex), in.source(ey)
+	if x.dim.Point && y.dim.Point {
+		in.refuseSpan(ex.Pos(), ey.End(), sx+" and "+sy+" are both temperatures, whose sum means nothing; a difference is written with kelvin")
+		return
+	}
+	first, second := x, y
+	link := " and "
+	if op == token.SUB {
+		first, second, link = y, x, " from "
+	}
+	in.refuseSpan(ex.Pos(), ey.End(), sx+" "+op.String()+" "+sy+" "+text+in.word(first.quantity)+link+in.word(second.quantity)+sumHint(x.dim, y.dim))
+}
+
+// sumHint tells temperatures and their differences apart in a sum.
+func sumHint(x, y Dim) string {
+	if x.Point != y.Point && x.difference() == y.difference() {
+		return "; a temperature less a difference is a temperature, not the reverse"
+	}
+	return ""
+}
+
+// refuseCompare refuses to compare x and y.
+func (in *inference) refuseCompare(at, ex ast.Expr, x value, ey ast.Expr, y value) {
+	text := in.source(at) + " compares " + in.word(x.quantity) + " with " + in.word(y.quantity)
+	if x.dim.Point != y.dim.Point && x.dim.difference() == y.dim.difference() {
+		text += "; degC is a temperature, kelvin a difference"
+	}
+	in.refuse(at, text)
+}
+
+// refuse notes a refusal at an expression, in the last pass.
+func (in *inference) refuse(e ast.Expr, text string) { in.refuseSpan(e.Pos(), e.End(), text) }
+
+func (in *inference) refuseSpan(pos, end token.Pos, text string) {
+	if in.final {
+		in.refused = append(in.refused, Diagnostic{pos, end, text})
+	}
+}
+
+// source gives an expression as it was typed.
+func (in *inference) source(e ast.Expr) string {
+	if in.quote != nil {
+		if s := in.quote(e.Pos(), e.End()); s != "" && !strings.Contains(s, "\n") {
+			return s
+		}
+	}
+	var b strings.Builder
+	if err := (&printer.Config{Mode: printer.RawFormat}).Fprint(&b, token.NewFileSet(), e); err != nil {
+		return "this"
+	}
+	s, _, more := strings.Cut(b.String(), "\n")
+	if more {
+		s += " ..."
+	}
+	return s
+}
+
+// isLiteral tells whether an expression is typed in numbers alone.
+func isLiteral(e ast.Expr) bool {
+	switch e := e.(type) {
+	case *ast.BasicLit:
+		return e.Kind == token.INT || e.Kind == token.FLOAT
+	case *ast.ParenExpr:
+		return isLiteral(e.X)
+	case *ast.UnaryExpr:
+		return isLiteral(e.X)
+	case *ast.BinaryExpr:
+		return isLiteral(e.X) && isLiteral(e.Y)
+	}
+	return false
+}
