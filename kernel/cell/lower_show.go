@@ -1,0 +1,88 @@
+package cell
+
+import (
+	"go/ast"
+	"go/types"
+	"strings"
+)
+
+// shown tells how a value of the cell is written: its static type, which alone knows the names as typed, and its unit.
+type shown struct {
+	typ  types.Type
+	unit string
+	top  bool // the value of an expression statement, not of a call of Show
+}
+
+func (s *Session) addMark(m mark) int {
+	s.marks = append(s.marks, m)
+	return len(s.marks) - 1
+}
+
+// showValue writes the call that shows a value.
+func (l *lowering) showValue(x ast.Expr) {
+	top := l.fn.top
+	if t, ok := l.info.TypeOf(x).(*types.Tuple); ok {
+		names := l.tuple(x)
+		l.flush()
+		for i := 0; i < t.Len(); i++ {
+			l.showText(t.At(i).Type(), "?", names[i], top)
+		}
+		return
+	}
+	t := l.info.TypeOf(x)
+	text := l.expr(x)
+	l.flush()
+	l.showText(t, l.unit(x), text, top)
+}
+
+func (l *lowering) showText(t types.Type, unit, text string, top bool) {
+	l.s.shows = append(l.s.shows, shown{typ: t, unit: strings.TrimSuffix(unit, "#"), top: top})
+	k := len(l.s.shows) - 1
+	if isCellType(t) && !types.IsInterface(t) {
+		if has(t, "MIMEBundle", "map[string]any") {
+			l.line("%s(%d, %s.MIMEBundle())", l.nb("ShowBundle"), k, paren(text))
+			return
+		}
+		for _, m := range []string{"String", "Error"} {
+			if has(t, m, "string") {
+				l.line("%s(%d, %s.%s())", l.nb("ShowText"), k, paren(text), m)
+				return
+			}
+		}
+	}
+	l.line("%s(%d, %s)", l.nb("Show"), k, text)
+}
+
+// has tells whether values of a type have a method without parameters that gives the named result.
+func has(t types.Type, method, result string) bool {
+	o, _, _ := types.LookupFieldOrMethod(t, false, nil, method)
+	f, ok := o.(*types.Func)
+	if !ok {
+		return false
+	}
+	sig := f.Type().(*types.Signature)
+	return sig.Params().Len() == 0 && sig.Results().Len() == 1 && types.TypeString(types.Unalias(sig.Results().At(0).Type()), nil) == result
+}
+
+// help writes the call that shows the help of a function named without calling it.
+func (l *lowering) help(x ast.Expr) bool {
+	var o types.Object
+	name := ""
+	switch f := ast.Unparen(x).(type) {
+	case *ast.Ident:
+		o, name = l.info.Uses[f], f.Name
+	case *ast.SelectorExpr:
+		if l.info.Selections[f] != nil {
+			return false
+		}
+		o = l.info.Uses[f.Sel]
+		if o != nil && o.Pkg() != nil {
+			name = o.Pkg().Name() + "." + f.Sel.Name
+		}
+	}
+	if _, ok := o.(*types.Func); !ok {
+		return false
+	}
+	l.line("%s(%q)", l.nb("Help"), name)
+	return true
+}

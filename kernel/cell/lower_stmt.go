@@ -1,0 +1,411 @@
+package cell
+
+import (
+	"go/ast"
+	"go/token"
+	"go/types"
+	"strings"
+)
+
+func (l *lowering) block(list []ast.Stmt) {
+	for _, s := range list {
+		l.stmt(s)
+	}
+}
+
+// stmt lowers a statement: its mark, what is due before it, itself.
+func (l *lowering) stmt(s ast.Stmt) {
+	switch s := s.(type) {
+	case nil:
+	case *ast.EmptyStmt:
+		if name := l.r.help[s]; name != "" {
+			l.line("%s(%q)", l.nb("Help"), name)
+		}
+	case *ast.LabeledStmt:
+		l.labeled(s)
+	case *ast.ExprStmt:
+		l.exprStmt(s)
+	case *ast.AssignStmt:
+		if l.fallible(s) {
+			l.at(s)
+		}
+		l.assign(s)
+	case *ast.IncDecStmt:
+		if l.fallible(s.X) {
+			l.at(s)
+		}
+		op := "+="
+		if s.Tok == token.DEC {
+			op = "-="
+		}
+		x := l.place(s.X)
+		one := l.typ(l.info.TypeOf(s.X)) + "(1)"
+		l.flush()
+		l.line("%s %s %s", x, op, one)
+	case *ast.DeclStmt:
+		l.declStmt(s.Decl.(*ast.GenDecl))
+	case *ast.BlockStmt:
+		l.line("{")
+		l.ind++
+		l.block(s.List)
+		l.ind--
+		l.line("}")
+	case *ast.IfStmt:
+		l.ifStmt(s)
+	case *ast.ForStmt:
+		l.forStmt(s, "")
+	case *ast.RangeStmt:
+		l.rangeStmt(s, "")
+	case *ast.SwitchStmt:
+		l.switchStmt(s, "")
+	case *ast.TypeSwitchStmt:
+		l.typeSwitch(s, "")
+	case *ast.ReturnStmt:
+		l.returnStmt(s)
+	case *ast.BranchStmt:
+		l.branch(s)
+	default:
+		panic("statement without lowered form")
+	}
+}
+
+func (l *lowering) labeled(s *ast.LabeledStmt) {
+	label := s.Label.Name + "__label"
+	switch b := s.Stmt.(type) {
+	case *ast.ForStmt:
+		l.forStmt(b, label)
+	case *ast.RangeStmt:
+		l.rangeStmt(b, label)
+	case *ast.SwitchStmt:
+		l.switchStmt(b, label)
+	case *ast.TypeSwitchStmt:
+		l.typeSwitch(b, label)
+	default:
+		l.stmt(s.Stmt)
+	}
+}
+
+func (l *lowering) label(name string) {
+	if name != "" {
+		l.line("%s:", name)
+	}
+}
+
+func (l *lowering) branch(s *ast.BranchStmt) {
+	label := ""
+	if s.Label != nil {
+		label = s.Label.Name + "__label"
+	}
+	switch s.Tok {
+	case token.CONTINUE:
+		for i := len(l.fn.loops) - 1; i >= 0; i-- {
+			if lp := l.fn.loops[i]; label == "" || lp.label == label {
+				for _, t := range lp.next {
+					l.line("%s", t)
+				}
+				break
+			}
+		}
+		l.line("%s", strings.TrimSpace("continue "+label))
+	case token.BREAK:
+		l.line("%s", strings.TrimSpace("break "+label))
+	case token.FALLTHROUGH:
+		l.line("fallthrough")
+	}
+}
+
+// exprStmt lowers an expression that stands alone; at the top level of a cell its value is shown.
+func (l *lowering) exprStmt(s *ast.ExprStmt) {
+	l.at(s)
+	if l.fn.top && l.isTop(s) {
+		if l.help(s.X) {
+			return
+		}
+		if t := l.info.TypeOf(s.X); t != nil && !l.info.Types[s.X].IsVoid() {
+			l.showValue(s.X)
+			return
+		}
+	}
+	call, ok := ast.Unparen(s.X).(*ast.CallExpr)
+	if !ok {
+		l.line("_ = %s", l.flushed(l.expr(s.X)))
+		return
+	}
+	if l.clear(call) {
+		return
+	}
+	text := l.call(call, true)
+	restore := l.restoresDepth(call)
+	l.flush()
+	if restore {
+		d := l.name("d")
+		l.line("%s := nb__depth", d)
+		defer l.line("nb__depth = %s", d)
+	}
+	if text != "" {
+		l.line("%s", text)
+	}
+}
+
+// restoresDepth tells whether a call may come back from deep within functions of the notebook by a failure that the
+// vocabulary caught.
+func (l *lowering) restoresDepth(call *ast.CallExpr) bool {
+	if racing {
+		return false
+	}
+	for _, a := range call.Args {
+		if t := l.info.TypeOf(a); t != nil {
+			if _, ok := t.Underlying().(*types.Signature); ok && foreignCallee(l.info, call) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+func foreignCallee(info *types.Info, call *ast.CallExpr) bool {
+	switch f := ast.Unparen(call.Fun).(type) {
+	case *ast.Ident:
+		o := info.Uses[f]
+		return o != nil && foreign(o)
+	case *ast.SelectorExpr:
+		o := info.Uses[f.Sel]
+		return o != nil && foreign(o)
+	}
+	return false
+}
+
+// isTop tells whether a statement is one of the cell's top level.
+func (l *lowering) isTop(s ast.Stmt) bool {
+	for _, t := range l.r.stmts {
+		if unlabel(t) == s {
+			return true
+		}
+	}
+	return false
+}
+
+// flushed gives a text after writing what is due before it.
+func (l *lowering) flushed(text string) string {
+	l.flush()
+	return text
+}
+
+// clear lowers the builtin of this name.
+func (l *lowering) clear(call *ast.CallExpr) bool {
+	id, ok := ast.Unparen(call.Fun).(*ast.Ident)
+	if !ok {
+		return false
+	}
+	if b, ok := l.info.Uses[id].(*types.Builtin); !ok || b.Name() != "clear" {
+		return false
+	}
+	x := l.hold(l.expr(call.Args[0]))
+	l.flush()
+	k := l.name("k")
+	switch t := l.info.TypeOf(call.Args[0]).Underlying().(type) {
+	case *types.Map:
+		l.line("for %s := range %s { delete(%s, %s) }", k, x, x, k)
+	case *types.Slice:
+		l.line("for %s := range %s { %s[%s] = %s }", k, x, x, k, l.zero(t.Elem()))
+	}
+	return true
+}
+
+func (l *lowering) declStmt(d *ast.GenDecl) {
+	if d.Tok != token.VAR {
+		return // types move to the top when they are used; constants are folded
+	}
+	for _, sp := range d.Specs {
+		v := sp.(*ast.ValueSpec)
+		if len(v.Values) > 0 {
+			if l.fallible(v) {
+				l.at(v)
+			}
+			lhs := make([]ast.Expr, len(v.Names))
+			for i, n := range v.Names {
+				lhs[i] = n
+			}
+			l.store(lhs, v.Values, true, v.Type)
+			continue
+		}
+		for _, n := range v.Names {
+			o := l.info.Defs[n]
+			if n.Name == "_" || o == nil {
+				continue
+			}
+			if g := l.r.lives[o]; g != nil {
+				l.line("%s = %s", g.lowered, l.zero(o.Type()))
+			} else {
+				l.line("var %s %s", l.local(o), l.typ(o.Type()))
+			}
+		}
+	}
+}
+
+func (l *lowering) ifStmt(s *ast.IfStmt) {
+	if s.Init != nil {
+		l.line("{")
+		l.ind++
+		l.stmt(s.Init)
+		defer func() {
+			l.ind--
+			l.line("}")
+		}()
+	}
+	if l.fallible(s.Cond) {
+		l.at(s.Cond)
+	}
+	l.line("if %s {", l.flushed(l.expr(s.Cond)))
+	l.ind++
+	l.block(s.Body.List)
+	l.ind--
+	if s.Else == nil {
+		l.line("}")
+		return
+	}
+	l.line("} else {")
+	l.ind++
+	if b, ok := s.Else.(*ast.BlockStmt); ok {
+		l.block(b.List)
+	} else {
+		l.stmt(s.Else)
+	}
+	l.ind--
+	l.line("}")
+}
+
+func (l *lowering) switchStmt(s *ast.SwitchStmt, label string) {
+	l.line("{")
+	l.ind++
+	defer func() {
+		l.ind--
+		l.line("}")
+	}()
+	if s.Init != nil {
+		l.stmt(s.Init)
+	}
+	l.at(s)
+	tag := "true"
+	var tagType types.Type = types.Typ[types.Bool]
+	if s.Tag != nil {
+		tagType = l.info.TypeOf(s.Tag)
+		tag = l.hold(l.expr(s.Tag))
+	}
+	var heads []string
+	for _, c := range s.Body.List {
+		var list []string
+		for _, e := range c.(*ast.CaseClause).List {
+			if s.Tag == nil {
+				list = append(list, l.expr(e))
+			} else {
+				list = append(list, l.convert(e, tagType))
+			}
+		}
+		heads = append(heads, strings.Join(list, ", "))
+	}
+	l.flush()
+	l.label(label)
+	if s.Tag == nil {
+		l.line("switch {")
+	} else {
+		l.line("switch %s {", tag)
+	}
+	for i, c := range s.Body.List {
+		l.clause(heads[i], c.(*ast.CaseClause).Body)
+	}
+	l.line("}")
+}
+
+func (l *lowering) clause(head string, body []ast.Stmt) {
+	if head == "" {
+		l.line("default:")
+	} else {
+		l.line("case %s:", head)
+	}
+	l.ind++
+	l.block(body)
+	l.ind--
+}
+
+func (l *lowering) typeSwitch(s *ast.TypeSwitchStmt, label string) {
+	l.line("{")
+	l.ind++
+	defer func() {
+		l.ind--
+		l.line("}")
+	}()
+	if s.Init != nil {
+		l.stmt(s.Init)
+	}
+	l.at(s)
+	var x ast.Expr
+	bound := ""
+	switch a := s.Assign.(type) {
+	case *ast.AssignStmt:
+		x = a.Rhs[0].(*ast.TypeAssertExpr).X
+		bound = l.name(a.Lhs[0].(*ast.Ident).Name)
+	case *ast.ExprStmt:
+		x = a.X.(*ast.TypeAssertExpr).X
+	}
+	v := l.hold(l.expr(x))
+	l.flush()
+	l.label(label)
+	head := v + ".(type)"
+	if bound != "" {
+		head = bound + " := " + head
+	}
+	l.line("switch %s {", head)
+	for _, c := range s.Body.List {
+		cl := c.(*ast.CaseClause)
+		var list []string
+		for _, e := range cl.List {
+			if id, ok := e.(*ast.Ident); ok && id.Name == "nil" {
+				list = append(list, "nil")
+			} else {
+				list = append(list, l.typ(l.info.TypeOf(e)))
+			}
+		}
+		if o := l.info.Implicits[cl]; o != nil {
+			l.locals[o] = bound
+			if len(cl.List) != 1 {
+				l.locals[o] = v
+			}
+		}
+		l.clause(strings.Join(list, ", "), cl.Body)
+	}
+	l.line("}")
+}
+
+func (l *lowering) returnStmt(s *ast.ReturnStmt) {
+	if l.fallible(s) {
+		l.at(s)
+	}
+	var texts []string
+	res := l.fn.sig.Results()
+	if len(s.Results) == 1 && res.Len() > 1 {
+		texts = l.tuple(s.Results[0])
+	} else {
+		var to []types.Type
+		for i := range s.Results {
+			to = append(to, res.At(i).Type())
+		}
+		texts = l.list(s.Results, to)
+	}
+	if l.fn.guarded {
+		for i, t := range texts {
+			if !simple(t) {
+				texts[i] = l.hold(t)
+			}
+		}
+		if len(texts) > 0 {
+			l.flush()
+		}
+		l.leave()
+	}
+	l.flush()
+	l.line("%s", strings.TrimSpace("return "+strings.Join(texts, ", ")))
+}
+
+// simple tells whether a text is a name or a literal.
+func simple(t string) bool { return !strings.ContainsAny(t, "([{ .*&") }

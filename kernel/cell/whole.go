@@ -1,0 +1,435 @@
+package cell
+
+import (
+	"go/ast"
+	"go/constant"
+	"go/token"
+	"go/types"
+
+	"golang.org/x/tools/go/ast/astutil"
+)
+
+// Whole numbers beside quantities. An int variable counts as float64 where Go would refuse it beside one, and beside a
+// unit or a number written with a point or an exponent. The conversions are written into the tree; the cell is then
+// checked again.
+
+// widen writes the conversions that are due into the cell; it tells whether there were any.
+func (c *checking) widen() bool {
+	w := &widening{c: c}
+	for _, d := range c.p.decls {
+		w.walk(d)
+	}
+	w.walk(c.p.body)
+	return w.n > 0
+}
+
+type widening struct {
+	c       *checking
+	n       int
+	results []*types.Signature
+}
+
+func (w *widening) walk(n ast.Node) {
+	astutil.Apply(n, func(cur *astutil.Cursor) bool {
+		switch n := cur.Node().(type) {
+		case *ast.FuncDecl:
+			w.results = append(w.results, w.signature(n.Type))
+		case *ast.FuncLit:
+			w.results = append(w.results, w.signature(n.Type))
+		}
+		return true
+	}, func(cur *astutil.Cursor) bool {
+		switch n := cur.Node().(type) {
+		case *ast.FuncDecl, *ast.FuncLit:
+			w.results = w.results[:len(w.results)-1]
+		case *ast.BinaryExpr:
+			w.binary(n)
+		case *ast.CallExpr:
+			w.call(n)
+		case *ast.CompositeLit:
+			w.composite(n)
+		case *ast.AssignStmt:
+			w.assign(n)
+		case *ast.ValueSpec:
+			if n.Type != nil && w.isFloatType(n.Type) {
+				for i := range n.Values {
+					w.fix(&n.Values[i])
+				}
+			}
+		case *ast.ReturnStmt:
+			w.returns(n)
+		}
+		return true
+	})
+}
+
+func (w *widening) signature(t *ast.FuncType) *types.Signature {
+	sig := &types.Signature{}
+	if tv, ok := w.c.info.Types[t]; ok {
+		if s, ok := tv.Type.(*types.Signature); ok {
+			return s
+		}
+	}
+	return sig
+}
+
+// fix writes float64(..) around a whole-number variable or an expression of such.
+func (w *widening) fix(e *ast.Expr) {
+	if !w.isInt(*e) {
+		return
+	}
+	x := *e
+	*e = &ast.CallExpr{
+		Fun: &ast.Ident{NamePos: x.Pos(), Name: "float64"}, Lparen: x.Pos(), Args: []ast.Expr{x}, Rparen: x.End() - 1,
+	}
+	w.n++
+}
+
+// isInt tells whether an expression is a whole number that is no constant.
+func (w *widening) isInt(e ast.Expr) bool {
+	tv, ok := w.c.info.Types[e]
+	if !ok || tv.Value != nil || tv.Type == nil || !tv.IsValue() {
+		return false
+	}
+	b, ok := types.Unalias(tv.Type).(*types.Basic)
+	return ok && b.Info()&types.IsInteger != 0 && b.Info()&types.IsUntyped == 0
+}
+
+// isFloat tells whether an expression is a float64 that is no constant, as far as it can be told where checks failed.
+func (w *widening) isFloat(e ast.Expr) bool {
+	if tv, ok := w.c.info.Types[e]; ok && tv.Type != nil && tv.Type != types.Typ[types.Invalid] {
+		return tv.Value == nil && tv.IsValue() && isFloat64(tv.Type)
+	}
+	switch e := ast.Unparen(e).(type) {
+	case *ast.BinaryExpr:
+		switch e.Op {
+		case token.ADD, token.SUB, token.MUL, token.QUO:
+			return w.isFloat(e.X) || w.isFloat(e.Y)
+		}
+	case *ast.UnaryExpr:
+		return w.isFloat(e.X)
+	case *ast.CallExpr:
+		if id, ok := e.Fun.(*ast.Ident); ok && id.Name == "float64" {
+			return true
+		}
+		if sig, ok := w.typ(e.Fun).(*types.Signature); ok && sig.Results().Len() == 1 {
+			return isFloat64(sig.Results().At(0).Type())
+		}
+	}
+	return false
+}
+
+func isFloat64(t types.Type) bool {
+	b, ok := types.Unalias(t).(*types.Basic)
+	return ok && b.Kind() == types.Float64
+}
+
+// isPointed tells whether a constant expression counts as a real number by the way it is written: with a point, an
+// exponent or a unit.
+func (w *widening) isPointed(e ast.Expr) bool {
+	switch e := ast.Unparen(e).(type) {
+	case *ast.BasicLit:
+		return e.Kind == token.FLOAT
+	case *ast.Ident:
+		o, ok := w.c.info.Uses[e].(*types.Const)
+		return ok && isRealConst(o.Type())
+	case *ast.SelectorExpr:
+		o, ok := w.c.info.Uses[e.Sel].(*types.Const)
+		return ok && isRealConst(o.Type())
+	case *ast.UnaryExpr:
+		return w.isPointed(e.X)
+	case *ast.BinaryExpr:
+		switch e.Op {
+		case token.ADD, token.SUB, token.MUL, token.QUO:
+			return w.isConst(e.X) && w.isConst(e.Y) && (w.isPointed(e.X) || w.isPointed(e.Y))
+		}
+	}
+	return false
+}
+
+func (w *widening) isConst(e ast.Expr) bool {
+	if tv, ok := w.c.info.Types[e]; ok && tv.Value != nil {
+		return true
+	}
+	return w.isPointed(e) || isIntLit(e)
+}
+
+func isIntLit(e ast.Expr) bool {
+	b, ok := ast.Unparen(e).(*ast.BasicLit)
+	return ok && b.Kind == token.INT
+}
+
+func isRealConst(t types.Type) bool {
+	b, ok := types.Unalias(t).(*types.Basic)
+	return ok && (b.Kind() == types.UntypedFloat || b.Kind() == types.Float64)
+}
+
+func (w *widening) binary(n *ast.BinaryExpr) {
+	switch n.Op {
+	case token.ADD, token.SUB, token.MUL, token.QUO, token.LSS, token.LEQ, token.GTR, token.GEQ, token.EQL, token.NEQ:
+	default:
+		return
+	}
+	if w.isFloat(n.Y) || w.isPointed(n.Y) {
+		w.fix(&n.X)
+	}
+	if w.isFloat(n.X) || w.isPointed(n.X) {
+		w.fix(&n.Y)
+	}
+}
+
+func (w *widening) typ(e ast.Expr) types.Type {
+	if tv, ok := w.c.info.Types[e]; ok && tv.Type != nil {
+		return tv.Type.Underlying()
+	}
+	return nil
+}
+
+func (w *widening) isFloatType(e ast.Expr) bool {
+	tv, ok := w.c.info.Types[e]
+	return ok && tv.IsType() && isFloat64(tv.Type)
+}
+
+func (w *widening) call(n *ast.CallExpr) {
+	if id, ok := ast.Unparen(n.Fun).(*ast.Ident); ok {
+		if b, ok := w.c.info.Uses[id].(*types.Builtin); ok {
+			w.builtin(b.Name(), n)
+			return
+		}
+	}
+	sig, ok := w.typ(n.Fun).(*types.Signature)
+	if !ok || n.Ellipsis.IsValid() {
+		return
+	}
+	params := sig.Params()
+	for i := range n.Args {
+		var t types.Type
+		switch {
+		case sig.Variadic() && i >= params.Len()-1:
+			t = params.At(params.Len() - 1).Type().(*types.Slice).Elem()
+		case i < params.Len():
+			t = params.At(i).Type()
+		}
+		if t != nil && isFloat64(t) {
+			w.fix(&n.Args[i])
+		}
+	}
+}
+
+func (w *widening) builtin(name string, n *ast.CallExpr) {
+	switch name {
+	case "append":
+		if len(n.Args) == 0 || n.Ellipsis.IsValid() {
+			return
+		}
+		if s, ok := w.typ(n.Args[0]).(*types.Slice); ok && isFloat64(s.Elem()) {
+			for i := range n.Args[1:] {
+				w.fix(&n.Args[i+1])
+			}
+		}
+	case "min", "max":
+		real := false
+		for _, a := range n.Args {
+			real = real || w.isFloat(a) || w.isPointed(a)
+		}
+		for i := range n.Args {
+			if real {
+				w.fix(&n.Args[i])
+			}
+		}
+	}
+}
+
+func (w *widening) composite(n *ast.CompositeLit) {
+	switch t := w.typ(n).(type) {
+	case *types.Slice:
+		w.elements(n, t.Elem())
+	case *types.Array:
+		w.elements(n, t.Elem())
+	case *types.Map:
+		w.elements(n, t.Elem())
+	case *types.Struct:
+		for i, e := range n.Elts {
+			if kv, ok := e.(*ast.KeyValueExpr); ok {
+				id, _ := kv.Key.(*ast.Ident)
+				for j := 0; id != nil && j < t.NumFields(); j++ {
+					if t.Field(j).Name() == id.Name && isFloat64(t.Field(j).Type()) {
+						w.fix(&kv.Value)
+					}
+				}
+			} else if i < t.NumFields() && isFloat64(t.Field(i).Type()) {
+				w.fix(&n.Elts[i])
+			}
+		}
+	}
+}
+
+func (w *widening) elements(n *ast.CompositeLit, elem types.Type) {
+	if !isFloat64(elem) {
+		return
+	}
+	for i, e := range n.Elts {
+		if kv, ok := e.(*ast.KeyValueExpr); ok {
+			w.fix(&kv.Value)
+		} else {
+			w.fix(&n.Elts[i])
+		}
+	}
+}
+
+func (w *widening) assign(n *ast.AssignStmt) {
+	if n.Tok == token.DEFINE || len(n.Lhs) != len(n.Rhs) {
+		return
+	}
+	for i, l := range n.Lhs {
+		if w.isFloat(l) {
+			w.fix(&n.Rhs[i])
+		}
+	}
+}
+
+func (w *widening) returns(n *ast.ReturnStmt) {
+	if len(w.results) == 0 {
+		return
+	}
+	sig := w.results[len(w.results)-1]
+	if sig.Results() == nil || sig.Results().Len() != len(n.Results) {
+		return
+	}
+	for i := range n.Results {
+		if isFloat64(sig.Results().At(i).Type()) {
+			w.fix(&n.Results[i])
+		}
+	}
+}
+
+// divisions refuses constant divisions of whole numbers with a remainder and notes the other divisions of whole
+// numbers, except where a whole number is meant: as an index, a size, in int() and make().
+func (c *checking) divisions(r *checked) (bad []problem) {
+	var walk func(n ast.Node, meant bool)
+	visit := func(n ast.Node, meant bool) {
+		ast.Inspect(n, func(m ast.Node) bool {
+			if m == nil || m == n {
+				return true
+			}
+			walk(m, meant)
+			return false
+		})
+	}
+	walk = func(n ast.Node, meant bool) {
+		switch n := n.(type) {
+		case *ast.IndexExpr:
+			walk(n.X, meant)
+			walk(n.Index, true)
+			return
+		case *ast.SliceExpr, *ast.ArrayType:
+			visit(n, true)
+			return
+		case *ast.CallExpr:
+			if meantWhole(c.info, n) {
+				visit(n, true)
+				return
+			}
+			visit(n, false)
+			return
+		case *ast.BinaryExpr:
+			if n.Op == token.QUO && !meant {
+				bad = append(bad, c.division(r, n)...)
+			}
+		case *ast.AssignStmt:
+			if n.Tok == token.QUO_ASSIGN && (&widening{c: c}).isInt(n.Lhs[0]) {
+				c.noteDivision(r, n.Pos(), n.Lhs[0], n.Rhs[0])
+			}
+		}
+		visit(n, meant)
+	}
+	for _, d := range c.p.decls {
+		walk(d, false)
+	}
+	walk(c.p.body, false)
+	return bad
+}
+
+func meantWhole(info *types.Info, n *ast.CallExpr) bool {
+	tv, ok := info.Types[n.Fun]
+	if !ok {
+		return false
+	}
+	if tv.IsType() {
+		b, ok := tv.Type.Underlying().(*types.Basic)
+		return ok && b.Info()&types.IsInteger != 0
+	}
+	id, ok := n.Fun.(*ast.Ident)
+	return ok && tv.IsBuiltin() && id.Name == "make"
+}
+
+func (c *checking) division(r *checked, n *ast.BinaryExpr) []problem {
+	w := &widening{c: c}
+	x, y := c.info.Types[n.X], c.info.Types[n.Y]
+	if wholeConst(c.info, n.X) && wholeConst(c.info, n.Y) && x.Value != nil && y.Value != nil {
+		a, b := constant.ToInt(x.Value), constant.ToInt(y.Value)
+		if a.Kind() != constant.Int || b.Kind() != constant.Int || constant.Sign(b) == 0 ||
+			constant.Sign(constant.BinaryOp(a, token.REM, b)) == 0 {
+			return nil
+		}
+		q := constant.BinaryOp(a, token.QUO_ASSIGN, b)
+		off, _ := r.src.offset(n.Pos())
+		end, _ := r.src.offset(n.End())
+		left, right := r.src.quote(n.X.Pos(), n.X.End()), r.src.quote(n.Y.Pos(), n.Y.End())
+		return []problem{{src: r.src, off: off, end: end, text: left + "/" + right +
+			" divides whole numbers and gives " + q.ExactString() + "; write " + pointed(n.X, left) + "/" + right}}
+	}
+	if w.isInt(n) {
+		c.noteDivision(r, n.Pos(), n.X, n.Y)
+	}
+	return nil
+}
+
+func pointed(e ast.Expr, text string) string {
+	if isIntLit(e) {
+		return text + ".0"
+	}
+	return "float64(" + text + ")"
+}
+
+func (c *checking) noteDivision(r *checked, pos token.Pos, x, y ast.Expr) {
+	off, ok := r.src.offset(pos)
+	if !ok {
+		return
+	}
+	line, _ := r.src.place(off)
+	left, right := r.src.quote(x.Pos(), x.End()), r.src.quote(y.Pos(), y.End())
+	r.notes = append(r.notes, "note: line "+itoa(line)+": "+left+"/"+right+
+		" divides whole numbers and drops the remainder; for the ratio write float64("+left+")/"+right)
+}
+
+// wholeConst tells whether a constant is a whole number by the way it is written.
+func wholeConst(info *types.Info, e ast.Expr) bool {
+	switch e := ast.Unparen(e).(type) {
+	case *ast.BasicLit:
+		return e.Kind == token.INT
+	case *ast.UnaryExpr:
+		return wholeConst(info, e.X)
+	case *ast.BinaryExpr:
+		return wholeConst(info, e.X) && wholeConst(info, e.Y)
+	case *ast.Ident:
+		return wholeObject(info.Uses[e])
+	case *ast.SelectorExpr:
+		return wholeObject(info.Uses[e.Sel])
+	case *ast.CallExpr:
+		if tv, ok := info.Types[e]; ok && tv.Value != nil {
+			b, ok := tv.Type.Underlying().(*types.Basic)
+			return ok && b.Info()&types.IsInteger != 0
+		}
+	}
+	return false
+}
+
+func wholeObject(o types.Object) bool {
+	k, ok := o.(*types.Const)
+	if !ok {
+		return false
+	}
+	b, ok := k.Type().Underlying().(*types.Basic)
+	return ok && b.Info()&types.IsInteger != 0
+}
