@@ -1,5 +1,7 @@
 package dsl
 
+import "ampturn/magcirc"
+
 // The alias types give parameters, results and fields their unit. All are float64: a number needs no conversion, and
 // the unit check of a cell reads the alias where it was written. In a cell they declare fields and functions of one's
 // own:
@@ -126,3 +128,9 @@ type (
 
 // Squared gives x times x; in a cell it is written sq(x). The unit of the result is the square of that of x.
 func Squared(x float64) float64 { return x * x }
+
+// FaultCode is the stable kind of a [Fault], for a design loop that branches on it.
+type FaultCode = magcirc.Code
+
+// RemarkKind is the kind of a [Remark].
+type RemarkKind = magcirc.NoteKind

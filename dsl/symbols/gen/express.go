@@ -10,7 +10,7 @@ import (
 type walker struct {
 	home    *types.Package
 	table   map[string]bool
-	renamed map[*types.TypeName]bool // types of other packages that home has an alias for
+	renamed map[*types.TypeName]string // types of other packages, and the alias that home has for each
 	seen    map[types.Type]bool
 	shallow bool // take the types of home as they are
 	faults  []string
@@ -18,11 +18,11 @@ type walker struct {
 
 // newWalker collects the aliases of a package.
 func newWalker(pkg *types.Package, table map[string]bool) *walker {
-	w := &walker{home: pkg, table: table, renamed: map[*types.TypeName]bool{}, seen: map[types.Type]bool{}}
+	w := &walker{home: pkg, table: table, renamed: map[*types.TypeName]string{}, seen: map[types.Type]bool{}}
 	for _, name := range pkg.Scope().Names() {
 		if t, ok := pkg.Scope().Lookup(name).(*types.TypeName); ok && t.IsAlias() && t.Exported() {
 			if n, ok := types.Unalias(t.Type()).(*types.Named); ok {
-				w.renamed[n.Obj()] = true
+				w.renamed[n.Obj()] = name
 			}
 		}
 	}
@@ -134,7 +134,7 @@ func (w *walker) named(at string, t *types.Named) {
 	case t.TypeArgs().Len() > 0:
 		w.fault(at, "an instance of the generic type %s", obj.Name())
 		return
-	case w.renamed[obj] || obj.Pkg() == w.home && obj.Exported():
+	case w.renamed[obj] != "" || obj.Pkg() == w.home && obj.Exported():
 	case obj.Pkg() == w.home:
 		w.fault(at, "type %s is not exported; a cell could hold a value of it without a name for its type", obj.Name())
 		return
@@ -149,6 +149,9 @@ func (w *walker) named(at string, t *types.Named) {
 		return
 	}
 	name := obj.Name()
+	if alias := w.renamed[obj]; alias != "" {
+		name = alias
+	}
 	w.members(name, t.Underlying())
 	if types.IsInterface(t) {
 		return

@@ -199,9 +199,11 @@ func TestCompiles(t *testing.T) {
 	if err := os.WriteFile(file, text, 0o666); err != nil {
 		t.Fatal(err)
 	}
-	out, err := exec.Command("go", "test", "-vet=off", "-overlay", file, "./testdata/built").CombinedOutput()
-	if err != nil {
-		t.Fatalf("%v\n%s", err, out)
+	program := filepath.Join(dir, "built.test")
+	for _, cmd := range [][]string{{"go", "test", "-c", "-o", program, "-vet=off", "-overlay", file, "./testdata/built"}, {program}} {
+		if out, err := exec.Command(cmd[0], cmd[1:]...).CombinedOutput(); err != nil {
+			t.Fatalf("%v: %v\n%s", cmd, err, out)
+		}
 	}
 }
 
