@@ -4,12 +4,14 @@ import (
 	"fmt"
 
 	"ampturn/dsl/doc"
+	"ampturn/dsl/draw"
 	"ampturn/magcirc/gap"
 	"ampturn/magcirc/phys"
 )
 
 // GapComparison is a gap by every method for the flux around it, side by side.
 type GapComparison struct {
+	spec       gap.Spec
 	elem, face string
 	length     float64
 	chosen     gap.Method
@@ -42,6 +44,15 @@ func (g *GapComparison) Plot() *Figure {
 		}
 	}
 	return Bars(names, factors).Title("fringing factor: "+g.caption()).Labels("", "fringing factor")
+}
+
+// Field draws the field of the gap to scale: equipotentials, and lines between which the same flux runs. For a
+// rectangle it is the field across the width.
+func (g *GapComparison) Field() *Figure {
+	s, err := gap.Field(g.spec)
+	named(g.elem, err)
+	p := draw.FieldMap("field of "+g.caption(), s)
+	return &Figure{svg: p.SVG, text: p.Text}
 }
 
 func (g *GapComparison) caption() string {

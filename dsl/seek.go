@@ -137,7 +137,7 @@ func (c *MagneticCircuit) Fringing(part string) *GapComparison {
 
 // compareGap asks every method.
 func compareGap(elem string, s gap.Spec) *GapComparison {
-	return &GapComparison{elem: elem, length: s.Length, face: s.Face.Describe(), chosen: s.Method, all: gap.Compare(s)}
+	return &GapComparison{spec: s, elem: elem, length: s.Length, face: s.Face.Describe(), chosen: s.Method, all: gap.Compare(s)}
 }
 
 // At is the circuit at a temperature: its core laws there. Never asked, it is 25 degC, and every result says so.

@@ -107,6 +107,7 @@ func TestCircuitBlocks(t *testing.T) {
 	near(t, "reluctance of a stray path", T1.Reluctance("window.stray"), 1/(12*nH), 1e-12)
 	contains(t, text(t, T1.Fringing("centre.gap")), "ConformalMap (in use)")
 	contains(t, text(t, T1.Fringing("centre.gap").Plot()), "fringing factor")
+	contains(t, text(t, T1.Fringing("centre.gap").Field()), "field of gap T1.centre.gap")
 	contains(t, text(t, Gap(0.6*mm).Faces(Rect(12*mm, 15*mm))), "FieldSolve")
 	contains(t, text(t, Basis(op)), "gap T1.centre.gap")
 }
