@@ -78,15 +78,23 @@ func (m *Matrix) Definite() (Definiteness, Detail) {
 	return Positive, d
 }
 
-// culprit names the pair whose coupling exceeds 1, or the windings whose couplings cannot all be.
-func (m *Matrix) culprit(currents []float64) string {
-	for i := range m.Names {
-		for j := range i {
-			if k := m.Coupling(j, i); math.Abs(k) > 1 {
-				return fmt.Sprintf("M of %s and %s is %s, more than sqrt(L L) = %s (k = %s)", m.Names[j], m.Names[i],
-					phys.Format(m.Mutual(j, i), "H"), phys.Format(math.Sqrt(m.Self(i)*m.Self(j)), "H"), phys.FormatDigits(k, "", 5))
+// tightest gives the pair of windings with the largest coupling, whatever its sign.
+func (m *Matrix) tightest() (a, b int, k float64) {
+	for j := range m.Names {
+		for i := range j {
+			if c := m.Coupling(i, j); math.Abs(c) > math.Abs(k) {
+				a, b, k = i, j, c
 			}
 		}
+	}
+	return a, b, k
+}
+
+// culprit names the pair whose coupling exceeds 1, or the windings whose couplings cannot all be.
+func (m *Matrix) culprit(currents []float64) string {
+	if i, j, k := m.tightest(); math.Abs(k) > 1 {
+		return fmt.Sprintf("M of %s and %s is %s, more than sqrt(L L) = %s (k = %s)", m.Names[i], m.Names[j],
+			phys.Format(m.Mutual(i, j), "H"), phys.Format(math.Sqrt(m.Self(i)*m.Self(j)), "H"), phys.Format(k, ""))
 	}
 	var names []string
 	for i, c := range currents {
