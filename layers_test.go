@@ -48,7 +48,8 @@ var layers = map[string][]string{
 	"kernel/cell":        {"kernel", "kernel/cell/unit"},
 	"kernel/notebook":    {"kernel"},
 	"kernel/page/mathml": {},
-	"kernel/page":        {"kernel", "kernel/notebook", "kernel/page/mathml"},
+	"kernel/page":        {"kernel", "kernel/notebook", "kernel/page/mathml", "kernel/page/clean"},
+	"kernel/batch":        {"kernel", "kernel/notebook", "kernel/page"},
 }
 
 // owners says which one package imports a third-party module, so that it can be replaced. gonum is free in magcirc.

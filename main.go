@@ -1,0 +1,182 @@
+// Command ampturn runs calculation notebooks on magnetic circuits: once from the top, leaving the run notebook and a
+// page to read, or live as a Jupyter kernel.
+package main
+
+import (
+	"context"
+	"fmt"
+	"os"
+	"os/signal"
+	"runtime/debug"
+	"syscall"
+
+	"github.com/alecthomas/kong"
+
+	"ampturn/dsl/review"
+	"ampturn/dsl/session"
+	"ampturn/dsl/si"
+	"ampturn/dsl/symbols"
+	"ampturn/kernel"
+	"ampturn/kernel/batch"
+	"ampturn/kernel/cell"
+	"ampturn/kernel/cell/unit"
+	"ampturn/kernel/page"
+	"ampturn/kernel/spec"
+	"ampturn/magcirc/phys"
+)
+
+type commands struct {
+	Run     runCommand     `cmd:"" help:"Run notebooks from the top in a fresh kernel; write the run notebook and a self-contained HTML page."`
+	Install installCommand `cmd:"" help:"Register the kernel with Jupyter."`
+	Remove  removeCommand  `cmd:"" help:"Take the kernel's entry out of Jupyter again."`
+	Kernel  kernelCommand  `cmd:"" help:"Serve a Jupyter front end; Jupyter calls this."`
+}
+
+type runCommand struct {
+	Notebooks []string `arg:"" name:"notebook" help:"An .ipynb (nbformat 4) or a .go text in percent cells."`
+	Out       string   `help:"Folder for the run notebook and the page." default:"out" placeholder:"DIR"`
+}
+
+type place struct {
+	User   bool   `help:"For this user only (the default)." xor:"place"`
+	Prefix string `help:"Below DIR, as DIR/share/jupyter/kernels/ampturn." placeholder:"DIR" xor:"place"`
+}
+
+type (
+	installCommand struct{ place }
+	removeCommand  struct{ place }
+	kernelCommand  struct {
+		Connection string `arg:"" help:"The connection file that Jupyter wrote."`
+	}
+)
+
+func (c *runCommand) Run(ctx context.Context, code *int) error {
+	*code = batch.Run(ctx, c.Notebooks, batch.Settings{
+		Out: c.Out, Engine: newEngine, Tally: tally, Provenance: provenance(), Report: os.Stdout, Trouble: os.Stderr,
+		Finish: func(out kernel.Sink) { session.Attach(pass(out)); session.Finish() },
+	})
+	return nil
+}
+
+func (c *installCommand) Run() error {
+	binary, err := os.Executable()
+	if err != nil {
+		return err
+	}
+	dir, err := spec.Install(spec.Entry{Binary: binary}, spec.Place{Prefix: c.Prefix})
+	if err != nil {
+		return err
+	}
+	fmt.Printf("the kernel ampturn is registered in %s\n", dir)
+	return nil
+}
+
+func (c *removeCommand) Run() error {
+	dir, err := spec.Remove("ampturn", spec.Place{Prefix: c.Prefix})
+	if err != nil {
+		return err
+	}
+	fmt.Printf("%s is removed\n", dir)
+	return nil
+}
+
+func (c *kernelCommand) Run(ctx context.Context) error {
+	engine, err := newEngine()
+	if err != nil {
+		return err
+	}
+	return kernel.Serve(context.WithoutCancel(ctx), c.Connection, engine, nil)
+}
+
+// joined is the cell engine whose cells send what the vocabulary shows to their own sink.
+type joined struct{ *cell.Session }
+
+func (j joined) Run(ctx context.Context, c kernel.Cell, out kernel.Sink) kernel.Outcome {
+	session.Attach(pass(out))
+	return j.Session.Run(ctx, c, out)
+}
+
+// newEngine joins the cell language and the vocabulary for a fresh notebook.
+func newEngine() (kernel.Engine, error) {
+	session.Reset()
+	s, err := cell.New(vocabulary(), cell.Hooks{
+		Begin: session.BeginCell, End: func(_ string, failed bool) { session.EndCell(failed) },
+		Context: session.SetContext, Pass: session.EndPass,
+	})
+	return joined{s}, err
+}
+
+// pass hands what the vocabulary shows to a sink.
+func pass(out kernel.Sink) func(session.Output) {
+	return func(o session.Output) {
+		kind := kernel.Display
+		switch {
+		case o.Clear:
+			kind = kernel.Clear
+		case o.Stream != "":
+			kind = kernel.Stream
+		case o.Update:
+			kind = kernel.Update
+		}
+		out(kernel.Output{Kind: kind, Name: o.Stream, Text: o.Text, Data: o.Data, Metadata: o.Metadata, ID: o.ID, Wait: o.Wait})
+	}
+}
+
+// packages are what a cell may name besides the vocabulary.
+var packages = []string{"bytes", "errors", "fmt", "math", "math/cmplx", "math/rand", "sort", "strconv", "strings", "unicode"}
+
+// vocabulary hands the names, units and documentation of the vocabulary to the cell language.
+func vocabulary() *cell.Vocabulary {
+	v := &cell.Vocabulary{
+		Symbols: symbols.Symbols, Export: symbols.Export(), Docs: symbols.Docs(),
+		Open: "ampturn/dsl", Packages: packages, Functions: si.Functions, Format: phys.Format,
+		Units: &unit.Table{Words: si.Words, Bare: si.Bare, Aliases: si.Aliases, Value: "Value", Functions: si.Functions},
+	}
+	for _, s := range si.Symbols {
+		v.Units.Symbols = append(v.Units.Symbols, unit.Symbol(s))
+	}
+	for _, u := range append(si.Units[:len(si.Units):len(si.Units)], si.Constants...) {
+		v.Constants = append(v.Constants, cell.Constant(u))
+		v.Units.Constants = append(v.Units.Constants, unit.Constant{Name: u.Name, Dim: u.Dim})
+	}
+	return v
+}
+
+// provenance names the program and the libraries that the numbers rest on.
+func provenance() []page.Row {
+	info, ok := debug.ReadBuildInfo()
+	if !ok {
+		return nil
+	}
+	rows := []page.Row{{Name: "program", Value: "ampturn " + info.Main.Version + ", " + info.GoVersion}}
+	for _, m := range info.Deps {
+		switch m.Path {
+		case "github.com/traefik/yaegi", "gonum.org/v1/gonum", "gonum.org/v1/plot":
+			rows = append(rows, page.Row{Name: "library", Value: m.Path + " " + m.Version})
+		}
+	}
+	return rows
+}
+
+func tally() (string, bool) {
+	s := review.Count()
+	return s.String(), s.Fail > 0
+}
+
+func main() {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	defer stop()
+	code := batch.Fine
+	parser := kong.Must(&commands{}, kong.Name("ampturn"), kong.Description("Calculation notebooks for inductors and transformers."),
+		kong.BindTo(ctx, (*context.Context)(nil)), kong.Bind(&code))
+	run, err := parser.Parse(os.Args[1:])
+	if err != nil {
+		fmt.Fprintf(os.Stderr, "ampturn: %v; see ampturn --help\n", err)
+		os.Exit(batch.Use)
+	}
+	if err := run.Run(); err != nil {
+		fmt.Fprintf(os.Stderr, "ampturn: %v\n", err)
+		code = batch.Failed
+	}
+	os.Exit(code)
+}
