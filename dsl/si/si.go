@@ -92,3 +92,6 @@ var Functions = map[string]string{
 	"sqrt": "math.Sqrt", "sq": "dsl.Squared", "pow": "math.Pow", "exp": "math.Exp", "ln": "math.Log",
 	"log10": "math.Log10", "sin": "math.Sin", "cos": "math.Cos", "atan": "math.Atan", "abs": "math.Abs",
 }
+
+// Powers are the functions of the vocabulary whose result is a power of their argument.
+var Powers = map[string]float64{"dsl.Squared": 2}

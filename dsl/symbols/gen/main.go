@@ -29,6 +29,10 @@ func main() {
 	open := flag.String("open", "", "import path of the vocabulary")
 	name := flag.String("package", "symbols", "name of the written package")
 	flag.Parse()
+	if flag.NArg() == 0 {
+		flag.Usage()
+		os.Exit(2)
+	}
 	files, err := generate(*open, *name, flag.Args())
 	if err == nil {
 		err = write(*out, files)
