@@ -68,7 +68,7 @@ func TestInput(t *testing.T) {
 	joined(t, func(t *testing.T, f *kerneltest.Front) {
 		allow := map[string]any{"allow_stdin": true}
 		f.Send(kernel.Stdin, "input_reply", map[string]any{"value": "stale"})
-		time.Sleep(100 * time.Millisecond) // the sockets keep no order between each other
+		time.Sleep(100 * time.Millisecond)          // the sockets keep no order between each other
 		for _, named := range []bool{true, false} { // some front ends do not say which question they answer
 			f.Forget()
 			id := f.Send(kernel.Shell, "execute_request", kerneltest.Request("print before\nsecret word? ", allow))

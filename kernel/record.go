@@ -22,7 +22,6 @@ type record struct {
 const (
 	stateEnd = ".cell"
 	crashEnd = ".crash"
-	maxCrash = 1 << 20
 )
 
 // openRecord reads what the last process left and starts anew. It gives nil where the files cannot be written; a nil
@@ -90,37 +89,45 @@ func lastEnd(connectionFile string) string {
 		". Names set before are gone; run the cells again"
 }
 
+// The report of the runtime has the stacks, but for what the runtime itself gives up on no sentence: the functions at
+// its top tell what it was. Arguments of functions are hexadecimal there.
 var (
-	outOfMemory = regexp.MustCompile(`cannot allocate (\d+)-byte block`)
-	stackLimit  = regexp.MustCompile(`goroutine stack exceeds (\d+)-byte limit`)
-	fatalLine   = regexp.MustCompile(`(?m)^(?:fatal error|panic): (.*)$`)
+	endlessCalls = regexp.MustCompile(`(?m)^runtime\.newstack\(`)
+	largeBlock   = regexp.MustCompile(`(?m)^runtime\.\(\*mcache\)\.allocLarge\([^,)]*, 0x([0-9a-f]+)`)
+	sharedMap    = regexp.MustCompile(`(?m)^internal/runtime/maps\.fatal\(`)
+	panicLine    = regexp.MustCompile(`(?m)^panic: (.*)$`)
 )
+
+// maxTop is how much of the report is looked at: the stack of the failure comes first.
+const maxTop = 8 << 10
 
 // cause reads the report of the runtime.
 func cause(path string) string {
 	b, err := os.ReadFile(path)
-	if err != nil || len(bytes.TrimSpace(b)) == 0 {
-		return "it was killed from outside, as the system does when memory runs out"
-	}
-	b = b[:min(len(b), maxCrash)]
+	b = bytes.TrimSpace(b[:min(len(b), maxTop)])
 	switch {
-	case stackLimit.Match(b):
-		return "a function called itself without end and the stack passed its limit of " + size(stackLimit.FindSubmatch(b)[1])
-	case outOfMemory.Match(b):
-		return size(outOfMemory.FindSubmatch(b)[1]) + " asked for in one allocation"
-	case fatalLine.Match(b):
-		return string(fatalLine.FindSubmatch(b)[1])
+	case err != nil || len(b) == 0:
+		return "it was killed from outside, as the system does when memory runs out"
+	case endlessCalls.Match(b):
+		return "a function called itself without end and its stack outgrew the limit"
+	case largeBlock.Match(b):
+		return size(largeBlock.FindSubmatch(b)[1]) + " asked for in one allocation"
+	case sharedMap.Match(b):
+		return "several goroutines used one map at the same time"
+	case panicLine.Match(b):
+		return string(panicLine.FindSubmatch(b)[1])
 	}
 	first, _, _ := strings.Cut(string(b), "\n")
 	return first
 }
 
-// size gives a number of bytes as a reader says it.
+// size gives a hexadecimal number of bytes as a reader says it.
 func size(digits []byte) string {
-	x, err := strconv.ParseFloat(string(digits), 64)
+	n, err := strconv.ParseUint(string(digits), 16, 64)
 	if err != nil {
-		return string(digits) + " bytes"
+		return "too much"
 	}
+	x := float64(n)
 	units := []string{"bytes", "kB", "MB", "GB", "TB"}
 	i := 0
 	for x >= 1000 && i < len(units)-1 {

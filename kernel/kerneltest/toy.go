@@ -35,6 +35,7 @@ import (
 //	chunks N SIZE         N displays of SIZE bytes
 //	clear, clear wait     drops the outputs so far
 //	late MS TEXT          prints a line after the cell has ended
+//	hoard N               asks for N bytes of memory
 //	overflow              calls itself until the process dies
 type Toy struct {
 	mu    sync.Mutex

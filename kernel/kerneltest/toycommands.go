@@ -118,6 +118,10 @@ var commands = map[string]func(c toyCall) error{
 		time.AfterFunc(d, func() { c.write("stdout", c.text()+"\n") })
 		return nil
 	},
+	"hoard": func(c toyCall) error {
+		c.out(kernel.Output{Kind: kernel.Result, Data: map[string]any{"text/plain": strconv.Itoa(len(make([]byte, c.number())))}})
+		return nil
+	},
 	"overflow": func(c toyCall) error { return fmt.Errorf("%d", deeper(0)) },
 }
 

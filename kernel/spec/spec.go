@@ -51,8 +51,8 @@ type file struct {
 // owner marks an entry as one that this package wrote.
 const owner = "ampturn"
 
-// validName is what front ends take as a kernel's name.
-var validName = regexp.MustCompile(`^[a-zA-Z0-9._-]+$`)
+// validName is what front ends take as a kernel's name; a dot first would hide the folder, or leave it.
+var validName = regexp.MustCompile(`^[a-zA-Z0-9_-][a-zA-Z0-9._-]*$`)
 
 // Install writes the entry and gives its folder. An older entry of ours under that name is replaced, another's is
 // refused.
@@ -96,7 +96,7 @@ func Install(e Entry, p Place) (dir string, err error) {
 func Remove(name string, p Place) (dir string, err error) {
 	name = Entry{Name: name}.withDefaults().Name
 	if !validName.MatchString(name) {
-		return "", fmt.Errorf("kernel name %q: only letters, digits, dot, dash and underscore", name)
+		return "", fmt.Errorf("kernel name %q: only letters, digits, dash, underscore and, not first, dot", name)
 	}
 	kernels, err := p.kernels()
 	if err != nil {
@@ -125,7 +125,7 @@ func ours(dir string) error {
 // files gives the contents of the entry by file name.
 func (e Entry) files() (map[string][]byte, error) {
 	if !validName.MatchString(e.Name) {
-		return nil, fmt.Errorf("kernel name %q: only letters, digits, dot, dash and underscore", e.Name)
+		return nil, fmt.Errorf("kernel name %q: only letters, digits, dash, underscore and, not first, dot", e.Name)
 	}
 	if !filepath.IsAbs(e.Binary) {
 		return nil, fmt.Errorf("program %q: the path must be absolute, a front end starts it from anywhere", e.Binary)
