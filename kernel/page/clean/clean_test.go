@@ -101,7 +101,7 @@ var (
 	tag       = regexp.MustCompile(`<(/?)([a-zA-Z][\w-]*)((?: [\w:-]+="[^"<>]*")*)(/?)>`)
 	forbidden = regexp.MustCompile(`(?i)^(script|iframe|object|embed|form|input|button|meta|link|base|foreignobject|textarea|noscript)$`)
 	event     = regexp.MustCompile(`(?i) (on\w+|srcdoc|formaction|action)=`)
-	scheme    = regexp.MustCompile(`(?i)(href|src)="\s*(javascript|vbscript|data:text|file):?`)
+	scheme    = regexp.MustCompile(`(?i)(href|src)="\s*(javascript|vbscript|data:text|file):`)
 )
 
 // FuzzHTML demands of every result: it is made of escaped text and whole tags, tags are balanced, and none of what can

@@ -60,7 +60,7 @@ func TestConvert(t *testing.T) {
 		{`\big(`, `<mo form="infix" stretchy="true" symmetric="true" lspace="0" rspace="0" minsize="1.2em" maxsize="1.2em">(</mo>`},
 		{`\Biggr]`, `<mo form="postfix" stretchy="true" symmetric="true" lspace="0" rspace="0" minsize="3em" maxsize="3em">]</mo>`},
 		{`\hat{x}`, `<mover accent="true">{i x}<mo stretchy="false">^</mo></mover>`},
-		{`\overline{ab}`, `<mover accent="true"><mrow>{i a}{i b}</mrow><mo stretchy="true">¯</mo></mover>`},
+		{`\overline{ab}`, `<mrow style="border-top:0.06em solid;padding-top:0.12em"><mrow>{i a}{i b}</mrow></mrow>`},
 		{`\underbrace{x}_{n}`, `<munder><munder accentunder="true">{i x}<mo stretchy="true">⏟</mo></munder>{i n}</munder>`},
 		{`\text{if } x`, "<mrow><mtext>if\u00a0</mtext>{i x}</mrow>"},
 		{`\text{a $b$ c}`, "<mrow><mtext>a\u00a0</mtext>{i b}<mtext>\u00a0c</mtext></mrow>"},

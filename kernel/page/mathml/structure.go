@@ -16,6 +16,7 @@ func init() {
 		`\xrightarrow`: (*parser).arrow, `\xleftarrow`: (*parser).arrow,
 		`\operatorname`: (*parser).operatorName, `\substack`: (*parser).substack,
 		`\hspace`: (*parser).hspace, `\not`: (*parser).not,
+		`\overline`: (*parser).lined, `\underline`: (*parser).lined,
 		`\phantom`: (*parser).enclosed, `\boxed`: (*parser).enclosed, `\pmod`: (*parser).modulus, `\bmod`: (*parser).modulus,
 	}
 	for _, name := range []string{`\frac`, `\dfrac`, `\tfrac`, `\cfrac`, `\binom`} {
@@ -233,6 +234,12 @@ func (p *parser) enclosed(command string) item {
 		return item{xml: elem("mphantom", p.arg())}
 	}
 	return item{xml: `<mrow class="boxed">` + p.arg() + "</mrow>"}
+}
+
+// lined draws a line over or under its argument, as a border: few fonts have a line that grows.
+func (p *parser) lined(command string) item {
+	side := map[string]string{`\overline`: "top", `\underline`: "bottom"}[command]
+	return item{xml: `<mrow style="border-` + side + `:0.06em solid;padding-` + side + `:0.12em">` + p.arg() + "</mrow>"}
 }
 
 func (p *parser) modulus(command string) item {

@@ -71,9 +71,8 @@ var accents = map[string]accentSign{
 	`\hat`: {sign: "^"}, `\check`: {sign: "ˇ"}, `\tilde`: {sign: "~"}, `\acute`: {sign: "´"}, `\grave`: {sign: "`"},
 	`\dot`: {sign: "˙"}, `\ddot`: {sign: "¨"}, `\dddot`: {sign: "⃛"}, `\breve`: {sign: "˘"}, `\bar`: {sign: "¯"},
 	`\vec`: {sign: "→"}, `\mathring`: {sign: "˚"},
-	`\widehat`: {sign: "^", wide: true}, `\widetilde`: {sign: "~", wide: true}, `\overline`: {sign: "¯", wide: true},
+	`\widehat`: {sign: "^", wide: true}, `\widetilde`: {sign: "~", wide: true},
 	`\overrightarrow`: {sign: "→", wide: true}, `\overleftarrow`: {sign: "←", wide: true},
-	`\underline`:  {sign: "_", under: true, wide: true},
 	`\overbrace`:  {sign: "⏞", wide: true, label: true},
 	`\underbrace`: {sign: "⏟", under: true, wide: true, label: true},
 }

@@ -95,7 +95,7 @@ func (p *parser) table(form tableForm, name string) string {
 			parts = append(parts, source(sign))
 		}
 		if last := sign == `\end` || sign == ""; !last || column > 0 || len(parts) > 0 {
-			b.WriteString(cell(align[column%len(align)], form.gap, parts))
+			b.WriteString(cell(align[column%len(align)], form.gap, column > 0 && column%2 == 0 && form.rows == "right left", parts))
 		}
 		switch sign {
 		case `\\`, `\cr`:
@@ -109,9 +109,13 @@ func (p *parser) table(form tableForm, name string) string {
 	}
 }
 
-func cell(align, gap string, parts []string) string {
+// cell writes a cell; apart sets it off from the equation to its left.
+func cell(align, gap string, apart bool, parts []string) string {
 	style := "text-align:" + align
-	if gap != "" {
+	switch {
+	case apart:
+		style += ";padding-left:2em;padding-right:" + gap
+	case gap != "":
 		style += ";padding-left:" + gap + ";padding-right:" + gap
 	}
 	return `<mtd style="` + style + `">` + strings.Join(parts, "") + "</mtd>"
