@@ -3,6 +3,7 @@ package dsl
 import (
 	"fmt"
 	"maps"
+	"strings"
 
 	"ampturn/dsl/chart"
 	"ampturn/dsl/doc"
@@ -17,6 +18,7 @@ type BiasCurve struct {
 	curve      *design.Curve
 	circuit    MagneticCircuit
 	winding    string
+	name       string // in a picture
 	conditions string
 	remarks    []Remark
 }
@@ -40,6 +42,7 @@ func (c *MagneticCircuit) BiasCurve(winding string, from, to Ampere, others ...D
 		refuse(magcirc.WrongUse, elem, "the other drives name this winding too", "leave it out of them")
 	}
 	b := &BiasCurve{circuit: *c, winding: c.windings()[w], conditions: c.state()}
+	b.name = strings.Join(append([]string{phys.Format(c.temperature, "degC")}, c.changes...), ", ")
 	if len(others) > 0 {
 		b.conditions += ", " + driveWords(c, base)
 	}
@@ -131,13 +134,20 @@ func (b *BiasCurve) Plot() *Figure {
 	return f
 }
 
-// drawn draws the incremental inductance, named by the temperature.
+// As names the curve in a picture; its own name is the temperature with the changes of a variant.
+func (b *BiasCurve) As(name string) *BiasCurve {
+	b.given()
+	next := *b
+	next.name = name
+	return &next
+}
+
+// drawn draws the incremental inductance.
 func (b *BiasCurve) drawn() drawing {
 	b.given()
-	name := phys.Format(b.circuit.temperature, "degC")
 	return drawing{title: fmt.Sprintf("incremental inductance of %s.%s over current, %s", b.circuit.name, b.winding, b.conditions),
 		x: axis{Label: "current", Unit: "A"}, y: axis{Label: "inductance", Unit: "H"},
-		lines: []chart.Series{{Name: name, X: b.curve.Current, Y: b.curve.Incremental}}}
+		lines: []chart.Series{{Name: b.name, X: b.curve.Current, Y: b.curve.Incremental}}}
 }
 
 // MIMEBundle shows both inductances over current as a picture, with its text twin and the notes.

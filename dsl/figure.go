@@ -216,7 +216,18 @@ func LineWithUnits(units []string, name string, x, y []Value) SeriesData {
 }
 
 func (s SeriesData) drawn() drawing {
-	return drawing{title: s.name, x: axis{Label: "x", Unit: s.xUnit}, y: axis{Label: "y", Unit: s.yUnit}, lines: []chart.Series{{Name: s.name, X: s.x, Y: s.y}}}
+	return drawing{title: s.name, x: axis{Label: quantity(s.xUnit, "x"), Unit: s.xUnit}, y: axis{Label: quantity(s.yUnit, "y"), Unit: s.yUnit}, lines: []chart.Series{{Name: s.name, X: s.x, Y: s.y}}}
+}
+
+// quantities are what units are commonly drawn for; [Figure.Labels] says it better.
+var quantities = map[string]string{"A": "current", "V": "voltage", "H": "inductance", "T": "flux density", "A/m": "field strength", "Wb": "flux",
+	"m": "length", "s": "time", "Hz": "frequency", "W": "power", "degC": "temperature", "K": "temperature difference", "ohm": "resistance", "1/H": "reluctance", "J": "energy"}
+
+func quantity(unit, otherwise string) string {
+	if q, ok := quantities[unit]; ok {
+		return q
+	}
+	return otherwise
 }
 
 // Bars compares values over named cases.
