@@ -107,16 +107,38 @@ func (in *inference) ordinary(e *ast.CallExpr, fn *types.Func) []value {
 		shared.add(*recv, place{}, true)
 	}
 	params := map[*types.TypeParam]value{}
+	apart := in.columns(sig) > 1
 	args := in.arguments(e, sig.Params().Len())
 	for i, a := range args {
 		p, t := parameter(sig, i, e.Ellipsis.IsValid())
 		if p == nil {
 			break
 		}
+		if apart && in.isColumn(p.Type()) {
+			continue
+		}
 		in.through(a, p, t, i, name, shared, params)
 	}
 	in.agree(shared)
 	return in.outcomes(sig, fn, callee, shared, params)
+}
+
+// columns counts the parameters that are lists of numbers in the unit of the call. Where there are several, as x and y of
+// a curve, each has a unit of its own.
+func (in *inference) columns(sig *types.Signature) int {
+	n := 0
+	for p := range sig.Params().Variables() {
+		if in.isColumn(p.Type()) {
+			n++
+		}
+	}
+	return n
+}
+
+// isColumn tells whether a type is a list of numbers in the unit of the call.
+func (in *inference) isColumn(t types.Type) bool {
+	s, ok := t.(*types.Slice)
+	return ok && in.isValue(s.Elem())
 }
 
 // signature gives the signature of what is called, as it was declared: of a generic function, not the instance.
