@@ -264,6 +264,9 @@ func (in *inference) outcomes(sig *types.Signature, fn *types.Func, callee value
 			out[i] = inUnit(tg.q)
 		case tagValue:
 			out[i] = shared.result()
+			if fn != nil && fn.Signature().Recv() != nil && !shared.led() && !in.isValue(sig.Results().At(i).Type()) {
+				out[i] = lost // what a method of an untraced carrier makes is as untraced as the carrier
+			}
 			if fn == nil && out[i].kind == untraced {
 				out[i] = callee.element()
 			} else if fn != nil && !foreign(fn) {

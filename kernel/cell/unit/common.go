@@ -18,6 +18,9 @@ func (c *common) add(a argument, where place, receiver bool) {
 	c.members = append(c.members, member{a, where, receiver})
 }
 
+// led tells whether a receiver decides.
+func (c *common) led() bool { return len(c.members) > 0 && c.members[0].receiver }
+
 // leader gives the member whose unit the others must have: the receiver, else the first with a unit, else the first
 // plain number.
 func (c *common) leader() *member {
