@@ -163,7 +163,8 @@ func (l *lowering) worded(e ast.Expr, to types.Type, text string) string {
 // vocabularyCall lowers calls of compiled functions that the notebook treats in its own way.
 func (l *lowering) vocabularyCall(e *ast.CallExpr, o types.Object, sig *types.Signature, alone bool) (string, bool) {
 	path := o.Pkg().Path()
-	method := sig.Recv() != nil
+	own, _ := o.Type().(*types.Signature) // the type of a selector has no receiver
+	method := own != nil && own.Recv() != nil
 	switch {
 	case path == "fmt" && !method && (o.Name() == "Print" || o.Name() == "Println" || o.Name() == "Printf"):
 		return l.nb(o.Name()) + "(" + l.args(e, sig, "") + ")", true
@@ -174,7 +175,7 @@ func (l *lowering) vocabularyCall(e *ast.CallExpr, o types.Object, sig *types.Si
 		}
 		return "", true
 	}
-	if twin := l.twin(o, sig); twin != "" {
+	if twin := l.twin(o, own); twin != "" {
 		units := "[]string{" + strings.Join(l.unitTexts(e), ", ") + "}"
 		if !method {
 			return l.pkg(path) + "." + twin + "(" + l.args(e, sig, units) + ")", true
@@ -190,6 +191,9 @@ func (l *lowering) vocabularyCall(e *ast.CallExpr, o types.Object, sig *types.Si
 // twin finds the form of a function that takes the unit texts of its arguments.
 func (l *lowering) twin(o types.Object, sig *types.Signature) string {
 	name := o.Name() + twinSuffix
+	if sig == nil {
+		return ""
+	}
 	if sig.Recv() == nil {
 		if f, ok := o.Pkg().Scope().Lookup(name).(*types.Func); ok {
 			return f.Name()
