@@ -5,6 +5,8 @@
 //	[NewFroehlich]            mu_i, Bs                       J = Bs H/(H + a)
 //	[NewArctan]               mu_i, Bs                       J = (2 Bs/pi) atan(H/c)
 //	[NewLangevin]             Ms, a, alpha                   M = Ms L((H + alpha M)/a)
+//	[LangevinThrough]         mu_i, one point            the same without mean field, from a data sheet
+//	[NewBias]                 mu_i, half, exponent       dB/dH = mu0 mu_i/(1 + (H/half)^exponent)
 //	[NewCurve], [Points.Law]  measured points                monotone piecewise cubic, mu0 beyond the data
 //	[Tabulate]                a function of one's own        the same, through points close enough
 //

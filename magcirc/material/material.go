@@ -22,6 +22,7 @@ type Material struct {
 	states      []state // from cold to hot
 	extrapolate bool
 	tolerance   float64
+	notes       []magcirc.Note
 }
 
 // state is the law at one temperature in degC.
@@ -91,6 +92,13 @@ func (m *Material) Tolerance(rel float64) *Material {
 // Spread gives the relative tolerance of the initial permeability; 0 where none is known.
 func (m *Material) Spread() float64 { return m.tolerance }
 
+// Noted gives the material with a remark that goes with every use of its law, such as where its figures come from.
+func (m *Material) Noted(kind magcirc.NoteKind, text string) *Material {
+	c := *m
+	c.notes = append(slices.Clone(m.notes), magcirc.Note{Kind: kind, Elem: m.elem(), Text: text})
+	return &c
+}
+
 // Law gives the law at temperature t in degC, with the notes that belong to it.
 //
 //	B(H, t) = B1(H) + (t - t1)/(t2 - t1) (B2(H) - B1(H))
@@ -117,7 +125,7 @@ func (m *Material) Law(t float64) (Law, []magcirc.Note, error) {
 			fmt.Sprintf("%s is %s beyond its data (%s)", phys.Format(t, "degC"), phys.Format(beyond, "K"), data),
 			fmt.Sprintf("add the law there with Also(%s*degC, ...), or say Extrapolate()", phys.Format(t, "")))
 	}
-	notes := slices.Clone(Notes(law))
+	notes := slices.Concat(m.notes, Notes(law))
 	if beyond > 0 {
 		how := "the law is extrapolated in a straight line"
 		if len(m.states) == 1 {
