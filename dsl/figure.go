@@ -215,6 +215,11 @@ func LineWithUnits(units []string, name string, x, y []Value) SeriesData {
 	return SeriesWithUnits(units, name, x, y)
 }
 
+// MIMEBundle shows the series in words; [Plot] draws it.
+func (s SeriesData) MIMEBundle() map[string]any {
+	return words(fmt.Sprintf("series %q of %d points; draw it with Plot", s.name, len(s.x)))
+}
+
 func (s SeriesData) drawn() drawing {
 	return drawing{title: s.name, x: axis{Label: quantity(s.xUnit, "x"), Unit: s.xUnit}, y: axis{Label: quantity(s.yUnit, "y"), Unit: s.yUnit}, lines: []chart.Series{{Name: s.name, X: s.x, Y: s.y}}}
 }

@@ -1,6 +1,7 @@
 package dsl
 
 import (
+	"fmt"
 	"math"
 	"slices"
 
@@ -157,6 +158,11 @@ type Change struct {
 	part     string
 	quantity string
 	value    float64
+}
+
+// MIMEBundle shows the change in words.
+func (c Change) MIMEBundle() map[string]any {
+	return words(fmt.Sprintf("%s of %s: %s", c.quantity, c.part, phys.Format(c.value, "m")))
 }
 
 // Length is the change of a gap, a leg or a magnet to another length.
