@@ -18,7 +18,7 @@ func (in *inference) call(e *ast.CallExpr) []value {
 	}
 	fn := in.callee(e.Fun)
 	if fn != nil && foreign(fn) && fn.Signature().Recv() == nil {
-		if rule, ok := in.rules()[in.canonical(fn)]; ok {
+		if rule, ok := in.known[in.canonical(fn)]; ok {
 			return rule(in, e)
 		}
 	}

@@ -17,6 +17,7 @@ type Checker struct {
 	reader *reader
 	kept   map[any]value
 	named  map[string]types.Object // the object of each name of the notebook
+	reads  readers
 }
 
 // New makes a checker for the names of a table.
@@ -25,7 +26,7 @@ func New(t *Table) (*Checker, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &Checker{reader: newReader(r), kept: map[any]value{}, named: map[string]types.Object{}}, nil
+	return &Checker{reader: newReader(r), kept: map[any]value{}, named: map[string]types.Object{}, reads: readers{}}, nil
 }
 
 // Diagnostic is a refusal at a place in the cell.
@@ -75,6 +76,7 @@ func (r *Report) Text(e ast.Expr) string {
 // Commit keeps the dimensions of the cell's objects for the cells that follow. Call it when the cell's names are
 // committed.
 func (r *Report) Commit() {
+	r.doubt()
 	for key, v := range r.in.env {
 		switch k := key.(type) {
 		case types.Object:
@@ -86,6 +88,11 @@ func (r *Report) Commit() {
 				r.checker.kept[k] = v
 				r.name(fn)
 			}
+		}
+	}
+	for _, name := range r.pkg.Scope().Names() {
+		if t, ok := r.pkg.Scope().Lookup(name).(*types.TypeName); ok && t.Pkg() == r.pkg {
+			r.name(t)
 		}
 	}
 	for obj, v := range r.in.declared {
@@ -117,15 +124,33 @@ func (r *Report) name(obj types.Object) {
 	}
 	c := r.checker
 	if old := c.named[obj.Name()]; old != nil && old != obj {
-		delete(c.kept, old)
-		delete(c.kept, declaredKey{old})
-		if fn, ok := old.(*types.Func); ok {
-			for i := range fn.Signature().Results().Len() {
-				delete(c.kept, result{fn, i})
+		c.forget(old)
+	}
+	c.named[obj.Name()] = obj
+}
+
+// forget forgets an object that has no name any more; of a type its fields and methods.
+func (c *Checker) forget(obj types.Object) {
+	c.reads.drop(obj)
+	delete(c.kept, obj)
+	delete(c.kept, declaredKey{obj})
+	switch obj := obj.(type) {
+	case *types.Func:
+		for i := range obj.Signature().Results().Len() {
+			delete(c.kept, result{obj, i})
+		}
+	case *types.TypeName:
+		if s, ok := obj.Type().Underlying().(*types.Struct); ok {
+			for f := range s.Fields() {
+				c.forget(f)
+			}
+		}
+		if n, ok := obj.Type().(*types.Named); ok {
+			for i := range n.NumMethods() {
+				c.forget(n.Method(i))
 			}
 		}
 	}
-	c.named[obj.Name()] = obj
 }
 
 // lasting tells whether later cells can meet an object: a field, or a name of the notebook.

@@ -159,6 +159,7 @@ func (in *inference) funcValue(obj *types.Func) value {
 	if foreign(obj) {
 		return lost
 	}
+	in.note(obj.Origin())
 	return in.result(obj.Origin(), 0)
 }
 

@@ -11,14 +11,11 @@ import (
 type rule func(in *inference, e *ast.CallExpr) []value
 
 // rules are the functions of math and its like by "package.Name", and the powers that the table lists.
-func (in *inference) rules() map[string]rule {
-	if in.known != nil {
-		return in.known
-	}
-	in.known = map[string]rule{}
+func rules(powers map[string]float64) map[string]rule {
+	known := map[string]rule{}
 	set := func(r rule, names ...string) {
 		for _, n := range names {
-			in.known[n] = r
+			known[n] = r
 		}
 	}
 	set(keep, "math.Abs", "math.Floor", "math.Ceil", "math.Round", "math.RoundToEven", "math.Trunc", "math.Copysign",
@@ -39,10 +36,10 @@ func (in *inference) rules() map[string]rule {
 	set(chance, "rand.Float64", "rand.Float32", "rand.NormFloat64", "rand.ExpFloat64")
 	set(fixedPower(0.5), "math.Sqrt", "cmplx.Sqrt")
 	set(fixedPower(1.0/3), "math.Cbrt")
-	for name, p := range in.Powers {
-		in.known[name] = fixedPower(p)
+	for name, p := range powers {
+		known[name] = fixedPower(p)
 	}
-	return in.known
+	return known
 }
 
 // operands gives what is known of the arguments.

@@ -20,7 +20,7 @@ type inference struct {
 	final    bool                   // this is the pass that refuses
 	values   map[ast.Expr]value     // of this pass
 	refused  []Diagnostic
-	known    map[string]rule
+	reads    readers
 	funcs    []*function // those being passed over, innermost last
 }
 
@@ -72,6 +72,7 @@ func (in *inference) run(files []*ast.File) {
 func (in *inference) pass(files []*ast.File) {
 	in.next = map[any]value{}
 	in.values = map[ast.Expr]value{}
+	in.reads = readers{}
 	for _, f := range files {
 		for _, d := range f.Decls {
 			switch d := d.(type) {
@@ -89,6 +90,7 @@ func (in *inference) lookup(obj types.Object) value {
 	if v, ok := obj.(*types.Var); ok && v.IsField() {
 		obj = v.Origin()
 	}
+	in.note(obj)
 	if v, ok := in.fixed(obj); ok {
 		return v
 	}

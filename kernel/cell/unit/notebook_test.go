@@ -63,6 +63,7 @@ type notebook struct {
 	live    map[string]types.Object
 	packs   importing
 	texts   map[*token.File]string
+	check   checkFunc // the checker's, or one around it
 }
 
 // importing is an importer of what the tests have compiled.
@@ -108,7 +109,7 @@ func newNotebook(t testing.TB) *notebook {
 	if n.checker, err = unit.New(words()); err != nil {
 		t.Fatal(err)
 	}
-	n.checker.Quote = n.quote
+	n.checker.Quote, n.check = n.quote, n.checker.Check
 	return n
 }
 
@@ -173,8 +174,10 @@ func (n *notebook) run(text string) checked {
 		}
 	}}
 	_ = types.NewChecker(conf, n.fset, pkg, info).Files([]*ast.File{df, sf})
-	body := sf.Decls[0].(*ast.FuncDecl).Body.List
-	r := n.settle(pkg, info, df, body, n.checker.Check, []*ast.File{df, sf})
+	cell := sf.Decls[0].(*ast.FuncDecl)
+	delete(info.Defs, cell.Name)
+	body := cell.Body.List
+	r := n.settle(pkg, info, df, body, n.check, []*ast.File{df, sf})
 	if len(r.Diagnostics) == 0 {
 		r.Commit()
 	}

@@ -27,10 +27,11 @@ type reader struct {
 	*table
 	carriers map[*types.TypeName]bool
 	scanned  map[*types.Package]bool
+	known    map[string]rule // functions by "package.Name"
 }
 
 func newReader(t *table) *reader {
-	return &reader{table: t, carriers: map[*types.TypeName]bool{}, scanned: map[*types.Package]bool{}}
+	return &reader{table: t, carriers: map[*types.TypeName]bool{}, scanned: map[*types.Package]bool{}, known: rules(t.Powers)}
 }
 
 // written gives the tag of a type as it was written in a declaration: that of an alias; for a container, that of its
