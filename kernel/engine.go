@@ -16,6 +16,7 @@ const (
 	Update              // a new content for the display of that ID
 	Result              // the value of an expression statement
 	Clear               // drop the cell's outputs so far (Wait: when the next one arrives)
+	Page                // something to read beside the notebook, such as help; shown when the cell has ended well
 )
 
 // Output is one thing that a cell shows. Data maps MIME types to contents (text as string, JSON as any).

@@ -49,6 +49,8 @@ type run struct {
 	cellID  string
 	number  int // names the cell; it is taken only if the cell is stored
 	started time.Time
+	pages   []any   // payload of the reply
+	result  *string // text of the result, for the history
 }
 
 // execute answers execute_request: runs a cell. If it fails, the cells that have arrived meanwhile are not run.
@@ -63,7 +65,7 @@ func (k *Kernel) execute(ctx context.Context, r *request) {
 	}
 	fault, interrupted, expressions := x.runCell(ctx)
 	if fault == nil {
-		x.reply(executeReply{"ok", x.told(), []any{}, expressions})
+		x.reply(executeReply{"ok", x.told(), append([]any{}, x.pages...), expressions})
 		r.idle()
 		return
 	}
@@ -105,10 +107,14 @@ func (x *run) runCell(ctx context.Context) (fault *Fault, interrupted bool, expr
 	if !x.content.Silent {
 		x.request.publish("execute_input", executeInput{x.content.Code, x.number}) // plain: it cannot fail
 	}
-	outcome, result := x.call(ctx)
+	memory := watchMemory(x.opt.Memory, cancel)
+	outcome := x.call(ctx)
 	fault = outcome.fault()
+	if f := memory.stop(x.number); f != nil && fault != nil {
+		fault = f
+	}
 	if x.content.store() {
-		x.history.add(entry{x.number, x.content.Code, result})
+		x.history.add(entry{x.number, x.content.Code, x.result})
 	}
 	if fault != nil {
 		if !x.content.Silent {
@@ -120,9 +126,9 @@ func (x *run) runCell(ctx context.Context) (fault *Fault, interrupted bool, expr
 }
 
 // call has the engine run the cell.
-func (x *run) call(ctx context.Context) (outcome Outcome, result *string) {
+func (x *run) call(ctx context.Context) (outcome Outcome) {
 	if strings.TrimSpace(x.content.Code) == "" {
-		return Outcome{}, nil
+		return Outcome{}
 	}
 	sink := Sink(func(Output) {})
 	flush := func() {}
@@ -132,7 +138,7 @@ func (x *run) call(ctx context.Context) (outcome Outcome, result *string) {
 		if note := x.note.Swap(nil); note != nil {
 			out.take(Output{Kind: Stream, Name: "stderr", Text: *note + "\n"})
 		}
-		defer func() { result = out.end() }()
+		defer func() { x.result, x.pages = out.end() }()
 	}
 	c := Cell{
 		ID: x.cellID, Number: x.number, Source: x.content.Code, Transient: !x.content.store(),
@@ -153,7 +159,7 @@ func (x *run) call(ctx context.Context) (outcome Outcome, result *string) {
 	if f := guard(fmt.Sprintf("cell %d", x.number), func() { outcome = x.engine.Run(ctx, c, sink) }); f != nil {
 		outcome = Outcome{Fault: f}
 	}
-	return outcome, nil
+	return outcome
 }
 
 // fault gives what stopped the cell, if anything.

@@ -109,6 +109,20 @@ func TestDefaults(t *testing.T) {
 	equal(t, "count", e.Count(), 1)
 }
 
+func TestPage(t *testing.T) {
+	f := kerneltest.Memory(t, kerneltest.NewToy())
+	e := f.Run("page help on x")
+	equal(t, "messages", e.Types(), "busy execute_input idle")
+	pages := e.Reply.Content["payload"].([]any)
+	if len(pages) != 1 {
+		t.Fatalf("payload %v", pages)
+	}
+	page := pages[0].(map[string]any)
+	equal(t, "source", page["source"], any("page"))
+	equal(t, "text", page["data"].(map[string]any)["text/plain"], any("help on x"))
+	equal(t, "payload of another cell", len(f.Run("1").Reply.Content["payload"].([]any)), 0)
+}
+
 func TestCellID(t *testing.T) {
 	toy := kerneltest.NewToy()
 	f := kerneltest.Memory(t, toy)

@@ -17,18 +17,36 @@ type entry struct {
 type history struct {
 	mu      sync.Mutex
 	entries []entry
+	bytes   int
 }
 
-// maxHistory bounds what is kept; front ends ask for the last thousand at most.
-const maxHistory = 5000
+// What is kept is bounded; front ends ask for the last thousand cells at most.
+const (
+	maxHistory      = 5000
+	maxHistoryBytes = 16 << 20
+)
 
+func (e entry) size() int {
+	n := len(e.source)
+	if e.output != nil {
+		n += len(*e.output)
+	}
+	return n
+}
+
+// add appends an entry and forgets the oldest ones beyond the bounds. The newest always stays.
 func (h *history) add(e entry) {
 	h.mu.Lock()
 	defer h.mu.Unlock()
-	if len(h.entries) >= maxHistory {
-		h.entries = append(h.entries[:0:0], h.entries[maxHistory/5:]...)
-	}
 	h.entries = append(h.entries, e)
+	h.bytes += e.size()
+	drop := 0
+	for drop < len(h.entries)-1 && (len(h.entries)-drop > maxHistory || h.bytes > maxHistoryBytes) {
+		h.bytes -= h.entries[drop].size()
+		h.entries[drop] = entry{}
+		drop++
+	}
+	h.entries = h.entries[drop:]
 }
 
 // thisSession is the number under which the running process is told; 0 also means it.

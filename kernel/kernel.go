@@ -30,6 +30,7 @@ type Options struct {
 	Version string
 	Links   []HelpLink // for the help menu
 	Text    *stream.Limits
+	Memory  int64                            // most bytes the process may hold in a cell; 0: by the machine, < 0: any
 	Log     func(format string, args ...any) // messages dropped, peers gone; nil: nowhere
 }
 
@@ -81,6 +82,9 @@ func New(e Engine, link Link, s *wire.Session, o *Options) *Kernel {
 	}
 	if k.opt.Name == "" {
 		k.opt.Name = "ampturn"
+	}
+	if k.opt.Memory == 0 {
+		k.opt.Memory = memoryLimit()
 	}
 	if k.opt.Text != nil {
 		k.text = *k.opt.Text

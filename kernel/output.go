@@ -3,6 +3,7 @@ package kernel
 import (
 	"context"
 	"sync"
+	"sync/atomic"
 	"time"
 
 	"ampturn/kernel/stream"
@@ -24,17 +25,19 @@ type output struct {
 	number  int
 	text    *stream.Writer
 	pace    *stream.Pace
-	done    <-chan struct{}
+	done    atomic.Pointer[<-chan struct{}] // closed: front ends are no longer waited for
 
 	mu      sync.Mutex
 	result  *string // text of the last result, for the history
+	pages   []any   // payload of the reply
 	updates []Output
 	updated time.Time
 	timer   *time.Timer
 }
 
 func newOutput(ctx context.Context, r *request, number int) *output {
-	o := &output{request: r, number: number, pace: stream.NewPace(messageBurst, messageRate), done: ctx.Done()}
+	o := &output{request: r, number: number, pace: stream.NewPace(messageBurst, messageRate)}
+	o.waitUntil(ctx.Done())
 	o.text = stream.NewWriter(o.print, ctx.Done(), &r.kernel.text)
 	return o
 }
@@ -44,8 +47,13 @@ type streamContent struct {
 	Text string `json:"text"`
 }
 
+func (o *output) waitUntil(done <-chan struct{}) { o.done.Store(&done) }
+
+// wait waits for the turn of one message.
+func (o *output) wait() { o.pace.Take(1, *o.done.Load()) }
+
 func (o *output) print(name, text string) {
-	o.pace.Take(1, o.done)
+	o.wait()
 	o.request.publish("stream", streamContent{name, text}) // plain strings: it cannot fail
 }
 
@@ -61,6 +69,9 @@ func (o *output) take(x Output) {
 	case Update:
 		o.update(x)
 		return
+	case Page:
+		o.page(x)
+		return
 	}
 	o.flush()
 	switch x.Kind {
@@ -70,7 +81,7 @@ func (o *output) take(x Output) {
 		o.keep(x)
 		o.show("execute_result", x)
 	case Clear:
-		o.pace.Take(1, o.done)
+		o.wait()
 		o.request.publish("clear_output", struct { // a plain value: it cannot fail
 			Wait bool `json:"wait"`
 		}{x.Wait})
@@ -97,7 +108,7 @@ func (o *output) show(typ string, x Output) {
 	if typ != "execute_result" || x.ID != "" {
 		c.Transient = &transient{x.ID}
 	}
-	o.pace.Take(1, o.done)
+	o.wait()
 	if err := o.request.publish(typ, c); err != nil {
 		o.print("stderr", "what is shown cannot be sent: "+err.Error()+"\n")
 	}
@@ -108,6 +119,19 @@ func orEmpty(m map[string]any) map[string]any {
 		return map[string]any{}
 	}
 	return m
+}
+
+// pagePayload is the payload that has a front end open its pager (messaging document 5.5, "Payloads").
+type pagePayload struct {
+	Source string         `json:"source"`
+	Data   map[string]any `json:"data"`
+	Start  int            `json:"start"`
+}
+
+func (o *output) page(x Output) {
+	o.mu.Lock()
+	defer o.mu.Unlock()
+	o.pages = append(o.pages, pagePayload{"page", orEmpty(x.Data), 0})
 }
 
 func (o *output) keep(x Output) {
@@ -163,11 +187,14 @@ func (o *output) flush() {
 	o.flushUpdates()
 }
 
-// end sends everything that waits at the end of the cell, with the end of a text that was cut.
-func (o *output) end() (result *string) {
-	o.text.End()
+// end sends everything that waits at the end of the cell, with the end of a text that was cut. Late output that follows
+// is slowed down as long as the kernel lives.
+func (o *output) end() (result *string, pages []any) {
+	stopped := o.request.kernel.stop
+	o.text.End(stopped)
 	o.flushUpdates()
+	o.waitUntil(stopped)
 	o.mu.Lock()
 	defer o.mu.Unlock()
-	return o.result
+	return o.result, o.pages
 }

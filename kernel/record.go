@@ -127,12 +127,5 @@ func size(digits []byte) string {
 	if err != nil {
 		return "too much"
 	}
-	x := float64(n)
-	units := []string{"bytes", "kB", "MB", "GB", "TB"}
-	i := 0
-	for x >= 1000 && i < len(units)-1 {
-		x /= 1000
-		i++
-	}
-	return strconv.FormatFloat(x, 'g', 3, 64) + " " + units[i]
+	return bytesText(float64(n))
 }

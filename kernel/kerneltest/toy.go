@@ -30,12 +30,14 @@ import (
 //	ask PROMPT            has a line typed and prints "got ..."
 //	secret PROMPT         likewise, hidden
 //	show MIME TEXT        a display
+//	page TEXT             something to read in the front end's pager
 //	place ID TEXT         a display that can be updated
 //	update ID TEXT        updates it
 //	chunks N SIZE         N displays of SIZE bytes
 //	clear, clear wait     drops the outputs so far
 //	late MS TEXT          prints a line after the cell has ended
 //	hoard N               asks for N bytes of memory
+//	grow N                keeps N bytes more every 10 ms
 //	overflow              calls itself until the process dies
 type Toy struct {
 	mu    sync.Mutex

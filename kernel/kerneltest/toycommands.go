@@ -1,6 +1,7 @@
 package kerneltest
 
 import (
+	"bytes"
 	"context"
 	"fmt"
 	"strconv"
@@ -93,6 +94,7 @@ var commands = map[string]func(c toyCall) error{
 		mime, text, _ := strings.Cut(c.rest, " ")
 		return c.display(kernel.Display, "", mime, text)
 	},
+	"page": func(c toyCall) error { return c.display(kernel.Page, "", "text/plain", c.text()) },
 	"place": func(c toyCall) error {
 		id, text, _ := strings.Cut(c.rest, " ")
 		return c.display(kernel.Display, id, "text/plain", text)
@@ -121,6 +123,13 @@ var commands = map[string]func(c toyCall) error{
 	"hoard": func(c toyCall) error {
 		c.out(kernel.Output{Kind: kernel.Result, Data: map[string]any{"text/plain": strconv.Itoa(len(make([]byte, c.number())))}})
 		return nil
+	},
+	"grow": func(c toyCall) error {
+		var kept [][]byte
+		for step := c.number(); c.ctx.Err() == nil; time.Sleep(10 * time.Millisecond) {
+			kept = append(kept, bytes.Repeat([]byte{1}, step))
+		}
+		return c.ctx.Err()
 	},
 	"overflow": func(c toyCall) error { return fmt.Errorf("%d", deeper(0)) },
 }

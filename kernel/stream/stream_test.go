@@ -48,7 +48,7 @@ func TestOrderAndGathering(t *testing.T) {
 	w.Flush()
 	w.Flush()
 	w.Write("stdout", "f")
-	w.End()
+	w.End(nil)
 	if got, want := s.all(), "out:ab|err:cd|out:e|out:f"; got != want {
 		t.Errorf("got %q, want %q", got, want)
 	}
@@ -81,7 +81,7 @@ func TestCharacters(t *testing.T) {
 		for _, p := range strings.Split(c.in, "|") {
 			w.Write("stdout", p)
 		}
-		w.End()
+		w.End(nil)
 		if got := s.all(); got != "out:"+c.want {
 			t.Errorf("%q: got %q", c.in, got)
 		}
@@ -93,7 +93,7 @@ func TestChunks(t *testing.T) {
 	w := NewWriter(s.emit, nil, still(Limits{Chunk: 8}))
 	w.Write("stdout", "12345\n7")      // below the size of a message: waits
 	w.Write("stdout", "8\nµµµµµµµµ\n") // two bytes each
-	w.End()
+	w.End(nil)
 	if got, want := s.all(), "out:12345\n|out:78\n|out:µµµµ|out:µµµµ|out:\n"; got != want {
 		t.Errorf("got %q, want %q", got, want)
 	}
@@ -130,7 +130,7 @@ func TestCut(t *testing.T) {
 		for i := range 1000 {
 			w.Write("stdout", fmt.Sprintf("line %d\n", i))
 		}
-		w.End()
+		w.End(nil)
 		got := s.all()
 		for _, want := range []string{"line 98\n", "line 99\n\n... output is cut here, after 100 lines and 790 bytes",
 			"\nline 998\nline 999\n", "... 895 lines (8055 bytes) are left out here\nline 995\n"} {
@@ -148,7 +148,7 @@ func TestCutCharacters(t *testing.T) {
 	var s sink
 	w := NewWriter(s.emit, nil, still(Limits{Bytes: 5, Tail: 5}))
 	w.Write("stdout", "µµµµµµµµ")
-	w.End()
+	w.End(nil)
 	if got := s.all(); !strings.HasPrefix(got, "out:µµ\n") || strings.ContainsRune(got, '\uFFFD') {
 		t.Errorf("got %q", got)
 	}
@@ -204,7 +204,7 @@ func TestConcurrentWriters(t *testing.T) {
 		})
 	}
 	wait.Wait()
-	w.End()
+	w.End(nil)
 	got := strings.ReplaceAll(strings.ReplaceAll(s.all(), "|", ""), "out:", "")
 	for g := range 8 {
 		at := 0

@@ -102,10 +102,12 @@ func (w *Writer) Flush() {
 	w.flush()
 }
 
-// End sends what is waiting and, if text was left out, its end and its count. Text may still be written afterwards.
-func (w *Writer) End() {
+// End sends what is waiting and, if text was left out, its end and its count. Text may still be written afterwards;
+// it waits for front ends until done is closed.
+func (w *Writer) End(done <-chan struct{}) {
 	w.mu.Lock()
 	defer w.mu.Unlock()
+	defer func() { w.done = done }()
 	for _, name := range []string{"stdout", "stderr"} {
 		if w.carry[name] != "" {
 			w.carry[name] = ""
