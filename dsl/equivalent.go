@@ -57,15 +57,15 @@ func (e *EquivalentCircuit) MIMEMetadata() map[string]any { return e.table().Met
 func (e *EquivalentCircuit) table() doc.Table {
 	t := equivalentTable("equivalent circuit of " + e.primary + " and " + e.secondary + ", " + e.matrix.caption)
 	t.Rows = append(t.Rows,
-		[]doc.Cell{doc.Text("series, at " + e.primary), doc.Num(e.circuit.Series)},
-		[]doc.Cell{doc.Text("magnetising, at " + e.primary), doc.Num(e.circuit.Magnetising)},
+		[]doc.Cell{doc.Text("series, at " + e.primary), doc.Quantity(e.circuit.Series, "H")},
+		[]doc.Cell{doc.Text("magnetising, at " + e.primary), doc.Quantity(e.circuit.Magnetising, "H")},
 		[]doc.Cell{doc.Text("ideal transformer " + phys.Format(e.circuit.Ratio, "") + " : 1"), doc.Text("")})
 	t.Rows = append(t.Rows, e.T().rows("T form: ")...)
 	return t
 }
 
 func equivalentTable(caption string) doc.Table {
-	return doc.Table{Caption: caption, Columns: []doc.Column{{Name: "element"}, {Name: "inductance", Unit: "H"}}}
+	return doc.Table{Caption: caption, Columns: []doc.Column{{Name: "element"}, {Name: "inductance", Mixed: true}}}
 }
 
 // TeeCircuit is the T form: three inductances and an ideal transformer at the second terminals.
@@ -98,9 +98,9 @@ func (t *TeeCircuit) MIMEBundle() map[string]any {
 
 func (t *TeeCircuit) rows(lead string) [][]doc.Cell {
 	return [][]doc.Cell{
-		{doc.Text(lead + "series, at " + t.of.primary), doc.Num(t.form.First)},
-		{doc.Text(lead + "magnetising, at " + t.of.primary), doc.Num(t.form.Magnetising)},
-		{doc.Text(lead + "series, at " + t.of.secondary), doc.Num(t.form.Second)},
+		{doc.Text(lead + "series, at " + t.of.primary), doc.Quantity(t.form.First, "H")},
+		{doc.Text(lead + "magnetising, at " + t.of.primary), doc.Quantity(t.form.Magnetising, "H")},
+		{doc.Text(lead + "series, at " + t.of.secondary), doc.Quantity(t.form.Second, "H")},
 		{doc.Text(lead + "ideal transformer " + phys.Format(t.form.Ratio, "") + " : 1"), doc.Text("")},
 	}
 }

@@ -97,11 +97,12 @@ func (m *MagneticMaterial) plotEnd() float64 {
 	end := 0.0
 	for _, t := range m.below.Temperatures() {
 		law := m.law(t)
+		knee := design.Knee(law)
 		h, _ := law.Range()
 		if math.IsInf(h, 1) {
-			h = design.Knee(law)
+			h = knee
 		}
-		end = math.Max(end, h)
+		end = math.Max(end, math.Min(h, 10*knee)) // far beyond the knee there is nothing to see
 	}
 	return end
 }

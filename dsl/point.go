@@ -101,9 +101,13 @@ func (op *OperatingPoint) MMF(part string) Ampere {
 
 // drop is the sum of the drops along a path.
 func (op *OperatingPoint) drop(path int) float64 {
-	sum := 0.0
+	sum, size := 0.0, 0.0
 	for _, s := range op.solution.State[path] {
 		sum += s.MMF
+		size += math.Abs(s.MMF)
+	}
+	if math.Abs(sum) < 1e-12*size {
+		return 0 // what rounding leaves of drops that cancel
 	}
 	return sum
 }

@@ -2,6 +2,7 @@ package dsl
 
 import (
 	"fmt"
+	"math"
 	"slices"
 
 	"ampturn/dsl/doc"
@@ -51,7 +52,11 @@ func FromReadings(readings ...Reading) *InductanceMatrix {
 func readingTable(checks []induct.Check) *doc.Table {
 	t := &doc.Table{Caption: "readings", Columns: []doc.Column{{Name: "reading"}, {Name: "meter", Unit: "H"}, {Name: "matrix", Unit: "H"}, {Name: "off by"}}}
 	for _, c := range checks {
-		t.Rows = append(t.Rows, []doc.Cell{doc.Text(c.Reading.String()), doc.Num(c.Reading.Inductance), doc.Num(c.Model), doc.Text(phys.FormatDigits(c.Deviation, "percent", 2))})
+		off := c.Deviation
+		if math.Abs(off) < 1e-9 {
+			off = 0 // rounding
+		}
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text(c.Reading.String()), doc.Num(c.Reading.Inductance), doc.Num(c.Model), doc.Text(phys.FormatDigits(off, "percent", 2))})
 	}
 	return t
 }

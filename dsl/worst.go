@@ -25,7 +25,7 @@ func (op *OperatingPoint) worst() *LegState {
 			}
 			s := op.state(place{i, k})
 			share := design.Nearness(leg.material.law(op.circuit.temperature), s.H)
-			if worst == nil || share > worst.share {
+			if worst == nil || share > worst.share*(1+1e-6) { // of equal legs the first
 				worst = &LegState{name: p.full(op.circuit.name, k), conditions: op.conditions(), b: s.B, h: s.H, share: share}
 			}
 		}
