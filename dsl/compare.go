@@ -5,6 +5,7 @@ import (
 
 	"ampturn/dsl/doc"
 	"ampturn/dsl/draw"
+	"ampturn/magcirc"
 	"ampturn/magcirc/gap"
 	"ampturn/magcirc/phys"
 )
@@ -25,6 +26,7 @@ func (g *GapComparison) Factor(method FringeRule) Ratio { return g.by(method).Fa
 func (g *GapComparison) Reluctance(method FringeRule) PerHenry { return g.by(method).Reluctance }
 
 func (g *GapComparison) by(method FringeRule) gap.Result {
+	g.given()
 	want := method.method()
 	for _, c := range g.all {
 		if c.Method == want {
@@ -36,6 +38,7 @@ func (g *GapComparison) by(method FringeRule) gap.Result {
 
 // Plot draws the fringing factors of the methods that hold here.
 func (g *GapComparison) Plot() *Figure {
+	g.given()
 	var names []string
 	var factors []float64
 	for _, c := range g.all {
@@ -49,6 +52,7 @@ func (g *GapComparison) Plot() *Figure {
 // Field draws the field of the gap to scale: equipotentials, and lines between which the same flux runs. For a
 // rectangle it is the field across the width.
 func (g *GapComparison) Field() *Figure {
+	g.given()
 	s, err := gap.Field(g.spec)
 	named(g.elem, err)
 	p := draw.FieldMap("field of "+g.caption(), s)
@@ -68,7 +72,18 @@ func (g *GapComparison) MIMEBundle() map[string]any {
 }
 
 // MIMEMetadata gives the numbers in full.
-func (g *GapComparison) MIMEMetadata() map[string]any { return g.table().Metadata() }
+func (g *GapComparison) MIMEMetadata() map[string]any {
+	if g == nil {
+		return nil
+	}
+	return g.table().Metadata()
+}
+
+func (g *GapComparison) given() {
+	if g == nil {
+		refuse(magcirc.BadValue, "gap comparison", "there is none", `make it with T1.Fringing("centre.gap")`)
+	}
+}
 
 func (g *GapComparison) table() doc.Table {
 	t := doc.Table{Caption: g.caption(), Columns: []doc.Column{{Name: "method"}, {Name: "fringing factor"}, {Name: "reluctance", Unit: "1/H"},

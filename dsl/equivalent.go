@@ -52,7 +52,12 @@ func (e *EquivalentCircuit) MIMEBundle() map[string]any {
 }
 
 // MIMEMetadata gives the numbers in full.
-func (e *EquivalentCircuit) MIMEMetadata() map[string]any { return e.table().Metadata() }
+func (e *EquivalentCircuit) MIMEMetadata() map[string]any {
+	if e == nil || e.matrix == nil {
+		return nil
+	}
+	return e.table().Metadata()
+}
 
 func (e *EquivalentCircuit) table() doc.Table {
 	t := equivalentTable("equivalent circuit of " + e.primary + " and " + e.secondary + ", " + e.matrix.caption)
@@ -75,16 +80,16 @@ type TeeCircuit struct {
 }
 
 // First is the inductance in series with the first winding.
-func (t *TeeCircuit) First() Henry { return t.form.First }
+func (t *TeeCircuit) First() Henry { t.given(); return t.form.First }
 
 // Magnetising is the magnetising inductance, on the side of the first winding.
-func (t *TeeCircuit) Magnetising() Henry { return t.form.Magnetising }
+func (t *TeeCircuit) Magnetising() Henry { t.given(); return t.form.Magnetising }
 
 // Second is the inductance in series with the second winding, on its own side of the transformer.
-func (t *TeeCircuit) Second() Henry { return t.form.Second }
+func (t *TeeCircuit) Second() Henry { t.given(); return t.form.Second }
 
 // Ratio is that of the ideal transformer, first to second.
-func (t *TeeCircuit) Ratio() Ratio { return t.form.Ratio }
+func (t *TeeCircuit) Ratio() Ratio { t.given(); return t.form.Ratio }
 
 // MIMEBundle shows the circuit as a table.
 func (t *TeeCircuit) MIMEBundle() map[string]any {
@@ -94,6 +99,12 @@ func (t *TeeCircuit) MIMEBundle() map[string]any {
 	table := equivalentTable("T form of " + t.of.primary + " and " + t.of.secondary + ", " + t.of.matrix.caption)
 	table.Rows = t.rows("")
 	return table.Bundle()
+}
+
+func (t *TeeCircuit) given() {
+	if t == nil || t.of == nil {
+		refuse(magcirc.BadValue, "T form", "there is none", "take it from an equivalent circuit: .T()")
+	}
 }
 
 func (t *TeeCircuit) rows(lead string) [][]doc.Cell {

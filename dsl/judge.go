@@ -170,6 +170,9 @@ func (v *Verdict) MIMEBundle() map[string]any {
 
 // MIMEMetadata gives the numbers in full.
 func (v *Verdict) MIMEMetadata() map[string]any {
+	if v == nil || v.kept == nil {
+		return nil
+	}
 	return map[string]any{"ampturn": map[string]any{"what": v.kept.What, "value": v.kept.Value, "margin": v.Margin(), "status": v.kept.Status().String(), "corner": v.kept.Corner}}
 }
 

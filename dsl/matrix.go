@@ -30,6 +30,7 @@ func (m *InductanceMatrix) index(winding string) int {
 }
 
 func (m *InductanceMatrix) indices(windings []string) []int {
+	m.given()
 	all := make([]int, len(windings))
 	for k, w := range windings {
 		all[k] = m.index(w)
@@ -72,12 +73,14 @@ func (m *InductanceMatrix) Leakage(seen string, shorted ...string) Henry {
 
 // PerPhase is the inductance per phase of windings with balanced currents, whose sum is zero.
 func (m *InductanceMatrix) PerPhase(windings ...string) Henry {
-	return must(m.matrix.PerPhase(m.indices(windings)...))
+	i := m.indices(windings)
+	return must(m.matrix.PerPhase(i...))
 }
 
 // InPhase is the inductance per winding of windings with equal currents.
 func (m *InductanceMatrix) InPhase(windings ...string) Henry {
-	return must(m.matrix.InPhase(m.indices(windings)...))
+	i := m.indices(windings)
+	return must(m.matrix.InPhase(i...))
 }
 
 // EquivalentCircuit is the circuit of two windings: series, magnetising and ratio, and the T form.
@@ -107,7 +110,12 @@ func (m *InductanceMatrix) MIMEBundle() map[string]any {
 }
 
 // MIMEMetadata gives the numbers in full.
-func (m *InductanceMatrix) MIMEMetadata() map[string]any { return joinMetadata(m.tables()) }
+func (m *InductanceMatrix) MIMEMetadata() map[string]any {
+	if m == nil || m.matrix == nil {
+		return nil
+	}
+	return joinMetadata(m.tables())
+}
 
 func (m *InductanceMatrix) tables() []doc.Table {
 	t := doc.Table{Caption: m.caption, Columns: []doc.Column{{Name: "winding"}}}

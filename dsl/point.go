@@ -204,6 +204,7 @@ func (op *OperatingPoint) Notes() []Remark {
 
 // conditions says what this result holds for: circuit, temperature, currents.
 func (op *OperatingPoint) conditions() string {
+	op.given()
 	return op.circuit.state() + ", " + driveWords(&op.circuit, op.drive)
 }
 
@@ -216,7 +217,12 @@ func (op *OperatingPoint) MIMEBundle() map[string]any {
 }
 
 // MIMEMetadata gives the numbers in full.
-func (op *OperatingPoint) MIMEMetadata() map[string]any { return joinMetadata(op.tables()) }
+func (op *OperatingPoint) MIMEMetadata() map[string]any {
+	if op == nil || op.solution == nil {
+		return nil
+	}
+	return joinMetadata(op.tables())
+}
 
 func (op *OperatingPoint) tables() []doc.Table {
 	tables := []doc.Table{op.pathTable()}

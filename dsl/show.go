@@ -42,10 +42,18 @@ func (t *TableView) MIMEBundle() map[string]any {
 }
 
 // MIMEMetadata gives the numbers in full.
-func (t *TableView) MIMEMetadata() map[string]any { return t.table.Metadata() }
+func (t *TableView) MIMEMetadata() map[string]any {
+	if t == nil {
+		return nil
+	}
+	return t.table.Metadata()
+}
 
 // Caption gives a copy of the table under a caption of one's own.
 func (t *TableView) Caption(text string) *TableView {
+	if t == nil {
+		refuse(magcirc.BadValue, "table", "there is none", "make it with TableOf(rows)")
+	}
 	next := *t
 	next.table.Caption = text
 	return &next

@@ -3,6 +3,7 @@ package dsl
 import (
 	"fmt"
 
+	"ampturn/magcirc"
 	"ampturn/magcirc/design"
 	"ampturn/magcirc/phys"
 )
@@ -34,19 +35,30 @@ func (op *OperatingPoint) worst() *LegState {
 }
 
 // Name is the leg's name: "leg T1.centre.leg".
-func (l *LegState) Name() string { return l.name }
+func (l *LegState) Name() string { l.given(); return l.name }
 
 // FluxDensity is the flux density in the leg, along its path's arrow.
-func (l *LegState) FluxDensity() Tesla { return l.b }
+func (l *LegState) FluxDensity() Tesla { l.given(); return l.b }
 
 // FieldStrength is the field strength in the leg.
-func (l *LegState) FieldStrength() AmperePerMetre { return l.h }
+func (l *LegState) FieldStrength() AmperePerMetre { l.given(); return l.h }
 
 // Saturation is the share of the material's saturation polarisation that is reached.
-func (l *LegState) Saturation() Ratio { return l.share }
+func (l *LegState) Saturation() Ratio { l.given(); return l.share }
 
 // MIMEBundle shows the leg in one line.
-func (l *LegState) MIMEBundle() map[string]any { return words(l.text()) }
+func (l *LegState) MIMEBundle() map[string]any {
+	if l == nil {
+		return nil
+	}
+	return words(l.text())
+}
+
+func (l *LegState) given() {
+	if l == nil {
+		refuse(magcirc.BadValue, "leg", "there is none", "take it from an operating point: op.Worst()")
+	}
+}
 
 func (l *LegState) text() string {
 	return fmt.Sprintf("%s: %s, %s of saturation (%s)", l.name, phys.Format(l.b, "T"), phys.Format(l.share, "percent"), l.conditions)
