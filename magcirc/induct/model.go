@@ -216,7 +216,7 @@ func (f *fit) rows() ([]row, error) {
 
 // iterate repeats the linear problem until the entries stand. A step to a matrix that no part has is shortened.
 func (f *fit) iterate() error {
-	refused := false
+	refused, last := false, math.Inf(1)
 	for range 200 {
 		rows, err := f.rows()
 		if err != nil {
@@ -233,9 +233,10 @@ func (f *fit) iterate() error {
 			change = max(change, math.Abs(step[k])/scale[k])
 		}
 		refused = f.move(step)
-		if change < 1e-12 {
+		if change < 1e-12 || change < 1e-8 && change >= last { // at the rounding of the readings
 			return nil
 		}
+		last = change
 	}
 	if refused {
 		return f.clash()

@@ -3,8 +3,11 @@ package material_test
 import (
 	"errors"
 	"math"
+	"slices"
 	"strings"
 	"testing"
+
+	"pgregory.net/rapid"
 
 	"ampturn/magcirc"
 	"ampturn/magcirc/material"
@@ -167,6 +170,54 @@ func TestTabulateFollowsAKink(t *testing.T) {
 	for _, h := range []float64{0.01, 1, 299, 299.99, 300, 300.01, 5000} {
 		if b, _ := law.At(h); math.Abs(b-f(h)) > 1e-6*f(h) {
 			t.Errorf("at %v: %v, want %v", h, b, f(h))
+		}
+	}
+}
+
+// Whatever is measured: a refusal with a line, or a law.
+func TestAnyPoints(t *testing.T) {
+	number := rapid.OneOf(rapid.Float64Range(-1, 2000), rapid.Float64(), rapid.SampledFrom([]float64{0, 1e-300, 1e-9, 1, math.Inf(1), math.NaN()}))
+	rapid.Check(t, func(t *rapid.T) {
+		p := material.Points{H: rapid.SliceOfN(number, 0, 8).Draw(t, "H"), B: rapid.SliceOfN(number, 0, 8).Draw(t, "B"),
+			Between: rapid.SampledFrom([]material.Interpolation{material.Monotone, material.Straight}).Draw(t, "between")}
+		if rapid.Bool().Draw(t, "sorted") {
+			slices.Sort(p.H)
+			slices.Sort(p.B)
+			for i := range p.B {
+				p.B[i] *= 1e-3
+			}
+		}
+		law, err := p.Law()
+		var e *magcirc.Error
+		switch {
+		case err != nil && (!errors.As(err, &e) || e.Msg == "" || e.Elem == ""):
+			t.Fatalf("a refusal that says nothing: %v", err)
+		case err == nil:
+			hmax, bmax := law.Range()
+			b, slope := law.At(hmax / 2)
+			if h, _ := law.Inverse(b); !(slope >= phys.Mu0 && b > 0 && b < bmax && math.Abs(h-hmax/2) <= 1e-6*hmax) {
+				t.Fatalf("%s: B %v, slope %v at %v, back %v", law.Describe(), b, slope, hmax/2, h)
+			}
+		}
+	})
+}
+
+// A law takes whatever a solver on its way may ask.
+func TestLawsAtExtremes(t *testing.T) {
+	for _, law := range []material.Law{must(material.NewLinear(5)), must(material.NewFroehlich(1e6, 2)), must(material.NewArctan(2, 0.1)),
+		must(material.NewLangevin(1e6, 1, 0)), must(material.NewLangevin(1.6e6, 1100, 1.6e-3)), must(chapman.Law())} {
+		for _, x := range []float64{0, 5e-324, 1e-200, 1e200} {
+			h, inv := law.Inverse(x)
+			b, slope := law.At(x)
+			if math.IsNaN(h+inv+b+slope) || h < 0 || b < 0 {
+				t.Errorf("%s at %v: %v %v, inverse %v %v", law.Describe(), x, b, slope, h, inv)
+			}
+		}
+		if b, _ := law.At(math.NaN()); !math.IsNaN(b) {
+			t.Errorf("%s of no number: %v", law.Describe(), b)
+		}
+		if h, _ := law.Inverse(math.NaN()); !math.IsNaN(h) {
+			t.Errorf("inverse of %s of no number: %v", law.Describe(), h)
 		}
 	}
 }

@@ -120,7 +120,7 @@ func TestIncreasing(t *testing.T) {
 		i := rapid.IntRange(0, last-1).Draw(t, "i")
 		a, b := x[i], x[i+1]
 		want := gauss5(func(x float64) float64 { y, _ := s.At(x); return y }, a, b)
-		if got := s.Integral(b) - s.Integral(a); math.Abs(got-want) > 1e-12*s.Integral(b) {
+		if got := s.Integral(b) - s.Integral(a); math.Abs(got-want) > 1e-12*s.Integral(b)+1e-15*b*y[i+1] { // the second: rounding of x within a narrow interval
 			t.Fatalf("integral %v, want %v", got, want)
 		}
 	})
