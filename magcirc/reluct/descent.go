@@ -64,10 +64,10 @@ func (d *descent) alloc(n, m int) {
 	d.hess = cut(n * n)
 }
 
-// run iterates from y = 0 until every row is met to tol or to its rounding floor, then takes one more step for the
+// run iterates from y until every row is met to tol or to its rounding floor, then takes one more step for the
 // digits that the quadratic convergence gives for it. It reports whether the tolerance was met.
 func (d *descent) run(ctx context.Context, tol float64, limit int) (bool, error) {
-	copy(d.x, d.x0)
+	d.sum(d.y, d.x)
 	d.sweep(d.x, d.g, d.slope)
 	for d.iterations = 0; ; d.iterations++ {
 		if err := ctx.Err(); err != nil {
@@ -215,10 +215,8 @@ func (d *descent) along() {
 	}
 }
 
-// search goes t steps along the direction, with t such that the directional derivative p(t) has lost half of p(0) or
-// more: p(0)/2 <= p(t) <= -p(0)/10. p rises, so a bracket with Newton steps in t and bisection finds such a t. The
-// bound above is the tighter one: where p rises fast at first and then hardly at all, as with laws that saturate in
-// the nodal form, an overshoot may lead uphill. Where p(0) is
+// search goes t steps along the direction, with t such that the directional derivative p(t) has lost half of p(0) and
+// the function has not risen. p rises, so a bracket with Newton steps in t and bisection finds such a t. Where p(0) is
 // below its own rounding there is nothing to search and the full step is taken.
 func (d *descent) search() {
 	p0, blur := 0.0, 0.0
@@ -233,7 +231,7 @@ func (d *descent) search() {
 	t, lo, hi := 1.0, 0.0, math.Inf(1)
 	for tries := 1; ; tries++ {
 		p, curve := d.try(t, linear)
-		if p >= 0.5*p0 && p <= -0.1*p0 || -p0 <= blur || tries == 60 {
+		if p >= 0.5*p0 && downhill(t, p0, p, curve) || -p0 <= blur || tries == 60 {
 			break
 		}
 		if p < 0 {
@@ -257,18 +255,25 @@ func (d *descent) search() {
 	d.take()
 }
 
+// downhill says whether t steps lead downhill, from the directional derivative p and its slope at both ends; at the
+// start of a Newton step the slope is -p(0). An overshoot p > 0 is safe where p bends upwards, as with laws in the
+// loop form: Hermite's rule for the integral of p then says by how much the function falls. Where p rises fast at
+// first and then hardly at all, as with laws that saturate in the nodal form, hardly any overshoot is safe.
+func downhill(t, p0, p, curve float64) bool {
+	if p <= -0.1*p0 {
+		return true
+	}
+	fall := 0.5*(p0+p) - t*(p0+curve)/12 // of the function per step
+	return curve*t >= p-p0 && fall <= 0.05*p0
+}
+
 // try evaluates the terms at t steps along the direction and gives the directional derivative there and its slope.
 // The terms are summed anew: what has been added to them and taken off again in earlier steps would blur small ones.
 func (d *descent) try(t, linear float64) (p, curve float64) {
 	for j := range d.y {
 		d.tryY[j] = d.y[j] + t*d.step[j]
 	}
-	for k, sum := range d.x0 {
-		for p := d.start[k]; p < d.start[k+1]; p++ {
-			sum += d.coef[p] * d.tryY[d.index[p]]
-		}
-		d.tryX[k] = sum
-	}
+	d.sum(d.tryY, d.tryX)
 	d.sweep(d.tryX, d.tryG, d.trySlp)
 	p = -linear
 	for k, dx := range d.dx {
@@ -276,6 +281,16 @@ func (d *descent) try(t, linear float64) (p, curve float64) {
 		curve += d.trySlp[k] * dx * dx
 	}
 	return p, curve
+}
+
+// sum sets the terms x = x0 + z y.
+func (d *descent) sum(y, x []float64) {
+	for k, sum := range d.x0 {
+		for p := d.start[k]; p < d.start[k+1]; p++ {
+			sum += d.coef[p] * y[d.index[p]]
+		}
+		x[k] = sum
+	}
 }
 
 // take moves to the point that was tried last; a second call moves back.

@@ -4,10 +4,10 @@ import (
 	"bytes"
 	"context"
 	"encoding/json"
-	"math"
 	"os"
 	"os/exec"
 	"path/filepath"
+	"slices"
 	"testing"
 	"time"
 
@@ -91,9 +91,14 @@ func TestAgainstScipy(t *testing.T) {
 		samples[k] = g.sample()
 		peers[k] = forPeer(&samples[k])
 	}
-	ours, flux := timeOurs(t, samples)
-	t.Logf("this package: %d of %d solved, %.1f us per network", count, count, ours*1e3)
-	for _, a := range runPeer(t, python, peers) {
+	before, flux := timeOurs(t, samples)
+	answers := runPeer(t, python, peers)
+	after, _ := timeOurs(t, samples)
+	passes := append(before, after...)
+	slices.Sort(passes)
+	ours := passes[len(passes)/2]
+	t.Logf("this package: %d of %d solved, %.1f us per network (median of %d passes, %.1f to %.1f)", count, count, ours*1e3, len(passes), passes[0]*1e3, passes[len(passes)-1]*1e3)
+	for _, a := range answers {
 		apart, compared := worst{}, 0
 		for k, theirs := range a.Flux {
 			if theirs != nil {
@@ -112,11 +117,11 @@ func TestAgainstScipy(t *testing.T) {
 	}
 }
 
-// timeOurs solves the samples and gives ms per network, making of the networks included: the better of two passes.
-func timeOurs(t *testing.T, samples []sample) (ms float64, flux [][]float64) {
+// timeOurs solves the samples several times over and gives the ms per network of each pass, making of the networks
+// included.
+func timeOurs(t *testing.T, samples []sample) (ms []float64, flux [][]float64) {
 	t.Helper()
-	ms = math.Inf(1)
-	for range 2 {
+	for range 7 {
 		flux = flux[:0]
 		start := time.Now()
 		for k := range samples {
@@ -126,7 +131,7 @@ func timeOurs(t *testing.T, samples []sample) (ms float64, flux [][]float64) {
 			}
 			flux = append(flux, s.Flux)
 		}
-		ms = min(ms, time.Since(start).Seconds()*1e3/float64(len(samples)))
+		ms = append(ms, time.Since(start).Seconds()*1e3/float64(len(samples)))
 	}
 	return ms, flux
 }

@@ -39,7 +39,7 @@ type Solution struct {
 	NodeBalance float64 // largest sum of fluxes at a node, relative to the largest flux
 	MMFBalance  float64 // largest |sum U - sum N i - u(From) + u(To)| of a branch, relative to the largest mmf
 	Floor       float64 // what rounding leaves unknown of the fluxes, relative to the largest flux
-	Iterations  int     // Newton iterations
+	Iterations  int     // Newton iterations (in Solve after six linear steps of approach)
 	Sweeps      int     // evaluations of all the laws
 	Notes       []magcirc.Note
 
