@@ -41,6 +41,10 @@ func TestNotesAndCurves(t *testing.T) {
 	if len(op.Notes()) == 0 || len(op.Matrix().Notes()) == 0 {
 		t.Error("110 degC gives no note")
 	}
+	contains(t, text(t, T1.Solve(Currents{"main": 400 * amp})), "leg T1.centre.leg: saturated: ")
+	linear := Magnetic("T2")
+	linear.Ring("core", Leg(NewMaterial("iron", Linear(4000)), 100*mm, Area(100*mm2)), Winding("N", 100*turn))
+	contains(t, text(t, linear.Solve(Currents{"N": 1 * amp})), "leg T2.core.leg: 5.027 T is more than any material carries")
 	curve := T1.BiasCurve("main", 0, 6*amp)
 	two := Plot(curve, T1.At(100*degC).BiasCurve("main", 0, 6*amp).As("hot"))
 	contains(t, text(t, two), "25 degC: current from 0 A to 6 A")

@@ -40,7 +40,7 @@ func ExampleOperatingPoint() {
 	// ----  ----------  ----------------  --------------------  ---  ------------
 	// core       897.1            0.9968                 11.33  leg         400.0
 	//
-	// windings of X
+	// windings of X; energy 179.4 mJ, co-energy 179.4 mJ
 	// winding  current (mA)  linkage (mWb)  inductance, incremental (mH)
 	// -------  ------------  -------------  ----------------------------
 	// N               800.0          448.5                         560.7

@@ -1,12 +1,14 @@
 package dsl
 
 import (
+	"fmt"
 	"math"
 	"strconv"
 
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
 	"ampturn/magcirc/induct"
+	"ampturn/magcirc/phys"
 	"ampturn/magcirc/reluct"
 )
 
@@ -199,7 +201,7 @@ func (op *OperatingPoint) matrix(m *induct.Matrix, what string) *InductanceMatri
 // Notes lists what a reader must know about this result.
 func (op *OperatingPoint) Notes() []Remark {
 	op.given()
-	return mergeNotes(mergeNotes(nil, op.model.notes), op.solution.Notes)
+	return mergeNotes(mergeNotes(mergeNotes(nil, op.model.notes), op.solution.Notes), op.legNotes())
 }
 
 // conditions says what this result holds for: circuit, temperature, currents.
@@ -250,7 +252,7 @@ func (op *OperatingPoint) pathTable() doc.Table {
 }
 
 func (op *OperatingPoint) windingTable() doc.Table {
-	t := doc.Table{Caption: "windings of " + op.circuit.name, Columns: []doc.Column{{Name: "winding"}, {Name: "current", Unit: "A"},
+	t := doc.Table{Caption: fmt.Sprintf("windings of %s; energy %s, co-energy %s", op.circuit.name, phys.Format(op.Energy(), "J"), phys.Format(op.Coenergy(), "J")), Columns: []doc.Column{{Name: "winding"}, {Name: "current", Unit: "A"},
 		{Name: "linkage", Unit: "Wb"}, {Name: "inductance, incremental", Unit: "H"}}}
 	for w, name := range op.circuit.windings() {
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(name), doc.Num(op.solution.Current[w]), doc.Num(op.solution.Linkage[w]), doc.Num(op.Inductance(name))})

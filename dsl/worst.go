@@ -2,6 +2,7 @@ package dsl
 
 import (
 	"fmt"
+	"math"
 
 	"ampturn/magcirc"
 	"ampturn/magcirc/design"
@@ -33,6 +34,34 @@ func (op *OperatingPoint) worst() *LegState {
 	}
 	return worst
 }
+
+// legNotes notes legs that are saturated, or carry more than any material can.
+func (op *OperatingPoint) legNotes() []magcirc.Note {
+	var notes []magcirc.Note
+	for i := range op.circuit.paths {
+		p := &op.circuit.paths[i]
+		for k, part := range p.parts {
+			leg, ok := part.(LegPart)
+			if !ok {
+				continue
+			}
+			s, elem := op.state(place{i, k}), p.full(op.circuit.name, k)
+			if math.Abs(s.B) > maxPolarisation {
+				notes = append(notes, magcirc.Note{Kind: magcirc.OutOfRange, Elem: elem,
+					Text: phys.Format(s.B, "T") + " is more than any material carries (2.5 T): look at currents, turns and units"})
+				continue
+			}
+			if share := design.Nearness(leg.material.law(op.circuit.temperature), s.H); share > saturatedShare {
+				notes = append(notes, magcirc.Note{Kind: magcirc.Remark, Elem: elem,
+					Text: "saturated: " + phys.Format(s.B, "T") + ", " + phys.FormatDigits(share, "percent", 3) + " of its saturation polarisation"})
+			}
+		}
+	}
+	return notes
+}
+
+// saturatedShare is the share of the saturation polarisation from which a leg is called saturated.
+const saturatedShare = 0.95
 
 // Name is the leg's name: "leg T1.centre.leg".
 func (l *LegState) Name() string { l.given(); return l.name }
