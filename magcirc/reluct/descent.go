@@ -3,6 +3,7 @@ package reluct
 import (
 	"context"
 	"math"
+	"sync"
 
 	"gonum.org/v1/gonum/blas"
 	"gonum.org/v1/gonum/blas/blas64"
@@ -41,15 +42,27 @@ type descent struct {
 	tryX, tryG, trySlp []float64
 	hess, jacobi       []float64
 
+	slab               *[]float64
 	iterations, sweeps int
 	residual           float64
 	worst              int // unknown with the largest residual
 }
 
-// alloc makes the work space from one slab; x0 and the sparse rows are set by the caller.
+// slabs holds work space that is free.
+var slabs = sync.Pool{New: func() any { return new([]float64) }}
+
+// alloc takes the work space, all zero, from one slab, which release gives back; x0 and the sparse rows are set by the
+// caller.
 func (d *descent) alloc(n, m int) {
 	d.n, d.m = n, m
-	slab := make([]float64, n*n+7*n+11*m)
+	d.slab = slabs.Get().(*[]float64)
+	if size := n*n + 7*n + 11*m; cap(*d.slab) < size {
+		*d.slab = make([]float64, size)
+	} else {
+		*d.slab = (*d.slab)[:size]
+		clear(*d.slab)
+	}
+	slab := *d.slab
 	cut := func(size int) []float64 {
 		s := slab[:size:size]
 		slab = slab[size:]
@@ -63,6 +76,9 @@ func (d *descent) alloc(n, m int) {
 	}
 	d.hess = cut(n * n)
 }
+
+// release gives the work space back; the descent is of no more use.
+func (d *descent) release() { slabs.Put(d.slab) }
 
 // run iterates from y until every row is met to tol or to its rounding floor, then takes one more step for the
 // digits that the quadratic convergence gives for it. It reports whether the tolerance was met.

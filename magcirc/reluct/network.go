@@ -75,7 +75,7 @@ type Network struct {
 
 // New gives an empty network. The name stands in messages: "circuit T1".
 func New(name string) *Network {
-	return &Network{name: name, nodeOf: map[string]int{}, windOf: map[string]int{}, branchOf: map[string]int{}}
+	return &Network{name: name, branches: make([]Branch, 0, 8), nodeOf: map[string]int{}, windOf: map[string]int{}, branchOf: map[string]int{}}
 }
 
 // Name gives the name of the network.

@@ -24,6 +24,7 @@ func (n *Network) SolveNodal(ctx context.Context, d Drive, s *Settings) (*Soluti
 		return nil, err
 	}
 	f := newNodalForm(k)
+	defer f.release()
 	ok, err := f.run(ctx, k.tol, k.limit)
 	if err != nil {
 		return nil, err

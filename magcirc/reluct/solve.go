@@ -46,6 +46,7 @@ func (n *Network) Solve(ctx context.Context, d Drive, s *Settings) (*Solution, e
 	}
 	var desc descent
 	k.loopForm(&desc)
+	defer desc.release()
 	k.approach(&desc)
 	ok, err := desc.run(ctx, k.tol, k.limit)
 	if err != nil {
