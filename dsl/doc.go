@@ -16,7 +16,7 @@
 //	Limit Require AtMost AtLeast Within Tolerance     verdicts
 //	  Corner OpenPoint Waive Verdicts Assumptions
 //	Plot Series Line Bars TableOf Span                pictures and tables
-//	Note Cite Warn Revision SVG HTML Clear            lines of the document
+//	Show Note Cite Warn Revision SVG HTML Clear       what stands in the document
 //	Try Basis                                         the failure as a value; method, source and validity of a result
 //
 // Six lines:

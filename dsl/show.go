@@ -4,8 +4,16 @@ import (
 	"strings"
 
 	"ampturn/dsl/doc"
+	"ampturn/dsl/session"
 	"ampturn/magcirc"
 )
+
+// Show shows values from within loops and functions; at the top level of a cell a value shows itself.
+func Show(values ...any) {
+	for _, v := range values {
+		session.Show(v)
+	}
+}
 
 // words is the bundle of a result that is one line of text.
 func words(text string) map[string]any { return doc.Bundle(text, "", "") }

@@ -246,8 +246,9 @@ func TestLinesOfTheDocument(t *testing.T) {
 		Cite("IEC 60205")
 		Warn("look twice")
 		Clear()
+		Show(3, Gap(1*mm))
 	})
-	if len(out) != 4 || !out[3].Clear {
+	if len(out) != 6 || out[4].Data["text/plain"] != "3" || out[5].Data["text/plain"] != "gap of 1 mm" || !out[3].Clear {
 		t.Fatalf("outputs %v", out)
 	}
 	contains(t, out[0].Data["text/html"].(string), `<p class="note">a &lt; b</p>`)
