@@ -129,6 +129,7 @@ func init() {
 		"Series":                   reflect.ValueOf(dsl.Series),
 		"SeriesData":               reflect.ValueOf((*dsl.SeriesData)(nil)),
 		"SeriesWithUnits":          reflect.ValueOf(dsl.SeriesWithUnits),
+		"Show":                     reflect.ValueOf(dsl.Show),
 		"Siemens":                  reflect.ValueOf((*dsl.Siemens)(nil)),
 		"Span":                     reflect.ValueOf(dsl.Span),
 		"SquareMetre":              reflect.ValueOf((*dsl.SquareMetre)(nil)),
