@@ -13,19 +13,29 @@ import (
 )
 
 // TestUnitsOfVocabulary runs cells in the whole vocabulary. Those with a mark //! must be refused before anything runs, with
-// that text and the source below; the others must pass and show, for each mark //=, that text on the line's result.
+// that text; the others must pass and show, for each mark //=, that text. Cases "on L1" begin with the cell "setup".
 func TestUnitsOfVocabulary(t *testing.T) {
 	text, err := os.ReadFile("testdata/cells/units/vocabulary.txtar")
 	if err != nil {
 		t.Fatal(err)
 	}
-	for _, c := range txtar.Parse(text).Files {
+	files := txtar.Parse(text).Files
+	setup := ""
+	for _, c := range files {
+		if c.Name == "setup" {
+			setup = string(c.Data)
+			continue
+		}
+		cells := strings.Split(string(c.Data), "---\n")
+		if strings.HasPrefix(c.Name, "on L1: ") {
+			cells = append([]string{setup}, cells...)
+		}
 		t.Run(c.Name, func(t *testing.T) {
 			engine, err := newEngine()
 			if err != nil {
 				t.Fatal(err)
 			}
-			for i, cell := range strings.Split(string(c.Data), "---\n") {
+			for i, cell := range cells {
 				runMarked(t, engine, i+1, cell)
 			}
 		})

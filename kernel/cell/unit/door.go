@@ -29,7 +29,7 @@ func (in *inference) door(v value, want quantity, where place, from ast.Expr) {
 
 // angle refuses a bare number of more than a full turn where an angle is due: degrees were meant.
 func (in *inference) angle(v value, want quantity, where place, from ast.Expr) {
-	if want.as != radian || v.as == radian || !isLiteral(from) {
+	if want.as != radian || v.as == radian || !isLiteral(from) || len(in.units[Number]) == 0 {
 		return
 	}
 	tv := in.info.Types[from]
@@ -37,22 +37,26 @@ func (in *inference) angle(v value, want quantity, where place, from ast.Expr) {
 		return
 	}
 	if x, _ := constant.Float64Val(constant.ToFloat(tv.Value)); math.Abs(x) > 2*math.Pi {
-		in.refuse(from, where.what+" wants an angle; "+in.source(from)+" alone is in radian: write "+in.source(from)+"*"+in.hints[radian])
+		in.refuse(from, where.what+" wants an angle; "+in.source(from)+" alone is in radian: write "+in.times(from, in.units[Number][0]))
 	}
 }
 
 // bareHint says what to write in place of a number without unit.
 func (in *inference) bareHint(from ast.Expr, want quantity) string {
-	unit := in.hints[want.as]
-	if unit == "" {
-		unit = in.hintDims[want.dim]
-	}
 	s := in.source(from) + " has no unit"
-	if unit == "" {
+	units := in.units[want.dim]
+	if t := in.info.TypeOf(from); len(units) == 0 || t == nil || !numeric(t) {
 		return s
 	}
-	return s + ": write " + in.times(from, unit)
+	s += ": write " + in.times(from, units[0])
+	if more := units[1:min(len(units), maxUnits)]; len(more) > 0 {
+		s += " (or " + strings.Join(more, ", ") + ")"
+	}
+	return s
 }
+
+// maxUnits bounds the units that a hint names.
+const maxUnits = 4
 
 // times writes an expression times a unit.
 func (in *inference) times(e ast.Expr, unit string) string {
@@ -76,8 +80,8 @@ func pointHint(got, want Dim) string {
 
 // refuseSum refuses x+y or x-y.
 func (in *inference) refuseSum(op token.Token, ex ast.Expr, x value, ey ast.Expr, y value) {
-	text := "adds "
-	if op == token.SUB {
+	text, minus := "adds ", op == token.SUB || op == token.SUB_ASSIGN
+	if minus {
 		text = "subtracts "
 	}
 	sx, sy := in.source(ex), in.source(ey)
@@ -87,7 +91,7 @@ func (in *inference) refuseSum(op token.Token, ex ast.Expr, x value, ey ast.Expr
 	}
 	first, second := x, y
 	link := " and "
-	if op == token.SUB {
+	if minus {
 		first, second, link = y, x, " from "
 	}
 	in.refuseSpan(ex.Pos(), ey.End(), sx+" "+op.String()+" "+sy+" "+text+in.word(first.quantity)+link+in.word(second.quantity)+sumHint(x.dim, y.dim))

@@ -197,13 +197,13 @@ func (in *inference) binary(e *ast.BinaryExpr) value {
 // operate gives what is known of x op y for arithmetic.
 func (in *inference) operate(op token.Token, ex ast.Expr, x value, ey ast.Expr, y value) value {
 	switch op {
-	case token.ADD, token.SUB:
-		v, ok := sum(x, y, op == token.SUB)
+	case token.ADD, token.SUB, token.ADD_ASSIGN, token.SUB_ASSIGN:
+		v, ok := sum(x, y, op == token.SUB || op == token.SUB_ASSIGN)
 		if !ok {
 			in.refuseSum(op, ex, x, ey, y)
 		}
 		return v
-	case token.MUL:
+	case token.MUL, token.MUL_ASSIGN:
 		if in.isPoint(ey) && (x.plain() || x.kind == zero) {
 			return y
 		}
@@ -211,7 +211,7 @@ func (in *inference) operate(op token.Token, ex ast.Expr, x value, ey ast.Expr, 
 			return x
 		}
 		return product(x, y, 1)
-	case token.QUO:
+	case token.QUO, token.QUO_ASSIGN:
 		return product(x, y, -1)
 	}
 	return number

@@ -47,7 +47,7 @@ const maxPasses = 12
 
 // run passes over the files until nothing moves, and records the last pass.
 func (in *inference) run(files []*ast.File) {
-	in.env = map[any]value{}
+	in.env, in.values, in.reads = map[any]value{}, map[ast.Expr]value{}, readers{}
 	for pass := 0; ; pass++ {
 		in.pass(files)
 		moved := false
@@ -70,9 +70,8 @@ func (in *inference) run(files []*ast.File) {
 
 // pass passes over the files once.
 func (in *inference) pass(files []*ast.File) {
-	in.next = map[any]value{}
-	in.values = map[ast.Expr]value{}
-	in.reads = readers{}
+	in.next = make(map[any]value, len(in.env))
+	clear(in.values)
 	for _, f := range files {
 		for _, d := range f.Decls {
 			switch d := d.(type) {

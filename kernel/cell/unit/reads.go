@@ -25,8 +25,11 @@ func (r readers) drop(obj types.Object) {
 // anyLiteral stands for the function literals of a cell, which are held by whatever variables of the cell hold functions.
 var anyLiteral types.Object = types.NewVar(0, nil, "func", types.Typ[types.Invalid])
 
-// note notes that the function being passed over reads an object.
+// note notes, in the last pass, that the function being passed over reads an object.
 func (in *inference) note(obj types.Object) {
+	if !in.final {
+		return
+	}
 	for _, f := range in.funcs {
 		switch of := f.of.(type) {
 		case *types.Func:

@@ -131,14 +131,13 @@ func (in *inference) assignment(s *ast.AssignStmt) {
 
 // combined passes over x += y and the like.
 func (in *inference) combined(s *ast.AssignStmt) {
-	op, ok := map[token.Token]token.Token{
-		token.ADD_ASSIGN: token.ADD, token.SUB_ASSIGN: token.SUB, token.MUL_ASSIGN: token.MUL, token.QUO_ASSIGN: token.QUO,
-	}[s.Tok]
 	x, y := in.expr(s.Lhs[0]), in.expr(s.Rhs[0])
-	if !ok || in.isText(s.Lhs[0]) {
-		return
+	switch s.Tok {
+	case token.ADD_ASSIGN, token.SUB_ASSIGN, token.MUL_ASSIGN, token.QUO_ASSIGN:
+		if !in.isText(s.Lhs[0]) {
+			in.store(s.Lhs[0], in.operate(s.Tok, s.Lhs[0], x, s.Rhs[0], y), s.Rhs[0])
+		}
 	}
-	in.store(s.Lhs[0], in.operate(op, s.Lhs[0], x, s.Rhs[0], y), s.Rhs[0])
 }
 
 // store assigns to a variable, a field or an element. The value comes from an expression, which a refusal points at.

@@ -55,8 +55,7 @@ type table struct {
 	constants map[string]constantOf
 	aliases   map[string]quantity
 	bare      map[Dim]bool
-	hints     map[string]string // unit text -> constant to suggest
-	hintDims  map[Dim]string
+	units     map[Dim][]string // the unit constants of a dimension
 }
 
 // constantOf is a constant's dimension with the text it was listed under.
@@ -75,7 +74,7 @@ type quantity struct {
 func (t *Table) read() (*table, error) {
 	r := &table{
 		Table: t, symbols: map[string]Dim{}, texts: map[Dim]string{}, constants: map[string]constantOf{},
-		aliases: map[string]quantity{}, bare: map[Dim]bool{}, hints: map[string]string{}, hintDims: map[Dim]string{},
+		aliases: map[string]quantity{}, bare: map[Dim]bool{}, units: map[Dim][]string{},
 	}
 	if err := r.readSymbols(); err != nil {
 		return nil, err
@@ -97,11 +96,8 @@ func (t *Table) read() (*table, error) {
 			return nil, fmt.Errorf("constant %s: %w", c.Name, err)
 		}
 		r.constants[c.Name] = constantOf{quantity{d, c.Dim}, c.Name}
-		if r.hints[c.Dim] == "" {
-			r.hints[c.Dim] = c.Name
-		}
-		if r.hintDims[d] == "" {
-			r.hintDims[d] = c.Name
+		if d != Number || c.Dim == radian {
+			r.units[d] = append(r.units[d], c.Name)
 		}
 	}
 	for _, name := range sortedKeys(t.Aliases) {
