@@ -26,7 +26,7 @@ root of the diagonal of the Jacobian at zero field, which helps both methods gre
 
 For each method one line of JSON is printed: the method, the number of networks that it solved (every residual below
 1e-6 of the magnitudes in its row plus 1e-12 of the largest flux: judged here, not by what the method reports), how
-many it reported as solved, the time per network in ms, making of the equations included, and the fluxes of every
+many it reported as solved, the processor time per network in ms, making of the equations included, and the fluxes of every
 network solved (null for the others).
 """
 import json
@@ -106,14 +106,14 @@ class Network:
 def run(networks, method):
     fluxes, reported, spent = [], 0, 0.0
     for data in networks:
-        start = time.perf_counter()
+        start = time.process_time()
         network = Network(data)
         try:
             with numpy.errstate(all="ignore"):
                 answer = root(network.residual, numpy.zeros(network.size), jac=network.jacobian, method=method, tol=1e-12)
         except (ValueError, FloatingPointError, numpy.linalg.LinAlgError):
             answer = None
-        spent += time.perf_counter() - start
+        spent += time.process_time() - start
         with numpy.errstate(all="ignore"):
             fluxes.append(network.judge(answer.x) if answer is not None else None)
         reported += bool(answer is not None and answer.success)
