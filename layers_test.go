@@ -48,6 +48,7 @@ var layers = map[string][]string{
 	"kernel/cell":        {"kernel", "kernel/cell/unit"},
 	"kernel/notebook":    {"kernel"},
 	"kernel/page/mathml": {},
+	"kernel/page/clean":  {},
 	"kernel/page":        {"kernel", "kernel/notebook", "kernel/page/mathml", "kernel/page/clean"},
 	"kernel/batch":        {"kernel", "kernel/notebook", "kernel/page"},
 }

@@ -16,16 +16,21 @@ type displays struct {
 	mu      sync.Mutex
 	byID    map[string][]*Output
 	clearAt map[*Cell]bool // cells to be cleared when the next output arrives
+	closed  bool           // the run is over; what comes now is too late to be written
 }
 
 // sink gives the sink of a cell; nil: updates only.
 func (d *displays) sink(c *Cell) kernel.Sink {
 	return func(o kernel.Output) {
-		if o.Kind == kernel.Update {
+		d.mu.Lock()
+		defer d.mu.Unlock()
+		switch {
+		case d.closed:
+			return
+		case o.Kind == kernel.Update:
 			d.update(o)
 			return
-		}
-		if c == nil {
+		case c == nil:
 			return
 		}
 		switch o.Kind {
@@ -41,15 +46,27 @@ func (d *displays) sink(c *Cell) kernel.Sink {
 	}
 }
 
-// show adds a display or result.
+// fault adds what stopped a cell.
+func (d *displays) fault(c *Cell, f *kernel.Fault) {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	d.add(c, &Output{Kind: Fault, Fault: f.Name, Text: clean(f.Text), Traceback: cleanAll(f.Traceback)})
+}
+
+// close ends the collection: the notebook stays as it is from now on.
+func (d *displays) close() {
+	d.mu.Lock()
+	defer d.mu.Unlock()
+	d.closed = true
+}
+
+// show adds a display or result. It and the methods below run under the lock.
 func (d *displays) show(c *Cell, from kernel.Output, out *Output) {
 	out.Data, out.Metadata = settle(from.Data), settle(from.Metadata)
 	d.add(c, out)
 	if from.ID == "" {
 		return
 	}
-	d.mu.Lock()
-	defer d.mu.Unlock()
 	if d.byID == nil {
 		d.byID = map[string][]*Output{}
 	}
@@ -58,8 +75,6 @@ func (d *displays) show(c *Cell, from kernel.Output, out *Output) {
 
 // add appends an output to the cell, after a clear that waited for it.
 func (d *displays) add(c *Cell, out *Output) {
-	d.mu.Lock()
-	defer d.mu.Unlock()
 	d.clearIfDue(c)
 	c.Outputs = append(c.Outputs, out)
 }
@@ -73,8 +88,6 @@ func (d *displays) stream(c *Cell, o kernel.Output) {
 	if name != "stderr" {
 		name = "stdout"
 	}
-	d.mu.Lock()
-	defer d.mu.Unlock()
 	d.clearIfDue(c)
 	if n := len(c.Outputs); n > 0 && c.Outputs[n-1].Kind == Stream && c.Outputs[n-1].Name == name {
 		c.Outputs[n-1].Text += clean(o.Text)
@@ -85,16 +98,12 @@ func (d *displays) stream(c *Cell, o kernel.Output) {
 
 // update gives every display of that id a new content.
 func (d *displays) update(o kernel.Output) {
-	d.mu.Lock()
-	defer d.mu.Unlock()
 	for _, out := range d.byID[o.ID] {
 		out.Data, out.Metadata = settle(o.Data), settle(o.Metadata)
 	}
 }
 
 func (d *displays) clear(c *Cell, wait bool) {
-	d.mu.Lock()
-	defer d.mu.Unlock()
 	if !wait {
 		c.Outputs = nil
 		delete(d.clearAt, c)

@@ -59,6 +59,7 @@ func Run(ctx context.Context, nb *Notebook, engine kernel.Engine, opts Options) 
 	nb.describe(engine.Language())
 	report := &Report{Cells: nb.prepare()}
 	shown := &displays{}
+	defer shown.close()
 	last := shown.sink(nil)
 	for i := range report.Cells {
 		if ctx.Err() != nil {
@@ -127,7 +128,7 @@ func runCell(ctx context.Context, c *Cell, report *CellReport, engine kernel.Eng
 		report.Status = Done
 	}
 	if f := outcome.Fault; f != nil {
-		shown.add(c, &Output{Kind: Fault, Fault: f.Name, Text: clean(f.Text), Traceback: cleanAll(f.Traceback)})
+		shown.fault(c, f)
 	}
 	return sink
 }

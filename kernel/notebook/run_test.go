@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"strings"
+	"sync"
 	"testing"
 
 	"github.com/google/go-cmp/cmp"
@@ -187,6 +188,40 @@ func TestFinishFillsAPlace(t *testing.T) {
 		if diff := cmp.Diff([]string{"display: 2 of 2"}, shown(nb.Cells[0])); diff != "" {
 			t.Errorf("after %q (-want +got):\n%s", last, diff)
 		}
+	}
+}
+
+func TestOutputAfterTheRunIsNotTaken(t *testing.T) {
+	nb := cells("out a")
+	var late kernel.Sink
+	run(t, nb, notebook.Options{Finish: func(out kernel.Sink) { late = out }})
+	late(kernel.Output{Kind: kernel.Stream, Name: "stdout", Text: "late\n"})
+	if diff := cmp.Diff([]string{"stdout: a\n"}, shown(nb.Cells[0])); diff != "" {
+		t.Errorf("(-want +got):\n%s", diff)
+	}
+}
+
+func TestOutputFromSeveralGoroutines(t *testing.T) {
+	nb := cells("x")
+	var wait sync.WaitGroup
+	run(t, nb, notebook.Options{Finish: func(out kernel.Sink) {
+		for range 8 {
+			wait.Go(func() {
+				for range 100 {
+					out(kernel.Output{Kind: kernel.Stream, Name: "stdout", Text: "."})
+					out(kernel.Output{Kind: kernel.Display, ID: "d", Data: map[string]any{"text/plain": "x"}})
+					out(kernel.Output{Kind: kernel.Update, ID: "d", Data: map[string]any{"text/plain": "y"}})
+				}
+			})
+		}
+		wait.Wait()
+	}})
+	dots := 0
+	for _, line := range shown(nb.Cells[0]) {
+		dots += strings.Count(line, ".")
+	}
+	if dots != 800 {
+		t.Errorf("%d of 800 texts arrived", dots)
 	}
 }
 

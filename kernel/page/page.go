@@ -11,7 +11,7 @@
 // goes along as its twin in words.
 //
 // HTML outputs may use these classes: table.at with td.num for numbers and td.pass, .fail, .open, .waived for status
-// words; p.verdict with one of the same four; p.note; .at-verdict with data-status="PASS" and so on for a status word
+// words; p.verdict with one of the same four; p.note, p.cite, p.revision; ul.assumptions; .at-verdict with data-status="PASS" and so on for a status word
 // in running text; .at-note and .at-caution for paragraphs that stand out.
 package page
 
