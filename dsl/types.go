@@ -122,7 +122,8 @@ type (
 	// Ratio is a plain number, or a share written with percent.
 	Ratio = float64
 	// Value is a number in the one unit that a call is about: all arguments and results of that type in a call have the
-	// same unit, and for a method it is the unit of its receiver. AtMost(0.32*tesla) is a bound in T.
+	// same unit, and for a method it is the unit of its receiver. AtMost(0.32*tesla) is a bound in T. Several lists, as
+	// the x and y of a curve, have a unit each.
 	Value = float64
 )
 

@@ -55,6 +55,7 @@ func TestRefused(t *testing.T) {
 		{"foreign", []string{"Inner: type far.Inner is of a package", "Failure.Code: type far.Code is of a package", "give it an alias in foreign"}},
 		{"hidden", []string{"Open: type secret is not exported"}},
 		{"undocumented", []string{"without a doc comment: Rod, Rod.Length"}},
+		{"clash", []string{"unexported methods of one name and two signatures", "was Part: Beam *Beam;"}},
 		{"missing", []string{"go list"}},
 	} {
 		t.Run(c.pkg, func(t *testing.T) {
@@ -110,6 +111,10 @@ func TestExportData(t *testing.T) {
 	}
 	if bytes.Contains(data, []byte("Inner")) || bytes.Contains(data, []byte("toy.go")) {
 		t.Error("the export data names unexported insides or files")
+	}
+	part := pkg.Scope().Lookup("Part").Type().Underlying().(*types.Interface)
+	if !types.Implements(pkg.Scope().Lookup("Beam").Type(), part) || types.Implements(pkg.Scope().Lookup("Rod").Type(), part) {
+		t.Error("the sealed interface is not satisfied by Beam alone")
 	}
 	for name, want := range map[string]string{"Big": "1267650600228229401496703205376", "Name": `"toy"`} {
 		if got := pkg.Scope().Lookup(name).(*types.Const).Val().ExactString(); got != want {

@@ -11,8 +11,8 @@ import (
 // leftOut are functions of the standard packages that cells get no symbol for: they read the standard input.
 var leftOut = map[string]bool{"fmt.Scan": true, "fmt.Scanf": true, "fmt.Scanln": true}
 
-// strip checks the package once more, without what cells have no use for: unexported fields, which would drag the
-// insides of other packages into the export data, and, outside the vocabulary, functions and methods that cells
+// strip checks the package once more, without what cells have no use for: unexported fields and the signatures of
+// unexported methods, which would drag the insides of other packages into the export data, and, outside the vocabulary, functions and methods that cells
 // could not call (generics, types of packages that are not in the table). What remains must not change by that.
 func (p *loaded) strip() error {
 	for _, f := range p.files {
@@ -32,7 +32,37 @@ func (p *loaded) strip() error {
 			return fmt.Errorf("%s changes when unexported fields are left out: %s, was %s (%v)", name, is, was, errs)
 		}
 	}
+	if was, is := implementers(p.full), implementers(p.api); was != is {
+		return fmt.Errorf("unexported methods of one name and two signatures: %s, was %s", is, was)
+	}
 	return nil
+}
+
+// implementers writes which exported types of a package satisfy which of its exported interfaces.
+func implementers(pkg *types.Package) string {
+	var b strings.Builder
+	for _, iface := range pkg.Scope().Names() {
+		it, ok := pkg.Scope().Lookup(iface).(*types.TypeName)
+		if !ok || !it.Exported() || isGeneric(it.Type()) || !types.IsInterface(it.Type()) {
+			continue
+		}
+		i := it.Type().Underlying().(*types.Interface)
+		fmt.Fprintf(&b, "%s:", iface)
+		for _, name := range pkg.Scope().Names() {
+			t, ok := pkg.Scope().Lookup(name).(*types.TypeName)
+			if !ok || !t.Exported() || isGeneric(t.Type()) {
+				continue
+			}
+			if types.Implements(t.Type(), i) {
+				fmt.Fprintf(&b, " %s", name)
+			}
+			if types.Implements(types.NewPointer(t.Type()), i) {
+				fmt.Fprintf(&b, " *%s", name)
+			}
+		}
+		b.WriteString("; ")
+	}
+	return b.String()
 }
 
 // describe writes what cells see of a name: its type and the methods of a defined type.
@@ -71,8 +101,13 @@ func (p *loaded) stripFile(f *ast.File) {
 		if fn, ok := d.(*ast.FuncDecl); ok && p.drops(fn) {
 			continue
 		}
-		if gen, ok := d.(*ast.GenDecl); ok {
-			p.stripTypes(gen)
+		switch d := d.(type) {
+		case *ast.GenDecl:
+			p.stripTypes(d)
+		case *ast.FuncDecl:
+			if d.Recv != nil && !d.Name.IsExported() {
+				seal(d.Type)
+			}
 		}
 		kept = append(kept, d)
 	}
@@ -129,6 +164,13 @@ func (p *loaded) stripTypes(gen *ast.GenDecl) {
 		if !ok {
 			continue
 		}
+		if it, ok := ts.Type.(*ast.InterfaceType); ok {
+			for _, m := range it.Methods.List {
+				if ft, ok := m.Type.(*ast.FuncType); ok && !m.Names[0].IsExported() {
+					seal(ft)
+				}
+			}
+		}
 		st, ok := ts.Type.(*ast.StructType)
 		obj := p.full.Scope().Lookup(ts.Name.Name)
 		if !ok || obj == nil || ts.TypeParams != nil {
@@ -136,6 +178,12 @@ func (p *loaded) stripTypes(gen *ast.GenDecl) {
 		}
 		stripFields(st, types.Comparable(obj.Type()))
 	}
+}
+
+// seal leaves parameters and results out of the signature of an unexported method. Its name alone keeps other packages
+// from satisfying an interface.
+func seal(t *ast.FuncType) {
+	t.Params, t.Results = &ast.FieldList{Opening: t.Params.Opening, Closing: t.Params.Closing}, nil
 }
 
 // stripFields puts one blank field in the place of all unexported fields that are not embedded; its type keeps the

@@ -69,7 +69,7 @@ func (in *inference) agree(c *common) {
 			if m.dim == Number {
 				text += in.bareHint(m.expr, lead.quantity)
 			} else {
-				text += in.source(m.expr) + " is in " + in.word(m.quantity) + pointHint(m.dim, lead.dim)
+				text += in.source(m.expr) + " is in " + in.word(m.quantity) + in.pointHint(m.dim, lead.dim)
 			}
 		}
 		in.refuse(m.expr, text)

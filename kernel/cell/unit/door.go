@@ -23,7 +23,7 @@ func (in *inference) door(v value, want quantity, where place, from ast.Expr) {
 	case v.dim == Number:
 		in.refuse(from, where.what+" wants "+in.word(want)+"; "+in.bareHint(from, want))
 	default:
-		in.refuse(from, where.what+" wants "+in.word(want)+"; "+in.source(from)+" is in "+in.word(v.quantity)+pointHint(v.dim, want.dim))
+		in.refuse(from, where.what+" wants "+in.word(want)+"; "+in.source(from)+" is in "+in.word(v.quantity)+in.pointHint(v.dim, want.dim))
 	}
 }
 
@@ -68,14 +68,22 @@ func (in *inference) times(e ast.Expr, unit string) string {
 }
 
 // pointHint tells temperatures and their differences apart.
-func pointHint(got, want Dim) string {
+func (r *table) pointHint(got, want Dim) string {
 	switch {
 	case got.Point && got.difference() == want:
-		return ", a temperature; a difference is written with kelvin"
+		return ", a temperature; a difference is written with " + r.unitFor(want)
 	case want.Point && want.difference() == got:
-		return ", a difference; a temperature is written with degC"
+		return ", a difference; a temperature is written with " + r.unitFor(want)
 	}
 	return ""
+}
+
+// unitFor names the constant that a number in a dimension is written with.
+func (r *table) unitFor(d Dim) string {
+	if u := r.units[d]; len(u) > 0 {
+		return u[0]
+	}
+	return r.text(d)
 }
 
 // refuseSum refuses x+y or x-y.
@@ -86,7 +94,7 @@ func (in *inference) refuseSum(op token.Token, ex ast.Expr, x value, ey ast.Expr
 	}
 	sx, sy := in.source(ex), in.source(ey)
 	if x.dim.Point && y.dim.Point {
-		in.refuseSpan(ex.Pos(), ey.End(), sx+" and "+sy+" are both temperatures, whose sum means nothing; a difference is written with kelvin")
+		in.refuseSpan(ex.Pos(), ey.End(), sx+" and "+sy+" are both temperatures, whose sum means nothing; a difference is written with "+in.unitFor(x.dim.difference()))
 		return
 	}
 	first, second := x, y
@@ -109,7 +117,11 @@ func sumHint(x, y Dim) string {
 func (in *inference) refuseCompare(at, ex ast.Expr, x value, ey ast.Expr, y value) {
 	text := in.source(at) + " compares " + in.word(x.quantity) + " with " + in.word(y.quantity)
 	if x.dim.Point != y.dim.Point && x.dim.difference() == y.dim.difference() {
-		text += "; degC is a temperature, kelvin a difference"
+		point, step := x.dim, y.dim
+		if y.dim.Point {
+			point, step = y.dim, x.dim
+		}
+		text += "; " + in.unitFor(point) + " is a temperature, " + in.unitFor(step) + " a difference"
 	}
 	in.refuse(at, text)
 }

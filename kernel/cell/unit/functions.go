@@ -91,7 +91,8 @@ func pure(in *inference, e *ast.CallExpr) []value {
 	args := in.operands(e)
 	for i, a := range e.Args {
 		if args[i].dimensional() {
-			in.refuse(a, in.source(e.Fun)+" wants a plain number; "+in.source(a)+" is in "+in.word(args[i].quantity))
+			in.refuse(a, in.source(e.Fun)+" wants a plain number; "+in.source(a)+" is in "+
+				in.word(args[i].quantity)+": divide it by a quantity in "+in.word(args[i].quantity))
 		}
 	}
 	return []value{number}

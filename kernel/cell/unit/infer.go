@@ -304,9 +304,8 @@ func (in *inference) params(list *ast.FieldList) {
 		return
 	}
 	for _, field := range list.List {
-		t := in.info.TypeOf(field.Type)
 		for _, id := range field.Names {
-			if obj := in.info.Defs[id]; obj != nil && !in.declare(obj, t) {
+			if obj := in.info.Defs[id]; obj != nil && !in.declare(obj, obj.Type()) {
 				in.declared[obj] = lost
 			}
 		}

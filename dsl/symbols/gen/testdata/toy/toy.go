@@ -52,8 +52,16 @@ func (r *Rod) At(t Second) Metre { return r.Length + t }
 // Part is sealed.
 type Part interface {
 	fmt.Stringer
-	part()
+	part(in *far.Inner) int
 }
+
+// Beam is a [Part].
+type Beam struct{}
+
+// String names it.
+func (Beam) String() string { return "beam" }
+
+func (Beam) part(in *far.Inner) int { return in.N }
 
 // Law is open; every method kind of a wrapper occurs.
 type Law interface {
