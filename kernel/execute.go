@@ -193,7 +193,7 @@ const burst = 20 * time.Millisecond
 // awaitBurst lets the cells that were sent together with a failed one arrive. It delays the failed one's reply, so a
 // cell sent after that reply is never taken for one of them.
 func (x *run) awaitBurst(ctx context.Context) {
-	wait := burst - time.Since(x.request.arrived)
+	wait := x.opt.Burst - time.Since(x.request.arrived)
 	if wait <= 0 {
 		return
 	}

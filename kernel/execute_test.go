@@ -8,6 +8,7 @@ import (
 
 	"ampturn/kernel"
 	"ampturn/kernel/kerneltest"
+	"ampturn/kernel/stream"
 )
 
 func lines(list []any) string {
@@ -56,7 +57,8 @@ func TestError(t *testing.T) {
 
 // Only a stored cell takes a number. A silent one tells the last that was taken, which is how a front end asks for it.
 func TestCounts(t *testing.T) {
-	f := kerneltest.Memory(t, kerneltest.NewToy())
+	toy := kerneltest.NewToy()
+	f := kerneltest.Memory(t, toy)
 	unstored, silent := map[string]any{"store_history": false}, map[string]any{"silent": true}
 	for i, c := range []struct {
 		code   string
@@ -66,6 +68,9 @@ func TestCounts(t *testing.T) {
 		{"", silent, 0}, {"1", nil, 1}, {"fail x", nil, 2}, {"1", unstored, 3}, {"1", silent, 2}, {"1", nil, 3},
 	} {
 		equal(t, fmt.Sprint("cell ", i), f.RunWith(c.code, c.change).Count(), c.want)
+	}
+	for i, transient := range []bool{false, false, true, true, false} { // the empty cell is not run
+		equal(t, fmt.Sprint("run ", i), toy.Cells[i].Transient, transient)
 	}
 }
 
@@ -154,6 +159,29 @@ func TestStopOnError(t *testing.T) {
 	})
 }
 
+// Of cells sent in one go, those that are still under way when the first has failed are not run either.
+func TestStopOnErrorAwaitsTheBurst(t *testing.T) {
+	f, _ := kerneltest.MemoryKernel(t, kerneltest.NewToy(), &kernel.Options{Burst: 500 * time.Millisecond})
+	first := f.Start("fail boom")
+	f.Await("error", func(m *kerneltest.Message) bool { return m.Type() == "error" })
+	second := f.Start("print never")
+	f.Finish(first)
+	equal(t, "second", f.Finish(second).Status(), "error")
+	equal(t, "third", f.Run("1").Status(), "ok")
+}
+
+// On shell, kernel_info passes a running cell but not one that waits.
+func TestInfoKeepsItsTurn(t *testing.T) {
+	f := kerneltest.Memory(t, kerneltest.NewToy())
+	f.Start("sleep 100")
+	second := f.Start("1+1")
+	info := f.Send(kernel.Shell, "kernel_info_request", map[string]any{})
+	f.Reply(info)
+	if len(f.All(func(m *kerneltest.Message) bool { return m.Type() == "execute_reply" && m.Parent["msg_id"] == second })) == 0 {
+		t.Error("kernel_info was answered before the cell that was sent before it")
+	}
+}
+
 // A cell sent after the reply of a failed one runs, however soon it comes.
 func TestRunsAfterError(t *testing.T) {
 	joined(t, func(t *testing.T, f *kerneltest.Front) {
@@ -202,6 +230,17 @@ func TestTextIsGathered(t *testing.T) {
 		e = f.Run(`raw "\xff\xfe bad\n"`)
 		equal(t, "not UTF-8", e.Text("stdout"), "\uFFFD bad\n")
 	})
+}
+
+func TestLongTextIsCut(t *testing.T) {
+	f, _ := kerneltest.MemoryKernel(t, kerneltest.NewToy(), &kernel.Options{Text: &stream.Limits{Lines: 10, Tail: 30}})
+	got := f.Run("lines 1000").Text("stdout")
+	for _, want := range []string{"line 0\n", "line 9\n\n... output is cut here", "lines (", "line 998\nline 999\n"} {
+		if !strings.Contains(got, want) {
+			t.Errorf("no %q in %q", want, got)
+		}
+	}
+	equal(t, "the next cell", f.Run("lines 3").Text("stdout"), "line 0\nline 1\nline 2\n")
 }
 
 // The first of many updates and the last arrive; those between may be left out.

@@ -94,6 +94,16 @@ func TestInput(t *testing.T) {
 	})
 }
 
+// What a cell printed is seen before its question.
+func TestInputComesAfterText(t *testing.T) {
+	f := kerneltest.Memory(t, kerneltest.NewToy())
+	f.Send(kernel.Shell, "execute_request", kerneltest.Request("print before\nask name? ", map[string]any{"allow_stdin": true}))
+	f.Await("question", func(m *kerneltest.Message) bool { return m.Type() == "input_request" })
+	all := f.All(func(m *kerneltest.Message) bool { return m.Type() == "stream" || m.Type() == "input_request" })
+	equal(t, "first message", all[0].Type(), "stream")
+	f.Ask(kernel.Control, "interrupt_request", map[string]any{})
+}
+
 func TestShutdown(t *testing.T) {
 	for _, ch := range []kernel.Channel{kernel.Control, kernel.Shell} {
 		for _, code := range []string{"1+1", "loop"} {

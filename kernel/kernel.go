@@ -5,6 +5,7 @@ import (
 	"runtime/debug"
 	"sync"
 	"sync/atomic"
+	"time"
 
 	"ampturn/kernel/stream"
 	"ampturn/kernel/wire"
@@ -30,6 +31,7 @@ type Options struct {
 	Version string
 	Links   []HelpLink // for the help menu
 	Text    *stream.Limits
+	Burst   time.Duration                    // how long a front end takes to send all cells at once: 20 ms
 	Memory  int64                            // most bytes the process may hold in a cell; 0: by the machine, < 0: any
 	Log     func(format string, args ...any) // messages dropped, peers gone; nil: nowhere
 }
@@ -82,6 +84,9 @@ func New(e Engine, link Link, s *wire.Session, o *Options) *Kernel {
 	}
 	if k.opt.Name == "" {
 		k.opt.Name = "ampturn"
+	}
+	if k.opt.Burst == 0 {
+		k.opt.Burst = burst
 	}
 	if k.opt.Memory == 0 {
 		k.opt.Memory = memoryLimit()

@@ -131,6 +131,7 @@ func TestComplete(t *testing.T) {
 		for _, cursor := range []int{-1, 1_000_000} {
 			m := f.Ask(kernel.Shell, "complete_request", map[string]any{"code": code, "cursor_pos": cursor})
 			equal(t, "status", m.Content["status"], any("ok"))
+			equal(t, "end", m.Int("cursor_end"), min(max(cursor, 0), 9))
 		}
 	})
 }

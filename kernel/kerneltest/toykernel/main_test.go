@@ -108,9 +108,13 @@ func TestSIGTERM(t *testing.T) {
 	for _, code := range []string{"1", "loop"} {
 		p := start(t)
 		f := p.front(t)
-		f.Running(f.Start(code))
+		id := f.Start(code)
+		f.Running(id)
 		p.Process.Signal(syscall.SIGTERM)
 		p.gone(t, 5*time.Second)
+		if e := f.Finish(id); (code == "loop") != (e.Reply.Content["ename"] == "Interrupted") {
+			t.Errorf("%s: %v", code, e.Reply)
+		}
 		if c := p.ProcessState.ExitCode(); c != 0 {
 			t.Errorf("exit code %d: %s", c, &p.stderr)
 		}
