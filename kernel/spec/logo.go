@@ -41,7 +41,7 @@ func logoSVG() string {
 	var b strings.Builder
 	fmt.Fprintf(&b, `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 %d %d" width="%d" height="%d">`+"\n",
 		field, field, field, field)
-	b.WriteString("<title>a core with a gap and a winding</title>\n")
+	b.WriteString("<title>a core with a gap and a coil</title>\n")
 	for _, r := range logo {
 		fmt.Fprintf(&b, `<rect x="%g" y="%g" width="%g" height="%g" fill="#%02x%02x%02x"/>`+"\n",
 			r.x, r.y, r.w, r.h, r.fill.R, r.fill.G, r.fill.B)
