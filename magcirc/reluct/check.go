@@ -67,7 +67,7 @@ func (n *Network) checkElement(i, k int) error {
 		if e.Law == nil {
 			return &magcirc.Error{Code: magcirc.BadValue, Elem: n.part(i, k), Msg: "has no magnetisation law"}
 		}
-		return n.first(n.positive(i, k, "length", "m", e.Length), n.positive(i, k, "area", "m2", e.Area), n.notNegative(i, k, "enclosed air area", "m2", e.Air))
+		return first(n.positive(i, k, "length", "m", e.Length), n.positive(i, k, "area", "m2", e.Area), n.notNegative(i, k, "enclosed air area", "m2", e.Air))
 	case Gap:
 		return n.positive(i, k, "permeance", "H", e.Permeance)
 	case Stray:
@@ -76,12 +76,12 @@ func (n *Network) checkElement(i, k int) error {
 		if !finite(e.Br) {
 			return n.bad(i, k, "remanence", "T", e.Br, "is not a finite number")
 		}
-		return n.first(n.positive(i, k, "length", "m", e.Length), n.positive(i, k, "area", "m2", e.Area), n.positive(i, k, "recoil permeability", "", e.Mur))
+		return first(n.positive(i, k, "length", "m", e.Length), n.positive(i, k, "area", "m2", e.Area), n.positive(i, k, "recoil permeability", "", e.Mur))
 	}
 	return &magcirc.Error{Code: magcirc.BadValue, Elem: n.part(i, k), Msg: "is of no known kind"}
 }
 
-func (n *Network) first(errs ...error) error {
+func first(errs ...error) error {
 	for _, err := range errs {
 		if err != nil {
 			return err

@@ -27,10 +27,10 @@
 // Method. The unknowns are the fluxes of the loops that the branches outside a spanning tree close; branches whose
 // flux a winding prescribes are kept out of the tree as far as possible, so that they leave the unknowns. The magnetic
 // energy minus the work of the sources is a convex function of the loop fluxes for every law that rises, and Newton's
-// method with a line search on its directional derivative finds its only minimum from any start. The value of the
-// energy is never used: one wide gap may hold 1e12 times the energy of the leg that is being solved, which leaves no
-// digits of it. [Network.SolveNodal] minimises the co-energy over node potentials instead, each element on its own: a
-// second formulation that must give the same fluxes.
+// method with a line search on its directional derivative finds its only minimum, after a few linear steps that bring
+// it near. The value of the energy is never used: one wide gap may hold 1e12 times the energy of the leg that is being
+// solved, which leaves no digits of it. [Network.SolveNodal] minimises the co-energy over node potentials instead, each
+// element on its own: a second formulation that must give the same fluxes.
 //
 // Left out: eddy currents, hysteresis (a law here has no memory) and the electric circuit around the windings.
 package reluct
