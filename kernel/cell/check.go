@@ -85,7 +85,7 @@ func (s *Session) check(p *parsed, fset *token.FileSet) (*checked, []problem) {
 		c := &checking{s: s, p: p, fset: fset, before: s.scope, withdrawn: withdrawn, sources: []*source{p.src}}
 		r, bad := c.run()
 		again := false
-		if round < 6 && c.widen() {
+		if round < 6 && (c.widen() || c.keyLiterals(r)) {
 			again = true
 		}
 		if !again {
@@ -323,12 +323,20 @@ func (c *checking) fill(pkg *types.Package, names *scope, files ...*ast.File) {
 					return true
 				}
 				if o := c.s.object(names, id.Name); o != nil && !c.isCarried(id.Name, pkg) {
-					pkg.Scope().Insert(o)
+					insert(pkg, o)
 				}
 				return true
 			})
 		}
 	}
+}
+
+// insert puts an object into a package's scope; the checker wants names of packages to be the package's own.
+func insert(pkg *types.Package, o types.Object) {
+	if p, ok := o.(*types.PkgName); ok {
+		o = types.NewPkgName(token.NoPos, pkg, p.Name(), p.Imported())
+	}
+	pkg.Scope().Insert(o)
 }
 
 func (c *checking) isCarried(name string, pkg *types.Package) bool {

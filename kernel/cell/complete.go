@@ -208,7 +208,7 @@ func (s *Session) typeOfText(x ast.Expr, names *scope) types.Type {
 	ast.Inspect(x, func(n ast.Node) bool {
 		if id, ok := n.(*ast.Ident); ok {
 			if o := s.object(names, id.Name); o != nil {
-				pkg.Scope().Insert(o)
+				insert(pkg, o)
 			}
 		}
 		return true

@@ -4,7 +4,10 @@ import (
 	"fmt"
 	"math"
 	"reflect"
+	goruntime "runtime"
 	"sort"
+	"strconv"
+	"strings"
 	"sync/atomic"
 
 	"ampturn/kernel"
@@ -25,7 +28,7 @@ func (s *Session) helpers() map[string]reflect.Value {
 	s.raceMark, s.raceDepth = &at, &depth
 	return map[string]reflect.Value{
 		"Interrupt": reflect.ValueOf(func() { panic(interrupted{}) }),
-		"Deep":      reflect.ValueOf(func() { panic(tooDeep{}) }),
+		"Deep":      reflect.ValueOf(s.deep),
 		"Panic":     reflect.ValueOf(func(v any) { panic(userPanic{v}) }),
 		"At":        reflect.ValueOf(func(k int) { at.Store(int64(k)) }),
 		"Poll": reflect.ValueOf(func() {
@@ -35,7 +38,7 @@ func (s *Session) helpers() map[string]reflect.Value {
 		}),
 		"Enter": reflect.ValueOf(func() {
 			if depth.Add(1) > maxDepth {
-				panic(tooDeep{})
+				s.deep()
 			}
 		}),
 		"Leave": reflect.ValueOf(func() { depth.Add(-1) }),
@@ -48,9 +51,9 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"ShowBundle": reflect.ValueOf(s.showBundle),
 		"ShowText":   reflect.ValueOf(s.showText),
 		"Help":       reflect.ValueOf(s.showHelp),
-		"Print":      reflect.ValueOf(func(v ...any) { s.stream("stdout", fmt.Sprint(v...)) }),
-		"Println":    reflect.ValueOf(func(v ...any) { s.stream("stdout", fmt.Sprintln(v...)) }),
-		"Printf":     reflect.ValueOf(func(format string, v ...any) { s.stream("stdout", fmt.Sprintf(format, v...)) }),
+		"Print":      reflect.ValueOf(func(v ...any) (int, error) { return s.print(fmt.Sprint(v...)) }),
+		"Println":    reflect.ValueOf(func(v ...any) (int, error) { return s.print(fmt.Sprintln(v...)) }),
+		"Printf":     reflect.ValueOf(func(format string, v ...any) (int, error) { return s.print(fmt.Sprintf(format, v...)) }),
 		"Worded":     reflect.ValueOf(func(v any, text func() string) any { return worded{v, text} }),
 		"Sort":       reflect.ValueOf(sortKeys),
 		"MinFloat":   reflect.ValueOf(func(v ...float64) float64 { return extreme(v, math.Min) }),
@@ -70,6 +73,29 @@ func extreme[T any](v []T, f func(a, b T) T) T {
 		x = f(x, y)
 	}
 	return x
+}
+
+// deep ends the goroutine of the cell, which unwinds in linear time where a panic would not. In other goroutines, which
+// compiled code waits for, it panics.
+func (s *Session) deep() {
+	if goroutine() == s.runner.Load() {
+		s.tooDeep.Store(true)
+		goruntime.Goexit()
+	}
+	panic(tooDeep{})
+}
+
+// goroutine gives the number of the goroutine under way.
+func goroutine() int64 {
+	var buf [64]byte
+	text := strings.Fields(string(buf[:goruntime.Stack(buf[:], false)]))
+	n, _ := strconv.ParseInt(text[1], 10, 64)
+	return n
+}
+
+func (s *Session) print(text string) (int, error) {
+	s.stream("stdout", text)
+	return len(text), nil
 }
 
 // stream writes text of the running cell.

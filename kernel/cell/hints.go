@@ -107,7 +107,8 @@ var (
 	caretOperator  = regexp.MustCompile(`operator \^ not defined`)
 	indirectNumber = regexp.MustCompile(`cannot indirect`)
 	truncated      = regexp.MustCompile(`truncated|cannot use .* \(untyped float constant|constant .* as int value`)
-	notFunction    = regexp.MustCompile(`cannot call non-function (\w+)`)
+	notFunction    = regexp.MustCompile(`^(?:invalid operation: )?cannot call (?:non-function )?(\w+) \(variable`)
+	packageAlone   = regexp.MustCompile(`use of package (\w+) `)
 	haveWant       = regexp.MustCompile(`\n\s*have (.*)\n\s*want (.*)`)
 )
 
@@ -129,7 +130,7 @@ func (c *checking) hint(r *checked, e types.Error, b problem) problem {
 		m := undefinedField.FindStringSubmatch(e.Msg)
 		b.text = c.noMember(e.Msg, m[2], node)
 	case notEnough.MatchString(e.Msg), tooMany.MatchString(e.Msg):
-		b.text = c.arguments(e.Msg, node, b)
+		b.text = c.arguments(e.Msg, e.Pos, b)
 	case caretOperator.MatchString(e.Msg):
 		if x, ok := node.(*ast.BinaryExpr); ok {
 			b.text = "a power is math.Pow(" + c.quote(x.X) + ", " + c.quote(x.Y) + ")"
@@ -138,6 +139,9 @@ func (c *checking) hint(r *checked, e types.Error, b problem) problem {
 		}
 	case indirectNumber.MatchString(e.Msg):
 		b.text += "; a power is math.Pow(2, 3)"
+	case packageAlone.MatchString(e.Msg):
+		name := packageAlone.FindStringSubmatch(e.Msg)[1]
+		b.text = name + " is a package; its names are written " + name + ".Name, and they cannot be set"
 	case notFunction.MatchString(e.Msg):
 		name := notFunction.FindStringSubmatch(e.Msg)[1]
 		if l := r.after.names[name]; l != nil {
@@ -150,7 +154,7 @@ func (c *checking) hint(r *checked, e types.Error, b problem) problem {
 		}
 	case strings.HasPrefix(e.Msg, "assignment mismatch"):
 	case truncated.MatchString(e.Msg):
-		b.text = c.wholeHint(r, node, b.text)
+		b.text = c.wholeHint(r, e.Pos, b.text)
 	case strings.Contains(e.Msg, "redeclared in this block"), strings.HasPrefix(e.Msg, "no new variables on left side of :="):
 		b.text = strings.TrimSpace(strings.SplitN(b.text, "\n", 2)[0])
 		if strings.HasPrefix(e.Msg, "no new") {
@@ -220,6 +224,24 @@ func (c *checking) nodeAt(pos token.Pos) (found ast.Node) {
 	return found
 }
 
+// enclosing finds the smallest node of a kind around a position.
+func enclosing[N ast.Node](c *checking, pos token.Pos) (found N) {
+	visit := func(n ast.Node) bool {
+		if n == nil || pos < n.Pos() || pos > n.End() {
+			return false
+		}
+		if x, ok := n.(N); ok {
+			found = x
+		}
+		return true
+	}
+	for _, d := range c.p.decls {
+		ast.Inspect(d, visit)
+	}
+	ast.Inspect(c.p.body, visit)
+	return found
+}
+
 // undefined words an unknown name, with what may have been meant.
 func (c *checking) undefined(r *checked, name string, node ast.Node) string {
 	if as, ok := node.(*ast.AssignStmt); ok && as.Tok == token.ASSIGN {
@@ -273,9 +295,9 @@ func (c *checking) noMember(msg, name string, node ast.Node) string {
 }
 
 // arguments words a call with too few or too many arguments.
-func (c *checking) arguments(msg string, node ast.Node, b problem) string {
-	call, ok := node.(*ast.CallExpr)
-	if !ok {
+func (c *checking) arguments(msg string, pos token.Pos, b problem) string {
+	call := enclosing[*ast.CallExpr](c, pos)
+	if call == nil {
 		return c.plain(msg, b)
 	}
 	sig, ok := c.info.TypeOf(call.Fun).(*types.Signature)
@@ -318,9 +340,9 @@ func (c *checking) decimalComma(call *ast.CallExpr) string {
 }
 
 // wholeHint words a real number where a whole one is due.
-func (c *checking) wholeHint(r *checked, node ast.Node, text string) string {
-	as, ok := node.(*ast.AssignStmt)
-	if !ok || len(as.Lhs) == 0 {
+func (c *checking) wholeHint(r *checked, pos token.Pos, text string) string {
+	as := enclosing[*ast.AssignStmt](c, pos)
+	if as == nil || len(as.Lhs) == 0 {
 		return text
 	}
 	id, ok := as.Lhs[0].(*ast.Ident)

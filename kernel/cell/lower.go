@@ -81,15 +81,16 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 		s: s, r: r, info: r.info, unit: unit, src: r.src, locals: map[types.Object]string{}, taken: map[string]int{},
 		imports: map[string]bool{}, pending: map[*live]bool{},
 	}
-	for _, v := range r.fresh {
-		v.lowered = s.version(v.name, false)
-		l.globals = append(l.globals, "var "+v.lowered+" "+l.typ(v.obj.Type()))
-	}
 	for _, t := range r.types {
 		t.lowered = s.version(t.name, true)
+		s.typeNames[t.obj.(*types.TypeName)] = t.lowered
 	}
 	for _, t := range r.types {
 		l.typeDecl(t.obj.(*types.TypeName), t.lowered)
+	}
+	for _, v := range r.fresh {
+		v.lowered = s.version(v.name, false)
+		l.globals = append(l.globals, "var "+v.lowered+" "+l.typ(v.obj.Type()))
 	}
 	for _, f := range r.funcs {
 		if f.live != nil {
@@ -113,7 +114,7 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 		funcs = append(funcs, "func "+res.undo+"() {\n\t"+strings.Join(l.undo, "\n\t")+"\n}\n")
 	}
 	res.imports = l.newImp
-	res.decls = strings.Join(l.types, "\n") + "\n" + strings.Join(l.globals, "\n") + "\n" + strings.Join(funcs, "\n") + "\n" +
+	res.decls = strings.Join(l.types, "\n") + "\n" + strings.Join(funcs, "\n") + "\n" + strings.Join(l.globals, "\n") + "\n" +
 		"func " + res.run + "() {\n" + prefixed(l.prolog) + body + "}\n"
 	return res
 }
@@ -329,8 +330,9 @@ func (l *lowering) leave() {
 	l.line("nb__depth--")
 }
 
-// maxDepth is how deep functions of a notebook may call each other; the interpreter needs about 1 kB a level.
-const maxDepth = 100000
+// maxDepth is how deep functions of a notebook may call each other. The time in which the interpreter unwinds a failure
+// grows with the square of the depth: 5 s for this one.
+const maxDepth = 10000
 
 // fallible tells whether evaluating a tree can stop a cell.
 func (l *lowering) fallible(nodes ...ast.Node) bool {

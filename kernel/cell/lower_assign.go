@@ -55,7 +55,7 @@ func (l *lowering) store(lhs, rhs []ast.Expr, define bool, declared ast.Expr) {
 	}
 	if len(ts) > 1 {
 		for i, v := range values {
-			if !strings.Contains(v, "__t") || !simple(v) {
+			if v != "nil" && (!strings.Contains(v, "__t") || !simple(v)) {
 				values[i] = l.hold(v)
 			}
 		}

@@ -121,7 +121,7 @@ func (l *lowering) exprStmt(s *ast.ExprStmt) {
 		if l.help(s.X) {
 			return
 		}
-		if t := l.info.TypeOf(s.X); t != nil && !l.info.Types[s.X].IsVoid() {
+		if t := l.info.TypeOf(s.X); t != nil && !l.info.Types[s.X].IsVoid() && !l.prints(s.X) {
 			l.showValue(s.X)
 			return
 		}
@@ -145,6 +145,19 @@ func (l *lowering) exprStmt(s *ast.ExprStmt) {
 	if text != "" {
 		l.line("%s", text)
 	}
+}
+
+// prints tells whether an expression is a call that writes text; its results are of no interest.
+func (l *lowering) prints(x ast.Expr) bool {
+	call, ok := ast.Unparen(x).(*ast.CallExpr)
+	if !ok {
+		return false
+	}
+	o := callee(l.info, ast.Unparen(call.Fun))
+	if o == nil || o.Pkg() == nil {
+		return false
+	}
+	return o.Pkg().Path() == "fmt" && strings.HasPrefix(o.Name(), "Print") || o.Pkg().Path() == l.s.voc.Open && o.Name() == "Show"
 }
 
 // restoresDepth tells whether a call may come back from deep within functions of the notebook by a failure that the

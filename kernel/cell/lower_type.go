@@ -97,13 +97,13 @@ func (l *lowering) typeName(o *types.TypeName) string {
 		return n
 	}
 	name := l.s.version(o.Name(), true)
+	l.s.typeNames[o] = name
 	l.typeDecl(o, name)
 	return name
 }
 
 // typeDecl writes the declaration of a type of a cell.
 func (l *lowering) typeDecl(o *types.TypeName, name string) {
-	l.s.typeNames[o] = name
 	if o.IsAlias() {
 		return
 	}

@@ -27,7 +27,7 @@ func TestProbes(t *testing.T) {
 		}
 		for _, p := range probes(txtar.Parse(data)) {
 			count++
-			t.Run(strings.TrimSuffix(filepath.Base(file), ".txtar")+"/"+p.name, func(t *testing.T) { p.run(t) })
+			t.Run(strings.TrimSuffix(filepath.Base(file), ".txtar")+"/"+p.name, func(t *testing.T) { p.run(t, filepath.Base(file) == "units.txtar") })
 		}
 	}
 	t.Logf("%d probes", count)
@@ -54,8 +54,8 @@ func probes(a *txtar.Archive) (ps []probe) {
 	return ps
 }
 
-func (p *probe) run(t *testing.T) {
-	n := open(t)
+func (p *probe) run(t *testing.T, units bool) {
+	n := open(t, units)
 	for i := 0; i < len(p.steps); i++ {
 		step := p.steps[i]
 		if step.Name != "in" {

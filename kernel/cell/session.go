@@ -43,6 +43,8 @@ type Session struct {
 	stuckCell int
 	raceMark  *atomic.Int64
 	raceDepth *atomic.Int64
+	runner    atomic.Int64 // the goroutine that runs the cell
+	tooDeep   atomic.Bool
 }
 
 var _ kernel.Engine = (*Session)(nil)
@@ -159,7 +161,7 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 	}
 	s.pendingMethods = nil
 	low, err := s.lowerSafe(r, func(e ast.Expr) string {
-		t := "?"
+		t := ""
 		if report != nil {
 			t = report.Text(e)
 		}
@@ -314,6 +316,7 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 	s.machine.clear()
 	s.raceMark.Store(0)
 	s.raceDepth.Store(0)
+	s.tooDeep.Store(false)
 	if s.hooks.Context != nil {
 		s.hooks.Context(ctx)
 	}
@@ -330,7 +333,11 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 			if stopped = recover(); stopped != nil {
 				stack = ownStack(stopped)
 			}
+			if s.tooDeep.Load() {
+				stopped = tooDeep{}
+			}
 		}()
+		s.runner.Store(goroutine())
 		u.run()
 	}()
 	select {

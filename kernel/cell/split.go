@@ -185,7 +185,7 @@ func parse(fset *token.FileSet, cell int, text string) (*parsed, []problem) {
 	all := tokens(text, report)
 	if bad = append(bad, tokenSlips(src, all)...); len(bad) > 0 {
 		sort.SliceStable(bad, func(i, j int) bool { return bad[i].off < bad[j].off })
-		return nil, bad
+		return nil, syntaxHints(src, all, bad)
 	}
 	decl, stmt := []byte(text), []byte(text)
 	blank(decl, 0, len(text), text)

@@ -106,9 +106,23 @@ type notebook struct {
 	outs []kernel.Output
 }
 
-func open(t testing.TB) *notebook {
-	t.Helper()
+// bare is the vocabulary without a unit check, for tests of the language alone.
+var bare = sync.OnceValues(func() (*cell.Vocabulary, error) {
 	v, err := vocabulary()
+	if err != nil {
+		return nil, err
+	}
+	b := *v
+	b.Units = nil
+	return &b, nil
+})
+
+func open(t testing.TB, units bool) *notebook {
+	t.Helper()
+	v, err := bare()
+	if units {
+		v, err = vocabulary()
+	}
 	if err != nil {
 		t.Fatal(err)
 	}

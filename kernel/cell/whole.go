@@ -33,7 +33,11 @@ func (w *widening) walk(n ast.Node) {
 	astutil.Apply(n, func(cur *astutil.Cursor) bool {
 		switch n := cur.Node().(type) {
 		case *ast.FuncDecl:
-			w.results = append(w.results, w.signature(n.Type))
+			sig := &types.Signature{}
+			if f, ok := w.c.info.Defs[n.Name].(*types.Func); ok {
+				sig = f.Type().(*types.Signature)
+			}
+			w.results = append(w.results, sig)
 		case *ast.FuncLit:
 			w.results = append(w.results, w.signature(n.Type))
 		}
