@@ -245,7 +245,8 @@ func TestManySilentPeers(t *testing.T) {
 	_, f := echo(t, &conn.Settings{Greeting: 3, Handshake: 20 * time.Second})
 	closed := 0
 	for range 5 {
-		c, err := net.Dial(f.Address(f.Shell))
+		network, address := f.Address(f.Shell)
+		c, err := net.Dial(network, address)
 		if err != nil {
 			t.Fatal(err)
 		}
