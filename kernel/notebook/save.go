@@ -7,8 +7,6 @@ import (
 	"os"
 	"path/filepath"
 	"syscall"
-
-	"github.com/google/renameio/v2"
 )
 
 // SaveError says why a file could not be written. The file that was there is unharmed.
@@ -41,20 +39,6 @@ func Save(path string, data []byte) error {
 		return saveError(path, old, err)
 	}
 	return nil
-}
-
-func replace(path string, data []byte) error {
-	ignoreSizeSignal()
-	f, err := renameio.NewPendingFile(path, renameio.WithTempDir(filepath.Dir(path)),
-		renameio.WithPermissions(0o644), renameio.WithExistingPermissions())
-	if err != nil {
-		return err
-	}
-	defer func() { _ = f.Cleanup() }() // after success it does nothing; after a failure that failure is what counts
-	if _, err := f.Write(data); err != nil {
-		return err
-	}
-	return f.CloseAtomicallyReplace()
 }
 
 // saveError words a failed save: folder, cause, what became of the old file.
