@@ -128,8 +128,8 @@ func (s *Session) card(o types.Object, l *live) (map[string]any, bool) {
 	switch {
 	case l != nil:
 		doc = fmt.Sprintf("declared in cell %d, line %d", l.cell, l.line)
-		if l.fn != nil && l.fn.decl.Doc != nil {
-			doc = l.fn.decl.Doc.Text() + "\n" + doc
+		if l.fn != nil {
+			doc = commentAbove(l.fn.src, l.line) + doc
 		}
 	case s.base.targets[o.Name()] != "" && s.base.objects[o.Name()] == o:
 		doc = s.voc.Docs[s.base.targets[o.Name()]]
@@ -142,6 +142,22 @@ func (s *Session) card(o types.Object, l *live) (map[string]any, bool) {
 		}
 	}
 	return bundle(head, doc), true
+}
+
+// commentAbove gives the comment that ends in the line before a declaration.
+func commentAbove(src *source, line int) string {
+	text := ""
+	for line--; line >= 1; line-- {
+		c, ok := strings.CutPrefix(strings.TrimSpace(src.line(line)), "//")
+		if !ok {
+			break
+		}
+		text = strings.TrimSpace(c) + "\n" + text
+	}
+	if text != "" {
+		text += "\n"
+	}
+	return text
 }
 
 // bundle writes a heading and its text for all front ends.

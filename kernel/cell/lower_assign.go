@@ -17,6 +17,10 @@ func (l *lowering) assign(s *ast.AssignStmt) {
 	x := l.place(s.Lhs[0])
 	y := l.expr(s.Rhs[0])
 	l.flush()
+	if _, ok := ast.Unparen(s.Lhs[0]).(*ast.Ident); ok {
+		l.line("%s %s= %s", x, op, y) // the fastest form
+		return
+	}
 	l.line("%s = %s %s %s", x, x, op, y)
 }
 

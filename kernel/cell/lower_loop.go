@@ -178,18 +178,13 @@ func (l *lowering) plainPost(s ast.Stmt) bool {
 func (l *lowering) postText(s ast.Stmt) string {
 	switch s := s.(type) {
 	case *ast.IncDecStmt:
-		x := l.expr(s.X)
-		op := "+"
-		if s.Tok == token.DEC {
-			op = "-"
-		}
-		return x + " = " + x + " " + op + " " + l.typ(l.info.TypeOf(s.X)) + "(1)"
+		return l.expr(s.X) + s.Tok.String()
 	case *ast.AssignStmt:
 		x := l.expr(s.Lhs[0])
 		if s.Tok == token.ASSIGN {
 			return x + " = " + l.convert(s.Rhs[0], l.info.TypeOf(s.Lhs[0]))
 		}
-		return x + " = " + x + " " + s.Tok.String()[:len(s.Tok.String())-1] + " " + l.expr(s.Rhs[0])
+		return x + " " + s.Tok.String() + " " + l.expr(s.Rhs[0])
 	}
 	return ""
 }

@@ -39,6 +39,10 @@ func (l *lowering) stmt(s ast.Stmt) {
 			op = "-="
 		}
 		x := l.place(s.X)
+		if _, ok := s.X.(*ast.Ident); ok {
+			l.line("%s%s", x, s.Tok)
+			return
+		}
 		one := l.typ(l.info.TypeOf(s.X)) + "(1)"
 		l.flush()
 		l.line("%s %s %s", x, op, one)

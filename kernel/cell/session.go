@@ -352,6 +352,9 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 		}
 	}
 	var o kernel.Outcome
+	if stopped != nil && ctx.Err() != nil {
+		stopped = interrupted{} // compiled code ends its long calls in its own words
+	}
 	if stopped != nil {
 		o = s.stopped(u, stopped, stack, time.Since(begun))
 		s.rollback(u)
