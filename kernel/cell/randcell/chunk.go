@@ -12,12 +12,12 @@ var chunks = []struct {
 	write  func(*writer)
 }{
 	{10, (*writer).newVariable}, {8, (*writer).sameVariable}, {4, (*writer).otherVariable}, {3, (*writer).itself},
-	{6, (*writer).newList}, {14, (*writer).statements}, {9, (*writer).newFunction}, {6, (*writer).sameFunction}, {3, (*writer).otherFunction},
+	{6, (*writer).newList}, {8, (*writer).statements}, {9, (*writer).newFunction}, {9, (*writer).sameFunction}, {3, (*writer).otherFunction},
 	{6, (*writer).newStruct}, {3, (*writer).sameStruct}, {5, (*writer).structVariable}, {4, (*writer).changing},
 	{5, (*writer).family}, {4, (*writer).interfaceVariable}, {4, (*writer).anySwitch},
-	{5, (*writer).generic}, {4, (*writer).genericType}, {4, (*writer).outliving}, {4, (*writer).counter}, {4, (*writer).functionVariable}, {3, (*writer).wrapped},
-	{4, (*writer).methodValue}, {5, (*writer).commaOK}, {5, (*writer).several}, {4, (*writer).variadic}, {5, (*writer).constants},
-	{4, (*writer).sorting}, {4, (*writer).mapTour}, {4, (*writer).action}, {7, (*writer).shown}, {3, (*writer).parsed}, {3, (*writer).pointer},
+	{5, (*writer).generic}, {4, (*writer).genericType}, {4, (*writer).outliving}, {6, (*writer).counter}, {4, (*writer).functionVariable}, {6, (*writer).wrapped},
+	{7, (*writer).methodValue}, {5, (*writer).commaOK}, {5, (*writer).several}, {4, (*writer).variadic}, {7, (*writer).constants},
+	{4, (*writer).sorting}, {6, (*writer).mapTour}, {4, (*writer).appending}, {7, (*writer).action}, {7, (*writer).shown}, {3, (*writer).parsed}, {3, (*writer).pointer},
 	{3, (*writer).embedded}, {3, (*writer).array}, {3, (*writer).recursion}, {3, (*writer).copies}, {3, (*writer).mutual}, {2, (*writer).roleChange},
 }
 
@@ -57,7 +57,7 @@ func (w *writer) sameVariable() {
 }
 
 func (w *writer) otherVariable() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind })
+	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) })
 	if len(all) == 0 {
 		w.newVariable()
 		return
@@ -74,7 +74,7 @@ func (w *writer) otherVariable() {
 
 // itself declares a variable again with another type, from its own value.
 func (w *writer) itself() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && (e.typ == intType || e.typ == floatType) })
+	all := w.redeclarable(func(e *entity) bool { return e.role == variable && (e.typ == intType || e.typ == floatType) && !w.inMethod(e.name) })
 	if len(all) == 0 {
 		return
 	}
@@ -94,7 +94,20 @@ func (w *writer) itself() {
 func (w *writer) newList() {
 	t := pick(w, listTypes)
 	w.count("list or map variable")
-	w.set(w.fresh("m"), t, w.literal(t, 2))
+	w.set(w.fresh("list"), t, w.literal(t, 2))
+}
+
+// appending adds to a list, whole numbers among real ones.
+func (w *writer) appending() {
+	t := pick(w, []*typ{intsType, floatsType, floatsType, wordsType})
+	s := w.variable(t, true)
+	if s == "" {
+		x := w.fresh("list")
+		w.set(x, t, w.literal(t, 1))
+		s = w.mark(x)
+	}
+	w.count("append")
+	w.top(s + " = append(" + s + ", " + w.intoFloat(t.elem, 1, "W1 append") + ", " + w.intoFloat(t.elem, 1, "W1 append") + ")\nfmt.Println(" + s + ")")
 }
 
 func (w *writer) statements() {
@@ -129,6 +142,26 @@ func (w *writer) sameFunction() {
 	w.function(e.name, e.typ, true)
 }
 
+// inMethod tells whether a method depends on a name, so that the name cannot stand for something of another type.
+func (w *writer) inMethod(name string) bool {
+	for _, e := range w.sorted() {
+		if e.role == function && strings.Contains(e.name, ".") && w.dependsOn(e, name) {
+			return true
+		}
+	}
+	return false
+}
+
+// inOther is inMethod for methods of other types.
+func (w *writer) inOther(name string) bool {
+	for _, e := range w.sorted() {
+		if e.role == function && strings.Contains(e.name, ".") && !strings.HasPrefix(e.name, name+".") && w.dependsOn(e, name) {
+			return true
+		}
+	}
+	return false
+}
+
 // usedHere tells whether something that the cell has used or declared depends on a name.
 func (w *writer) usedHere(name string) bool {
 	for _, t := range sortedNames(w.touched) {
@@ -140,7 +173,7 @@ func (w *writer) usedHere(name string) bool {
 }
 
 func (w *writer) otherFunction() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == function && len(e.typ.results) == 1 && !w.usedHere(e.name) })
+	all := w.redeclarable(func(e *entity) bool { return e.role == function && len(e.typ.results) == 1 && !w.usedHere(e.name) && !w.inMethod(e.name) })
 	if len(all) == 0 {
 		return
 	}
@@ -160,7 +193,7 @@ func (w *writer) newStruct() {
 }
 
 func (w *writer) sameStruct() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == typeName && e.typ.kind == structKind && !w.usedHere(e.name) })
+	all := w.redeclarable(func(e *entity) bool { return e.role == typeName && e.typ.kind == structKind && !w.usedHere(e.name) && !w.inOther(e.name) })
 	if len(all) == 0 {
 		w.newStruct()
 		return
@@ -187,26 +220,45 @@ func (w *writer) structVariable() {
 
 // changing calls methods that change their receiver.
 func (w *writer) changing() {
+	t, m, ok := w.methodWhere(func(m method) bool { return m.changes })
+	if !ok {
+		w.newStruct()
+		return
+	}
+	w.count("method that changes its receiver")
+	v := w.held(t)
+	x := w.fresh("v")
+	w.give([]string{x}, []*typ{m.result}, x+" := ", v+"."+m.name+"("+w.value(m.param, 1)+")")
+}
+
+// methodWhere picks a method that can be called here.
+func (w *writer) methodWhere(want func(method) bool) (t *typ, m method, ok bool) {
+	var types []*typ
+	var methods []method
 	for _, t := range w.structs(w.nameable) {
 		for _, m := range t.methods {
-			if !m.changes || w.names[t.name+"."+m.name] == nil || w.names[t.name+"."+m.name].gone {
-				continue
+			if e := w.names[t.name+"."+m.name]; e != nil && !e.gone && want(m) {
+				types, methods = append(types, t), append(methods, m)
 			}
-			v := w.variable(t, true)
-			if v == "" {
-				v = w.variable(pointerTo(t), false)
-			}
-			if v == "" {
-				continue
-			}
-			w.count("method that changes its receiver")
-			w.mark(t.name)
-			w.mark(t.name + "." + m.name)
-			w.give([]string{w.fresh("v")}, []*typ{m.result}, "v"+strconv.Itoa(w.serial)+" := ", v+"."+m.name+"("+w.value(m.param, 1)+")")
-			return
 		}
 	}
-	w.newStruct()
+	if len(types) == 0 {
+		return nil, m, false
+	}
+	i := w.IntN(len(types))
+	w.mark(types[i].name)
+	w.mark(types[i].name + "." + methods[i].name)
+	return types[i], methods[i], true
+}
+
+// held gives a variable of a struct type, a new one if there is none.
+func (w *writer) held(t *typ) string {
+	if v := w.variable(t, true); v != "" {
+		return v
+	}
+	x := w.fresh("t")
+	w.set(x, t, w.literal(t, 1))
+	return w.mark(x)
 }
 
 // family declares an interface and struct types of equal fields that implement it.

@@ -77,7 +77,8 @@ func (w *writer) genericType() {
 	w.touched["Stack"] = true
 	w.give([]string{s}, []*typ{of}, s+" := ", w.mark("Stack")+"["+t.text()+`]{name: `+w.word()+`}`)
 	w.names[s].pinned = true
-	w.top(w.mark(s) + ".Push(" + w.value(t, 1) + ")\nfmt.Println(" + w.mark(s) + ".Push(" + w.value(t, 1) + "), " + w.mark(s) + ".Len(), " + w.mark(s) + ".name)")
+	push := w.mark(s) + ".Push(" + w.value(t, 1) + ")"
+	w.top(only(push) + ref("show("+push+")") + "\nfmt.Println(" + w.mark(s) + ".Push(" + w.value(t, 1) + "), " + w.mark(s) + ".Len(), " + w.mark(s) + ".name)")
 	x, ok := w.fresh("g"), w.fresh("ok")
 	w.give([]string{x, ok}, []*typ{t, boolType}, x+", "+ok+" := ", w.mark(s)+".Pop()")
 }
@@ -102,7 +103,7 @@ func (w *writer) outliving() {
 // counter makes closures with a state of their own.
 func (w *writer) counter() {
 	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ == intMaker })
-	if len(all) == 0 || w.chance(40) {
+	if len(all) == 0 || w.chance(25) {
 		w.count("counter")
 		name, n := w.fresh("mk"), w.fresh("n")
 		c := w.fresh("c")
@@ -147,35 +148,25 @@ func (w *writer) wrapped() {
 
 // methodValue binds a method to a copy of its receiver.
 func (w *writer) methodValue() {
-	for _, t := range w.structs(w.nameable) {
-		for _, m := range t.methods {
-			if e := w.names[t.name+"."+m.name]; e == nil || e.gone || m.changes {
-				continue
-			}
-			v := w.variable(t, true)
-			if v == "" {
-				continue
-			}
-			f := w.fresh("mv")
-			w.mark(t.name + "." + m.name)
-			w.mark(t.name)
-			if w.chance(30) && !m.pointer {
-				w.count("method expression")
-				w.top(f + " := " + t.text() + "." + m.name + "\nfmt.Println(" + f + "(" + v + ", " + w.value(m.param, 1) + "))")
-				return
-			}
-			w.count("method value")
-			s := f + " := " + v + "." + m.name + "\n"
-			for _, x := range t.fields {
-				if x.typ == intType {
-					s += v + "." + x.name + " += 7\n"
-				}
-			}
-			w.top(s + "fmt.Println(" + f + "(" + w.value(m.param, 1) + "))")
-			return
+	t, m, ok := w.methodWhere(func(m method) bool { return !m.changes })
+	if !ok {
+		w.newStruct()
+		return
+	}
+	v, f := w.held(t), w.fresh("mv")
+	if w.chance(40) && !m.pointer {
+		w.count("method expression")
+		w.top(f + " := " + t.text() + "." + m.name + "\nfmt.Println(" + f + "(" + v + ", " + w.value(m.param, 1) + "))")
+		return
+	}
+	w.count("method value")
+	s := f + " := " + v + "." + m.name + "\n"
+	for _, x := range t.fields {
+		if x.typ == intType {
+			s += v + "." + x.name + " += 7\n"
 		}
 	}
-	w.newStruct()
+	w.top(s + "fmt.Println(" + f + "(" + w.value(m.param, 1) + "))")
 }
 
 // several declares a function of several results and takes them.

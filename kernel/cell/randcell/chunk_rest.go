@@ -89,7 +89,7 @@ func (w *writer) sorting() {
 	t := pick(w, []*typ{intsType, floatsType, wordsType})
 	s := w.variable(t, true)
 	if s == "" {
-		x := w.fresh("m")
+		x := w.fresh("list")
 		w.set(x, t, w.literal(t, 1))
 		s = w.mark(x)
 	}
@@ -105,12 +105,12 @@ func (w *writer) mapTour() {
 	t := pick(w, []*typ{tallyType, tableType})
 	m := w.variable(t, true)
 	if m == "" {
-		x := w.fresh("m")
+		x := w.fresh("list")
 		w.set(x, t, w.literal(t, 1))
 		m = w.mark(x)
 	}
 	k, v := w.fresh("k"), w.fresh("v")
-	switch w.IntN(4) {
+	switch w.IntN(3) {
 	case 0:
 		w.count("delete")
 		w.top("delete(" + m + ", " + w.value(t.key, 0) + ")\nfmt.Println(len(" + m + "), " + m + ")")
@@ -127,7 +127,7 @@ func (w *writer) mapTour() {
 // action declares a function that changes variables of the notebook, and calls it.
 func (w *writer) action() {
 	all := w.redeclarable(func(e *entity) bool { return e.role == function && len(e.typ.results) == 0 && !e.pinned })
-	if len(all) > 0 && w.chance(50) {
+	if len(all) > 0 && w.chance(75) {
 		e := pick(w, all)
 		if w.affordable(e.cost) {
 			w.count("function that sets variables called")
@@ -246,7 +246,7 @@ func (w *writer) copies() {
 
 // roleChange lets the name of a variable stand for a function.
 func (w *writer) roleChange() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind })
+	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) })
 	if len(all) == 0 {
 		return
 	}

@@ -243,7 +243,7 @@ func (w *writer) someFields(name string) []field {
 
 func (w *writer) someMethods() []method {
 	var methods []method
-	for i := range w.IntN(4) {
+	for i := range 1 + w.IntN(3) {
 		m := method{name: []string{"Get", "Put", "Mix"}[i], param: pick(w, plainTypes), result: pick(w, plainTypes), pointer: w.chance(50)}
 		m.changes = m.pointer && w.chance(60)
 		methods = append(methods, m)

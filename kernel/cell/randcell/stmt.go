@@ -58,7 +58,7 @@ func (w *writer) stmt(depth int) string {
 			w.locals = append(w.locals, local{name: x, typ: intType})
 			return "if " + x + " := (" + init + "); " + x + " > " + strconv.Itoa(w.IntN(20)) + " {\n" + w.block(1, depth-1) + "} else {\n" + w.block(1, depth-1) + "}\n"
 		})
-	case 3, 4, 5:
+	case 3, 4:
 		if w.loop < 2 {
 			return w.forStmt(depth)
 		}
