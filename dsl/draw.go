@@ -19,13 +19,13 @@ func (op *OperatingPoint) Draw() *Figure {
 	op.given()
 	n := op.circuit.sketch(op.conditions())
 	largest := 0.0
-	for _, phi := range op.solution.Flux {
+	for _, phi := range op.shown.Flux {
 		largest = math.Max(largest, math.Abs(phi))
 	}
 	for i := range n.Paths {
-		n.Paths[i].Flux = phys.Format(op.solution.Flux[i], "Wb")
+		n.Paths[i].Flux = phys.Format(op.shown.Flux[i], "Wb")
 		if largest > 0 {
-			n.Paths[i].Share = op.solution.Flux[i] / largest
+			n.Paths[i].Share = op.shown.Flux[i] / largest
 		}
 		for k := range n.Paths[i].Parts {
 			if n.Paths[i].Parts[k].Kind == draw.Leg {

@@ -87,11 +87,24 @@ func (f *Figure) Wide() *Figure {
 func (f *Figure) Limit(words string, bound Bound) *Figure { return f.limit(words, bound, false) }
 
 // LimitAcross draws a bound of the horizontal quantity.
-func (f *Figure) LimitAcross(words string, bound Bound) *Figure { return f.limit(words, bound, true) }
+//
+//	Plot(T1.BiasCurve("main", 0, 6*amp)).LimitAcross("current limit", AtMost(5*amp))
+func (f *Figure) LimitAcross(words string, bound BoundAcross) *Figure {
+	if bound == nil {
+		Bound{}.given()
+	}
+	return f.limit(words, bound.across(), true)
+}
+
+// BoundAcross is a [Bound] on the horizontal quantity of a picture, whose unit is not that of the values drawn.
+type BoundAcross interface {
+	across() Bound
+}
 
 func (f *Figure) limit(words string, bound Bound, across bool) *Figure {
 	bound.given()
 	next := f.copy()
+	next.fits(bound, across)
 	for _, b := range bands(words, bound, across) {
 		switch {
 		case next.lines != nil:
@@ -101,6 +114,27 @@ func (f *Figure) limit(words string, bound Bound, across bool) *Figure {
 		}
 	}
 	return next
+}
+
+// fits refuses a bound that is in another unit than the axis which it belongs to.
+func (f *Figure) fits(bound Bound, across bool) {
+	var along axis
+	switch {
+	case f.lines != nil && across:
+		along = f.lines.X
+	case f.lines != nil:
+		along = f.lines.Y
+	case f.bars != nil && across:
+		refuse(magcirc.WrongUse, "bars", "have no horizontal quantity", "bound their values with .Limit")
+	case f.bars != nil:
+		along = f.bars.Axis
+	default:
+		refuse(magcirc.WrongUse, "drawing", "has no axes to bound", "bounds belong to Plot and Bars")
+	}
+	if unit := unitOf(bound.rule.Unit); unit != "" && along.Unit != "" && unit != along.Unit {
+		refuse(magcirc.Inconsistent, "limit", fmt.Sprintf("%s is in %s, and the axis of the %s is in %s", bound.rule, unit, along.Label, along.Unit),
+			"Limit bounds the vertical quantity, LimitAcross the horizontal one")
+	}
 }
 
 // bands gives the ranges that a bound forbids.

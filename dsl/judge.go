@@ -34,6 +34,8 @@ func (b Bound) given() {
 	}
 }
 
+func (b Bound) across() Bound { return b }
+
 // MIMEBundle shows the bound in words.
 func (b Bound) MIMEBundle() map[string]any { b.given(); return words(b.rule.String()) }
 

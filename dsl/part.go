@@ -188,13 +188,16 @@ func (m MagnetPart) label() string  { return m.name }
 // MIMEBundle shows the magnet in words.
 func (m MagnetPart) MIMEBundle() map[string]any { return words(describe(m)) }
 
-// signed is the remanence along the path's arrow.
-func (m MagnetPart) signed() float64 {
+// direction is +1 for a magnet along the path's arrow, -1 for a reversed one.
+func (m MagnetPart) direction() float64 {
 	if m.reversed {
-		return -m.br
+		return -1
 	}
-	return m.br
+	return 1
 }
+
+// signed is the remanence along the path's arrow.
+func (m MagnetPart) signed() float64 { return m.direction() * m.br }
 
 // describe says in words what a part is.
 func describe(p Part) string {

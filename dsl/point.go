@@ -19,6 +19,7 @@ type OperatingPoint struct {
 	drive       reluct.Drive
 	model       *model
 	solution    *reluct.Solution
+	shown       *reluct.Solution // without what only rounding made
 	incremental *InductanceMatrix
 	secant      *InductanceMatrix
 }
@@ -31,7 +32,8 @@ type OperatingPoint struct {
 func (c *MagneticCircuit) Solve(drives ...Drive) *OperatingPoint {
 	m := c.model()
 	d := c.driveOf(drives)
-	op := &OperatingPoint{circuit: *c, drive: d, model: m, solution: m.solve(d)}
+	s := m.solve(d)
+	op := &OperatingPoint{circuit: *c, drive: d, model: m, solution: s, shown: s.Rounded()}
 	c.keepAssumptions(op.Notes())
 	return op
 }
@@ -46,7 +48,7 @@ func (op *OperatingPoint) given() {
 // Flux is the flux of a path along its arrow.
 func (op *OperatingPoint) Flux(path string) Weber {
 	op.given()
-	return op.solution.Flux[op.circuit.pathOf(path)]
+	return op.shown.Flux[op.circuit.pathOf(path)]
 }
 
 // FluxDensity is the flux density in a leg, or the largest magnitude among the legs of a path (its gaps never), with
@@ -74,7 +76,7 @@ func (op *OperatingPoint) leg(name string) reluct.ElementState {
 
 // state is the state of one part.
 func (op *OperatingPoint) state(at place) reluct.ElementState {
-	return op.solution.State[at.path][op.model.element[at.path][at.part]]
+	return op.shown.State[at.path][op.model.element[at.path][at.part]]
 }
 
 // fullest is the leg of a path with the largest flux density, -1 where the path has none.
@@ -104,7 +106,7 @@ func (op *OperatingPoint) MMF(part string) Ampere {
 // drop is the sum of the drops along a path.
 func (op *OperatingPoint) drop(path int) float64 {
 	sum, size := 0.0, 0.0
-	for _, s := range op.solution.State[path] {
+	for _, s := range op.shown.State[path] {
 		sum += s.MMF
 		size += math.Abs(s.MMF)
 	}
@@ -117,13 +119,13 @@ func (op *OperatingPoint) drop(path int) float64 {
 // Current is the current of a winding into its dot: as given, or as its linkage needs it.
 func (op *OperatingPoint) Current(winding string) Ampere {
 	op.given()
-	return op.solution.Current[op.circuit.windingOf(winding)]
+	return op.shown.Current[op.circuit.windingOf(winding)]
 }
 
 // Linkage is the flux linkage of a winding: the flux through each turn, summed.
 func (op *OperatingPoint) Linkage(winding string) Weber {
 	op.given()
-	return op.solution.Linkage[op.circuit.windingOf(winding)]
+	return op.shown.Linkage[op.circuit.windingOf(winding)]
 }
 
 // Energy is the magnetic energy of the circuit.
@@ -172,7 +174,7 @@ func (op *OperatingPoint) Matrix() *InductanceMatrix {
 	op.wantWindings()
 	if op.incremental == nil {
 		l := must(op.solution.Incremental())
-		op.incremental = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)), "incremental inductances")
+		op.incremental = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)).Rounded(), "incremental inductances")
 	}
 	return op.incremental
 }
@@ -182,7 +184,7 @@ func (op *OperatingPoint) SecantMatrix() *InductanceMatrix {
 	op.wantWindings()
 	if op.secant == nil {
 		l := must(op.solution.Secant())
-		op.secant = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)), "secant inductances")
+		op.secant = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)).Rounded(), "secant inductances")
 	}
 	return op.secant
 }
@@ -241,7 +243,7 @@ func (op *OperatingPoint) pathTable() doc.Table {
 		{Name: "flux density", Unit: "T"}, {Name: "field strength", Unit: "A/m"}, {Name: "in"}, {Name: "mmf drop", Unit: "A"}}}
 	for i := range op.circuit.paths {
 		p := &op.circuit.paths[i]
-		row := []doc.Cell{doc.Text(p.name), doc.Num(op.solution.Flux[i]), doc.Text(""), doc.Text(""), doc.Text(""), doc.Num(op.drop(i))}
+		row := []doc.Cell{doc.Text(p.name), doc.Num(op.shown.Flux[i]), doc.Text(""), doc.Text(""), doc.Text(""), doc.Num(op.drop(i))}
 		if k := op.fullest(i); k >= 0 {
 			s := op.state(place{i, k})
 			row[2], row[3], row[4] = doc.Num(s.B), doc.Num(s.H), doc.Text(p.names[k])
@@ -255,7 +257,7 @@ func (op *OperatingPoint) windingTable() doc.Table {
 	t := doc.Table{Caption: fmt.Sprintf("windings of %s; energy %s, co-energy %s", op.circuit.name, phys.Format(op.Energy(), "J"), phys.Format(op.Coenergy(), "J")), Columns: []doc.Column{{Name: "winding"}, {Name: "current", Unit: "A"},
 		{Name: "linkage", Unit: "Wb"}, {Name: "inductance, incremental", Unit: "H"}}}
 	for w, name := range op.circuit.windings() {
-		t.Rows = append(t.Rows, []doc.Cell{doc.Text(name), doc.Num(op.solution.Current[w]), doc.Num(op.solution.Linkage[w]), doc.Num(op.Inductance(name))})
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text(name), doc.Num(op.shown.Current[w]), doc.Num(op.shown.Linkage[w]), doc.Num(op.Inductance(name))})
 	}
 	return t
 }

@@ -42,7 +42,7 @@ func (c *MagneticCircuit) CurrentFor(winding string, fluxDensity Tesla) Ampere {
 		if err != nil {
 			return 0, err
 		}
-		op := &OperatingPoint{circuit: *c, model: m, solution: s}
+		op := &OperatingPoint{circuit: *c, model: m, solution: s, shown: s}
 		most := 0.0
 		for i := range c.paths {
 			if k := op.fullest(i); k >= 0 {

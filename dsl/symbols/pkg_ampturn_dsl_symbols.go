@@ -29,6 +29,8 @@ func init() {
 		"Basis":                    reflect.ValueOf(dsl.Basis),
 		"BiasCurve":                reflect.ValueOf((*dsl.BiasCurve)(nil)),
 		"Bound":                    reflect.ValueOf((*dsl.Bound)(nil)),
+		"BoundAcross":              reflect.ValueOf((*dsl.BoundAcross)(nil)),
+		"_BoundAcross":             reflect.ValueOf((*_ampturn_dsl_BoundAcross)(nil)),
 		"Celsius":                  reflect.ValueOf((*dsl.Celsius)(nil)),
 		"Change":                   reflect.ValueOf((*dsl.Change)(nil)),
 		"Cite":                     reflect.ValueOf(dsl.Cite),
@@ -88,12 +90,15 @@ func init() {
 		"LineWithUnits":            reflect.ValueOf(dsl.LineWithUnits),
 		"Linear":                   reflect.ValueOf(dsl.Linear),
 		"Linkages":                 reflect.ValueOf((*dsl.Linkages)(nil)),
+		"LoadLine":                 reflect.ValueOf((*dsl.LoadLine)(nil)),
 		"LogRule":                  reflect.ValueOf(dsl.LogRule),
 		"Magnet":                   reflect.ValueOf(dsl.Magnet),
 		"MagnetPart":               reflect.ValueOf((*dsl.MagnetPart)(nil)),
 		"Magnetic":                 reflect.ValueOf(dsl.Magnetic),
 		"MagneticCircuit":          reflect.ValueOf((*dsl.MagneticCircuit)(nil)),
 		"MagneticMaterial":         reflect.ValueOf((*dsl.MagneticMaterial)(nil)),
+		"Material":                 reflect.ValueOf(dsl.Material),
+		"Materials":                reflect.ValueOf(dsl.Materials),
 		"Metre":                    reflect.ValueOf((*dsl.Metre)(nil)),
 		"MetrePerSecond":           reflect.ValueOf((*dsl.MetrePerSecond)(nil)),
 		"NewMaterial":              reflect.ValueOf(dsl.NewMaterial),
@@ -170,6 +175,11 @@ func init() {
 	Aliases["ampturn/magcirc.Code"] = "FaultCode"
 	Aliases["ampturn/magcirc.Note"] = "Remark"
 	Aliases["ampturn/magcirc.NoteKind"] = "RemarkKind"
+}
+
+// _ampturn_dsl_BoundAcross lets an interpreted value be a dsl.BoundAcross.
+type _ampturn_dsl_BoundAcross struct {
+	IValue any
 }
 
 // _ampturn_dsl_Condition lets an interpreted value be a dsl.Condition.

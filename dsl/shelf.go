@@ -1,0 +1,52 @@
+package dsl
+
+import (
+	"strings"
+
+	"ampturn/dsl/doc"
+	"ampturn/magcirc/phys"
+	"ampturn/stdlib"
+)
+
+// Material is a material of the shelf, by the name that [Materials] lists. Its figures are representative of a class and
+// serve a first design; every result says so until the supplier's data replace them.
+//
+//	fer := Material("power ferrite PW3a")
+func Material(name string) *MagneticMaterial {
+	m, err := stdlib.Material(name)
+	check(err)
+	return &MagneticMaterial{m}
+}
+
+// Materials lists the shelf: what it carries, at which temperatures, by which law, and where each row comes from. Names
+// that hold one of the words given are listed alone: Materials("ferrite").
+func Materials(words ...string) *TableView {
+	t := doc.Table{Caption: "materials of the shelf; " + stdlib.Representative, Columns: []doc.Column{{Name: "name"}, {Name: "class"},
+		{Name: "temperatures"}, {Name: "law at the first"}, {Name: "permeability within"}, {Name: "source"}, {Name: "note"}}}
+	for _, r := range stdlib.Materials() {
+		if !holds(r.Name+" "+r.Class, words) {
+			continue
+		}
+		spread := ""
+		if r.Tolerance > 0 {
+			spread = "+-" + phys.Format(r.Tolerance, "percent")
+		}
+		var at []string
+		for _, temperature := range r.Temperatures {
+			at = append(at, phys.Format(temperature, "degC"))
+		}
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.Name), doc.Text(r.Class), doc.Text(strings.Join(at, ", ")), doc.Text(r.Law),
+			doc.Text(spread), doc.Text(r.Source), doc.Text(r.Note)})
+	}
+	return &TableView{table: t}
+}
+
+// holds tells whether a text holds one of the words, whatever their case; without words every text does.
+func holds(text string, words []string) bool {
+	for _, w := range words {
+		if strings.Contains(strings.ToLower(text), strings.ToLower(w)) {
+			return true
+		}
+	}
+	return len(words) == 0
+}
