@@ -104,6 +104,10 @@ func (s *Session) check(p *parsed, fset *token.FileSet) (*checked, []problem) {
 		}
 		for _, name := range sortedKeys(withdrawn) {
 			l := s.scope.names[name]
+			if l == nil {
+				r.notes = append(r.notes, "note: method "+name+" does not fit what this cell declares and keeps what it used before; run its cell again")
+				continue
+			}
 			r.notes = append(r.notes, "note: "+name+" of cell "+itoa(l.cell)+" does not fit what this cell declares and is gone; run its cell again")
 		}
 		return r, nil
@@ -442,6 +446,11 @@ func (c *checking) owner(pos token.Pos) string {
 	for _, l := range c.before.names {
 		if l.fn != nil && l.fn.decl.Pos() <= pos && pos <= l.fn.decl.End() {
 			return l.name
+		}
+	}
+	for _, m := range c.s.methods {
+		if m.decl.Pos() <= pos && pos <= m.decl.End() {
+			return m.typ + "." + m.name
 		}
 	}
 	return ""

@@ -183,7 +183,7 @@ func (c *checking) bodies(r *checked) {
 		again = false
 		for _, name := range sortedKeys(c.before.names) {
 			l := c.before.names[name]
-			if l.fn != nil && !changed[name] && r.after.names[name] == l && meets(l.fn.uses, changed) {
+			if l.fn != nil && !changed[name] && !c.withdrawn[name] && r.after.names[name] == l && meets(l.fn.uses, changed) {
 				changed[name], again = true, true
 				c.sources = append(c.sources, l.fn.src)
 				c.again(r, l, l.obj)
@@ -191,7 +191,7 @@ func (c *checking) bodies(r *checked) {
 		}
 	}
 	for _, m := range c.s.methods {
-		if t := r.after.names[m.typ]; t != nil && c.before.names[m.typ] == t && m.impl != "" && meets(m.uses, changed) {
+		if t := r.after.names[m.typ]; t != nil && c.before.names[m.typ] == t && m.impl != "" && meets(m.uses, changed) && !c.withdrawn[m.typ+"."+m.name] {
 			c.sources = append(c.sources, m.src)
 			r.funcs = append(r.funcs, &fnUnit{function: m.function, name: m.name, recv: m.typ, meth: m})
 		}

@@ -75,6 +75,12 @@ func (l *lowering) stmt(s ast.Stmt) {
 
 func (l *lowering) labeled(s *ast.LabeledStmt) {
 	label := s.Label.Name + "__label"
+	l.line("{") // the interpreter misses labels that stand in a case
+	l.ind++
+	defer func() {
+		l.ind--
+		l.line("}")
+	}()
 	switch b := s.Stmt.(type) {
 	case *ast.ForStmt:
 		l.forStmt(b, label)
@@ -345,6 +351,8 @@ func (l *lowering) clause(head string, body []ast.Stmt) {
 	l.ind--
 }
 
+// typeSwitch lowers a type switch to assertions and a switch over their numbers: the interpreter's own one misses types
+// that have methods.
 func (l *lowering) typeSwitch(s *ast.TypeSwitchStmt, label string) {
 	l.line("{")
 	l.ind++
@@ -361,37 +369,53 @@ func (l *lowering) typeSwitch(s *ast.TypeSwitchStmt, label string) {
 	switch a := s.Assign.(type) {
 	case *ast.AssignStmt:
 		x = a.Rhs[0].(*ast.TypeAssertExpr).X
-		bound = l.name(a.Lhs[0].(*ast.Ident).Name)
+		bound = a.Lhs[0].(*ast.Ident).Name
 	case *ast.ExprStmt:
 		x = a.X.(*ast.TypeAssertExpr).X
 	}
 	v := l.hold(l.expr(x))
 	l.flush()
-	l.label(label)
-	head := v + ".(type)"
-	if bound != "" {
-		head = bound + " := " + head
-	}
-	l.line("switch %s {", head)
-	for _, c := range s.Body.List {
-		cl := c.(*ast.CaseClause)
-		var list []string
-		for _, e := range cl.List {
+	sel := l.name("case")
+	l.line("%s := 0", sel)
+	for i, c := range s.Body.List {
+		for _, e := range c.(*ast.CaseClause).List {
 			if id, ok := e.(*ast.Ident); ok && id.Name == "nil" {
-				list = append(list, "nil")
-			} else {
-				list = append(list, l.typ(l.info.TypeOf(e)))
+				l.line("if %s == nil { %s = %d }", v, sel, i+1)
+				continue
 			}
+			ok := l.name("ok")
+			l.line("if %s == 0 && %s != nil {", sel, v)
+			l.line("\t_, %s := %s.(%s)", ok, v, l.typ(l.info.TypeOf(e)))
+			l.line("\tif %s { %s = %d }", ok, sel, i+1)
+			l.line("}")
 		}
+	}
+	l.label(label)
+	l.line("switch %s {", sel)
+	for i, c := range s.Body.List {
+		cl := c.(*ast.CaseClause)
+		if cl.List == nil {
+			l.line("default:")
+		} else {
+			l.line("case %d:", i+1)
+		}
+		l.ind++
 		if o := l.info.Implicits[cl]; o != nil {
-			l.locals[o] = bound
-			if len(cl.List) != 1 {
-				l.locals[o] = v
+			l.locals[o] = v
+			if len(cl.List) == 1 && !isNil(cl.List[0]) {
+				l.locals[o] = l.name(bound)
+				l.line("%s := %s.(%s)", l.locals[o], v, l.typ(o.Type()))
 			}
 		}
-		l.clause(strings.Join(list, ", "), cl.Body)
+		l.block(cl.Body)
+		l.ind--
 	}
 	l.line("}")
+}
+
+func isNil(e ast.Expr) bool {
+	id, ok := e.(*ast.Ident)
+	return ok && id.Name == "nil"
 }
 
 func (l *lowering) returnStmt(s *ast.ReturnStmt) {
