@@ -30,7 +30,7 @@ func (t Table) column(k int, digit, point rune) (head string, texts []string, ri
 	}
 	factor, unit := 1.0, c.Unit
 	if !c.Mixed && unit != "" {
-		factor, unit = phys.Scale(largest, c.Unit)
+		factor, unit = scale(largest, c.Unit)
 	}
 	head = c.Name
 	if unit != "" && numbers > 0 {
@@ -54,6 +54,20 @@ func (t Table) column(k int, digit, point rune) (head string, texts []string, ri
 	return head, texts, numbers > 0 && !c.Mixed
 }
 
+// scale gives the factor to print a column by and its unit: with a prefix, or, where the unit takes none and the numbers
+// are large, with a power of ten, "1e6 1/H".
+func scale(largest float64, unit string) (factor float64, prefixed string) {
+	factor, prefixed = phys.Scale(largest, unit)
+	if largest*factor < tooLarge || math.IsInf(largest, 0) {
+		return factor, prefixed
+	}
+	thirds := 3 * int(math.Log10(largest*factor)*(1+1e-12)/3)
+	return factor / math.Pow(10, float64(thirds)), "1e" + strconv.Itoa(thirds) + " " + prefixed
+}
+
+// tooLarge is where four significant digits would need zeros that are not known.
+const tooLarge = 1e4
+
 // print is the cell in the printed unit of its column.
 func (c Cell) print(col Column, factor float64) string {
 	switch {
@@ -69,7 +83,8 @@ func (c Cell) print(col Column, factor float64) string {
 	return Number(c.Value*factor, digits)
 }
 
-// Number prints a plain number with the given significant digits: without an exponent from 1e-4 to 1e7.
+// Number prints a plain number with the given significant digits: without an exponent where these reach the decimal
+// point and the number is 1e-4 or more; whole numbers without one up to 1e7.
 func Number(x float64, digits int) string {
 	switch a := math.Abs(x); {
 	case math.IsNaN(x):
@@ -80,13 +95,22 @@ func Number(x float64, digits int) string {
 		return "-inf"
 	case x == 0:
 		return "0"
-	case a < 1e-4 || a >= 1e7:
-		return strconv.FormatFloat(x, 'e', digits-1, 64)
+	case x == math.Trunc(x) && a < 1e7 && a >= math.Pow(10, float64(digits)):
+		return strconv.FormatFloat(x, 'f', 0, 64)
+	case a < 1e-4 || a >= math.Pow(10, float64(digits)):
+		return power(x, digits)
 	}
 	// The exponent after rounding decides: 9.9996 has one digit before the point, but prints as 10.00.
 	mantissa := strconv.FormatFloat(x, 'e', digits-1, 64)
 	exponent, _ := strconv.Atoi(mantissa[strings.IndexByte(mantissa, 'e')+1:])
 	return strconv.FormatFloat(x, 'f', max(0, digits-1-exponent), 64)
+}
+
+// power prints a number with an exponent: 1.235e-5.
+func power(x float64, digits int) string {
+	mantissa, exponent, _ := strings.Cut(strconv.FormatFloat(x, 'e', digits-1, 64), "e")
+	e, _ := strconv.Atoi(exponent)
+	return mantissa + "e" + strconv.Itoa(e)
 }
 
 // decimals counts what stands behind the decimal point.

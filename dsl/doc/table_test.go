@@ -67,8 +67,8 @@ func TestNumber(t *testing.T) {
 		digits int
 		want   string
 	}{
-		{0, 4, "0"}, {1, 4, "1.000"}, {9.9996, 4, "10.00"}, {-0.31415926, 4, "-0.3142"}, {123456.7, 4, "123457"},
-		{1.23456e-5, 4, "1.235e-05"}, {1e7, 3, "1.00e+07"}, {math.Inf(-1), 4, "-inf"}, {math.NaN(), 4, "not a number"},
+		{0, 4, "0"}, {1, 4, "1.000"}, {9.9996, 4, "10.00"}, {-0.31415926, 4, "-0.3142"}, {123456.7, 4, "1.235e5"}, {123456, 4, "123456"}, {9999.6, 4, "10000"},
+		{1.23456e-5, 4, "1.235e-5"}, {1e7, 3, "1.00e7"}, {math.Inf(-1), 4, "-inf"}, {math.NaN(), 4, "not a number"},
 	} {
 		if got := doc.Number(c.x, c.digits); got != c.want {
 			t.Errorf("Number(%g, %d) = %q, want %q", c.x, c.digits, got, c.want)
@@ -83,5 +83,24 @@ func TestMixedColumnPrintsEachUnit(t *testing.T) {
 		if got := table.Text(); !strings.Contains(got, want) {
 			t.Errorf("%q is missing in\n%s", want, got)
 		}
+	}
+}
+
+// A reluctance has no prefix: its column is printed in a power of ten, with four digits and the points below each other.
+func TestColumnInAPowerOfTen(t *testing.T) {
+	table := doc.Table{Columns: []doc.Column{{Name: "gap"}, {Name: "reluctance", Unit: "1/H"}},
+		Rows: [][]doc.Cell{{doc.Text("a"), doc.Num(6417345)}, {doc.Text("b"), doc.Num(12751773)}, {doc.Text("c"), doc.Num(417e3)}}}
+	want := strings.Join([]string{
+		"gap  reluctance (1e6 1/H)",
+		"---  --------------------",
+		"a                  6.417",
+		"b                 12.75",
+		"c                  0.4170",
+	}, "\n")
+	if got := table.Text(); got != want {
+		t.Errorf("got\n%s\nwant\n%s", got, want)
+	}
+	if got := table.HTML(); !strings.Contains(got, `data-value="6.417345e+06">6.417`) {
+		t.Errorf("the full value is lost:\n%s", got)
 	}
 }

@@ -39,7 +39,7 @@ func rows() []row {
 }
 
 func (v *Verdict) row(what string) row {
-	return row{what: what, value: phys.Format(v.Value, known(v.unit())), limit: v.Rule.String(), margin: v.marginWords(),
+	return row{what: what, value: phys.Format(v.Value, known(v.unit())), limit: v.Rule.String(), margin: strings.TrimPrefix(v.marginWords(), "margin "),
 		where: v.Where(), words: v.StatusWords(), status: v.Status(), exact: v.Value}
 }
 
