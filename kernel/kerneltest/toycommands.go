@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"context"
 	"fmt"
+	"runtime"
 	"strconv"
 	"strings"
 	"time"
@@ -129,6 +130,7 @@ var commands = map[string]func(c toyCall) error{
 		for step := c.number(); c.ctx.Err() == nil; time.Sleep(10 * time.Millisecond) {
 			kept = append(kept, bytes.Repeat([]byte{1}, step))
 		}
+		runtime.KeepAlive(kept)
 		return c.ctx.Err()
 	},
 	"overflow": func(c toyCall) error { return fmt.Errorf("%d", deeper(0)) },
