@@ -190,6 +190,33 @@ func (p *path) beside(elem string, i int) *LegPart {
 	return after
 }
 
+// legLength is the length of the legs on both sides of a gap together, 0 where there is none.
+func (p *path) legLength(i int) float64 {
+	before, after := p.nearest(i, -1), p.nearest(i, 1)
+	switch {
+	case before == nil && after == nil:
+		return 0
+	case before == nil:
+		return after.length
+	case after == nil:
+		return before.length
+	case p.ring && p.legs() == 1: // around the corner it is the same leg
+		return before.length
+	}
+	return before.length + after.length
+}
+
+// legs counts the legs of the path.
+func (p *path) legs() int {
+	n := 0
+	for _, part := range p.parts {
+		if part.part() == legKind {
+			n++
+		}
+	}
+	return n
+}
+
 // nearest is the next leg from part i in a direction, across windings and gaps; in a ring around the corner.
 func (p *path) nearest(i, step int) *LegPart {
 	for k := 1; k < len(p.parts); k++ {

@@ -86,6 +86,10 @@ type GapPart struct {
 
 // Gap is an air gap. It takes the section of the leg beside it, or of .Faces(section), and counts the flux around it
 // by [ConformalMap] unless .Fringe(method) says otherwise.
+//
+// How far that flux reaches up the sides of the poles follows from the height of the winding window, as in
+// .Fringe(ConformalMap.Window(21*mm)). Not given, it is the square root of the area of the faces, or half the leg beside
+// the gap if that is less, and the result says so.
 func Gap(length Metre) GapPart {
 	wantPositive("Gap", "length", length, "m")
 	if length < leastGap {
@@ -126,12 +130,13 @@ func (g GapPart) MIMEBundle() map[string]any {
 	if g.faces == nil {
 		return words("gap of " + phys.Format(g.length, "m"))
 	}
-	return compareGap("gap", g.spec("gap", nil)).MIMEBundle()
+	return compareGap("gap", g.spec("gap", nil, 0)).MIMEBundle()
 }
 
-// spec is the gap for the layer below. beside is the leg next to it, or nil where it has faces of its own.
-func (g GapPart) spec(elem string, beside *LegPart) gap.Spec {
-	s := gap.Spec{Elem: elem, Length: g.length}
+// spec is the gap for the layer below. beside is the leg next to it, or nil where it has faces of its own; leg is the
+// length of the legs on both sides.
+func (g GapPart) spec(elem string, beside *LegPart, leg float64) gap.Spec {
+	s := gap.Spec{Elem: elem, Length: g.length, Leg: leg}
 	if beside != nil {
 		s.Face = beside.section.shape
 	}

@@ -62,7 +62,7 @@ func (m *model) part(c *MagneticCircuit, at place) reluct.Element {
 		e.Kind, e.Law, e.Length = reluct.Leg, law, part.length
 		e.Area, e.Air = part.section.Metal(), p.enclosed(part)
 	case GapPart:
-		s := part.spec(elem, p.beside(elem, at.part))
+		s := part.spec(elem, p.beside(elem, at.part), p.legLength(at.part))
 		r, err := gap.Permeance(s)
 		named(elem, err)
 		m.note(r.Notes...)

@@ -133,7 +133,7 @@ func (c *MagneticCircuit) Fringing(part string) *GapComparison {
 	p := &c.paths[at.path]
 	elem := p.full(c.name, at.part)
 	g := p.parts[at.part].(GapPart)
-	return compareGap(elem, g.spec(elem, p.beside(elem, at.part)))
+	return compareGap(elem, g.spec(elem, p.beside(elem, at.part), p.legLength(at.part)))
 }
 
 // compareGap asks every method.

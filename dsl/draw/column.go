@@ -150,13 +150,46 @@ func (l *layout) part(c *canvas, q Part, x, y0, y1, up float64) {
 	default:
 		c.bar(x-halfIron, y0, x+halfIron, y1, ink, "", 0.15)
 	}
-	switch {
-	case q.Name != "" && q.Label != "":
-		c.words(x+labelLeft, mid-3, "start", cut(q.Name, width))
-		c.words(x+labelLeft, mid+13, "start", cut(q.Label, width))
-	default:
-		c.words(x+labelLeft, mid+4, "start", cut(q.Name+q.Label, width))
+	l.caption(c, x, mid, y0, y1, cut(q.Name, width), cut(q.Label, width))
+}
+
+// caption writes name and label of a part beside its middle, or above or below a bar that passes there.
+func (l *layout) caption(c *canvas, x, mid, y0, y1 float64, name, label string) {
+	high, low := mid-3, mid+13 // baselines
+	if name == "" || label == "" {
+		name, label = name+label, ""
+		high, low = mid+4, mid+4
 	}
+	top, bottom := high-ascent, low+descent
+	shift := 0.0
+	for _, y := range l.passingBars(x+labelLeft, x+labelLeft+max(extent(name), extent(label))) {
+		if y < top-barClear || y > bottom+barClear {
+			continue
+		}
+		shift = y - barClear - bottom
+		if top+shift < y0 {
+			shift = y + barClear - top
+		}
+		if bottom+shift > y1 {
+			shift = 0 // the part is too short: the words stay where they are read as its own
+		}
+	}
+	c.words(x+labelLeft, high+shift, "start", name)
+	c.words(x+labelLeft, low+shift, "start", label)
+}
+
+// barClear is the distance of words from a bar.
+const barClear = 5.0
+
+// passingBars gives the heights of the nodes' bars that run through a range of the picture's breadth.
+func (l *layout) passingBars(x0, x1 float64) []float64 {
+	var all []float64
+	for node := range l.row {
+		if lo, hi := l.reach(node); lo < x1 && x0 < hi {
+			all = append(all, l.y(l.row[node]))
+		}
+	}
+	return all
 }
 
 // labelWidth is the width for labels of the lane with its middle at x.

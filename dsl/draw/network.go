@@ -106,7 +106,21 @@ func (n Network) draw(c *canvas, l *layout) {
 		m := roundLength(90 / l.scale)
 		c.scaleBar(pad, low-20, l.scale, m, phys.Format(m, "m")+" (gaps to scale, legs not)")
 	}
-	c.words(pad, low, "start", "arrow: positive direction; breadth of the line: flux; dashed: against the arrow")
+	legend := "arrow: positive direction; dot: start of a winding"
+	if n.solved() {
+		legend = "arrow: positive direction; breadth of the line: flux; dashed: against the arrow"
+	}
+	c.words(pad, low, "start", legend)
+}
+
+// solved tells whether fluxes are known.
+func (n Network) solved() bool {
+	for _, p := range n.Paths {
+		if p.Flux != "" {
+			return true
+		}
+	}
+	return false
 }
 
 // Text says in words what the drawing shows.

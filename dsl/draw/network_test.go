@@ -227,3 +227,24 @@ func TestRoundLength(t *testing.T) {
 		}
 	}
 }
+
+// TestCaptionsClearOfBars: a bar that passes through a long column leaves the words beside it alone.
+func TestCaptionsClearOfBars(t *testing.T) {
+	leg := Part{Kind: Leg, Name: "leg", Label: "58.76 mT", Length: 67e-3}
+	n := Network{Title: "T4", Nodes: []string{"bottom", "middle", "top"}, Paths: []Path{
+		{Name: "lower", From: 0, To: 1, Parts: []Part{leg, {Kind: Winding, Name: "P", Label: "25 turns"}}},
+		{Name: "upper", From: 1, To: 2, Parts: []Part{leg, {Kind: Gap, Name: "gap", Label: "720 um", Length: 0.72e-3}}},
+		{Name: "left", From: 2, To: 0, Parts: []Part{leg}}, {Name: "right", From: 2, To: 0, Parts: []Part{{Kind: Leg, Label: "67 mm"}}},
+		{Name: "stray", From: 1, To: 0, Parts: []Part{{Kind: Stray, Name: "stray", Label: "37 nH"}}},
+	}}
+	l, c := n.layout(), &canvas{}
+	n.draw(c, l)
+	clear(t, c, l.width, l.height)
+	for _, b := range c.texts {
+		for _, y := range l.passingBars(b.x0, b.x1) {
+			if b.y0 < y && y < b.y1 {
+				t.Errorf("a bar runs through %q", b.text)
+			}
+		}
+	}
+}

@@ -75,7 +75,8 @@ type Spec struct {
 	Method Method
 	Window float64 // height G of the winding window, gap included, m; 0: not known
 	Span   float64 // breadth of the window, from the pole's side to the wall beside it, m; 0: not known, open space
-	Wall   float64 // height h of the side of one pole, m; 0: (Window - Length)/2, or if that is not known sqrt(A)
+	Wall   float64 // height h of the side of one pole, m; 0: (Window - Length)/2, or if that is not known see Leg
+	Leg    float64 // length of the leg on both sides of the gap together, m; 0: not known. It bounds an assumed height of the sides
 }
 
 // Result is the gap's permeance by one method.
@@ -160,7 +161,7 @@ func (s Spec) check() error {
 	for _, l := range []struct {
 		name  string
 		value float64
-	}{{"window height", s.Window}, {"window breadth", s.Span}, {"height of the pole's side", s.Wall}} {
+	}{{"window height", s.Window}, {"window breadth", s.Span}, {"height of the pole's side", s.Wall}, {"length of the leg", s.Leg}} {
 		if l.value == 0 {
 			continue
 		}
@@ -184,21 +185,29 @@ func (s Spec) positive(name string, v float64) error {
 		Msg: fmt.Sprintf("%s %s must be positive and finite", name, phys.Format(v, "m"))}
 }
 
-// side is the height of the pole's side in m; assumed tells that nobody gave it.
-func (s Spec) side() (h float64, assumed bool) {
+// side is the height of the pole's side in m; assumed says where it comes from when nobody gave it.
+//
+// The flux beside a gap leaves a pole's side up to the yoke, so a leg of known length gives it half of that at most. On
+// a long leg the flux from far up no longer goes to the other pole: the wall across the window, whose breadth is mostly
+// below that of the leg, takes it. The side of the square of the leg's area stands for that breadth.
+func (s Spec) side() (h float64, assumed string) {
 	switch {
 	case s.Wall > 0:
-		return s.Wall, false
+		return s.Wall, ""
 	case s.Window > 0:
-		return (s.Window - s.Length) / 2, false
+		return (s.Window - s.Length) / 2, ""
 	}
-	return math.Sqrt(s.Face.Gross()), true
+	h = math.Sqrt(s.Face.Gross())
+	if s.Leg > 0 && s.Leg/2 < h {
+		return s.Leg / 2, "half the leg beside it"
+	}
+	return h, "square root of the face's area"
 }
 
 // noteSide adds the note that the height of the pole's side was assumed.
 func (s Spec) noteSide(r *Result) {
-	if h, assumed := s.side(); assumed {
-		r.note(magcirc.Assumed, s.Elem, fmt.Sprintf("height of the poles' sides not given, %s taken (square root of the face's area)", phys.Format(h, "m")))
+	if h, assumed := s.side(); assumed != "" {
+		r.note(magcirc.Assumed, s.Elem, fmt.Sprintf("height of the poles' sides not given, %s taken (%s)", phys.Format(h, "m"), assumed))
 	}
 }
 

@@ -2,6 +2,7 @@ package gap_test
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"strings"
 	"sync"
@@ -357,6 +358,44 @@ func BenchmarkFieldSolveAnew(b *testing.B) {
 		s.Length *= 1 + 1e-9
 		if _, err := gap.Permeance(s); err != nil {
 			b.Fatal(err)
+		}
+	}
+}
+
+// TestAssumedSide: without the window's height the sides of the poles are as high as the leg leaves them, but no higher
+// than the face is broad; a height given counts as it is.
+func TestAssumedSide(t *testing.T) {
+	face := geom.Rect(12e-3, 12e-3)
+	for _, c := range []struct {
+		leg, wall, window, like float64
+		note                    string
+	}{
+		{0, 0, 0, 12e-3, "12 mm taken (square root of the face's area)"},
+		{97e-3, 0, 0, 12e-3, "12 mm taken (square root of the face's area)"},
+		{16e-3, 0, 0, 8e-3, "8 mm taken (half the leg beside it)"},
+		{16e-3, 5e-3, 0, 5e-3, ""},
+		{16e-3, 0, 21e-3, 10e-3, ""},
+	} {
+		for _, m := range []gap.Method{gap.ConformalMap, gap.FieldSolve} {
+			s := gap.Spec{Elem: "gap", Length: 1e-3, Face: face, Method: m, Leg: c.leg, Wall: c.wall, Window: c.window}
+			got, err := gap.Permeance(s)
+			if err != nil {
+				t.Fatal(err)
+			}
+			want, err := gap.Permeance(gap.Spec{Elem: "gap", Length: 1e-3, Face: face, Method: m, Wall: c.like})
+			if err != nil {
+				t.Fatal(err)
+			}
+			near(t, fmt.Sprintf("%v, leg %g", m, c.leg), got.Factor, want.Factor, 1e-12)
+			said := ""
+			for _, n := range got.Notes {
+				if n.Kind == magcirc.Assumed {
+					said += n.Text
+				}
+			}
+			if !strings.Contains(said, c.note) || c.note == "" && strings.Contains(said, "sides not given") {
+				t.Errorf("leg %g: note %q, want %q", c.leg, said, c.note)
+			}
 		}
 	}
 }
