@@ -54,15 +54,15 @@ const referenceUnits = "\nconst mm, um, cm, mm2 = 1e-3, 1e-6, 1e-2, 1e-6\n\nvar 
 
 func TestDifferential(t *testing.T) {
 	fixed, fresh := fixedNotebooks, freshNotebooks
+	if testing.Short() {
+		fixed, fresh = shortNotebooks, 0
+	}
 	if s := os.Getenv("AMPTURN_NOTEBOOKS"); s != "" {
 		n, err := strconv.Atoi(s)
 		if err != nil {
 			t.Fatal(err)
 		}
 		fixed = n
-	}
-	if testing.Short() {
-		fixed, fresh = shortNotebooks, 0
 	}
 	seed := uint64(time.Now().UnixNano()) % 1e9 * 1e3
 	if s := os.Getenv("AMPTURN_SEED"); s != "" {

@@ -74,7 +74,9 @@ func (w *writer) otherVariable() {
 
 // itself declares a variable again with another type, from its own value.
 func (w *writer) itself() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && (e.typ == intType || e.typ == floatType) && !w.inMethod(e.name) })
+	all := w.redeclarable(func(e *entity) bool {
+		return e.role == variable && (e.typ == intType || e.typ == floatType) && !w.inMethod(e.name)
+	})
 	if len(all) == 0 {
 		return
 	}
@@ -173,7 +175,9 @@ func (w *writer) usedHere(name string) bool {
 }
 
 func (w *writer) otherFunction() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == function && len(e.typ.results) == 1 && !w.usedHere(e.name) && !w.inMethod(e.name) })
+	all := w.redeclarable(func(e *entity) bool {
+		return e.role == function && len(e.typ.results) == 1 && !w.usedHere(e.name) && !w.inMethod(e.name)
+	})
 	if len(all) == 0 {
 		return
 	}
@@ -193,7 +197,9 @@ func (w *writer) newStruct() {
 }
 
 func (w *writer) sameStruct() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == typeName && e.typ.kind == structKind && !w.usedHere(e.name) && !w.inOther(e.name) })
+	all := w.redeclarable(func(e *entity) bool {
+		return e.role == typeName && e.typ.kind == structKind && !w.usedHere(e.name) && !w.inOther(e.name)
+	})
 	if len(all) == 0 {
 		w.newStruct()
 		return
