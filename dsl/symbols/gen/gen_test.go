@@ -55,7 +55,7 @@ func TestRefused(t *testing.T) {
 		{"foreign", []string{"Inner: type far.Inner is of a package", "Failure.Code: type far.Code is of a package", "give it an alias in foreign"}},
 		{"hidden", []string{"Open: type secret is not exported"}},
 		{"undocumented", []string{"without a doc comment: Rod, Rod.Length"}},
-		{"clash", []string{"unexported methods of one name and two signatures", "was Part: Beam *Beam;"}},
+		{"clash", []string{"unexported methods of one name and two signatures", "was Part: Beam *Beam Part;"}},
 		{"missing", []string{"go list"}},
 	} {
 		t.Run(c.pkg, func(t *testing.T) {
