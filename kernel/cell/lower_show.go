@@ -1,6 +1,7 @@
 package cell
 
 import (
+	"fmt"
 	"go/ast"
 	"go/types"
 	"strings"
@@ -10,7 +11,8 @@ import (
 type shown struct {
 	typ  types.Type
 	unit string
-	top  bool // the value of an expression statement, not of a call of Show
+	top  bool   // the value of an expression statement, not of a call of Show
+	text string // the expression as typed
 }
 
 func (s *Session) addMark(m mark) int {
@@ -25,27 +27,32 @@ func (l *lowering) showValue(x ast.Expr) {
 		names := l.tuple(x)
 		l.flush()
 		for i := 0; i < t.Len(); i++ {
-			l.showText(t.At(i).Type(), "?", names[i], top)
+			l.showText(t.At(i).Type(), "?", names[i], fmt.Sprintf("%s, result %d", l.asTyped(x), i+1), top)
 		}
 		return
 	}
 	t := l.info.TypeOf(x)
-	text := l.expr(x)
+	text := l.operand(x)
 	l.flush()
-	l.showText(t, l.unit(x), text, top)
+	l.showText(t, l.unit(x), text, l.asTyped(x), top)
 }
 
-func (l *lowering) showText(t types.Type, unit, text string, top bool) {
-	l.s.shows = append(l.s.shows, shown{typ: t, unit: strings.TrimSuffix(unit, "#"), top: top})
+// asTyped is an expression as it stands in the cell, on one line.
+func (l *lowering) asTyped(x ast.Expr) string {
+	return strings.Join(strings.Fields(l.src.quote(x.Pos(), x.End())), " ")
+}
+
+func (l *lowering) showText(t types.Type, unit, text, typed string, top bool) {
+	l.s.shows = append(l.s.shows, shown{typ: t, unit: strings.TrimSuffix(unit, "#"), top: top, text: typed})
 	k := len(l.s.shows) - 1
 	if isCellType(t) && !types.IsInterface(t) {
 		if has(t, "MIMEBundle", "map[string]any") {
-			l.line("%s(%d, %s.MIMEBundle())", l.nb("ShowBundle"), k, paren(text))
+			l.line("%s(%d, %s.MIMEBundle())", l.nb("ShowBundle"), k, text)
 			return
 		}
 		for _, m := range []string{"String", "Error"} {
 			if has(t, m, "string") {
-				l.line("%s(%d, %s.%s())", l.nb("ShowText"), k, paren(text), m)
+				l.line("%s(%d, %s.%s())", l.nb("ShowText"), k, text, m)
 				return
 			}
 		}

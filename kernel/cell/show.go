@@ -3,6 +3,8 @@ package cell
 import (
 	"fmt"
 	"go/types"
+	"maps"
+	"math"
 	"reflect"
 	"sort"
 	"strconv"
@@ -14,14 +16,25 @@ import (
 // bundler is a value that shows itself. A nil bundle shows nothing.
 type bundler interface{ MIMEBundle() map[string]any }
 
+// measured is a value that carries its numbers in full beside its bundle.
+type measured interface{ MIMEMetadata() map[string]any }
+
 // showAt shows a value in the way that was noted when the cell was lowered.
 func (s *Session) showAt(k int, v any) {
 	how := s.shownAt(k)
 	if b, ok := v.(bundler); ok && !isNilPointer(v) {
-		s.showBundle(k, b.MIMEBundle())
+		var beside map[string]any
+		if m, ok := v.(measured); ok {
+			beside = m.MIMEMetadata()
+		}
+		s.show(k, b.MIMEBundle(), beside)
 		return
 	}
-	s.showText(k, s.text(reflect.ValueOf(v), how.typ, how.unit, true))
+	beside := map[string]any{}
+	if r := reflect.ValueOf(v); r.Kind() == reflect.Float64 && !math.IsNaN(r.Float()) && !math.IsInf(r.Float(), 0) {
+		beside["ampturn"] = map[string]any{"value": r.Float(), "unit": strings.TrimPrefix(how.unit, "?")}
+	}
+	s.show(k, map[string]any{"text/plain": s.text(reflect.ValueOf(v), how.typ, how.unit, true)}, beside)
 }
 
 func isNilPointer(v any) bool {
@@ -35,7 +48,10 @@ func (s *Session) shownAt(k int) shown {
 	return s.shows[k]
 }
 
-func (s *Session) showBundle(k int, data map[string]any) {
+func (s *Session) showBundle(k int, data map[string]any) { s.show(k, data, nil) }
+
+// show sends what a value shows. Its metadata says under "ampturn" the expression as typed, and the numbers in full.
+func (s *Session) show(k int, data, beside map[string]any) {
 	if data == nil {
 		return
 	}
@@ -46,11 +62,19 @@ func (s *Session) showBundle(k int, data map[string]any) {
 		}
 		data = with
 	}
-	kind := kernel.Display
-	if s.shownAt(k).top {
+	how, kind := s.shownAt(k), kernel.Display
+	if how.top {
 		kind = kernel.Result
 	}
-	s.Emit(kernel.Output{Kind: kind, Data: data})
+	own, _ := beside["ampturn"].(map[string]any)
+	all := map[string]any{"expression": how.text}
+	maps.Copy(all, own)
+	meta := maps.Clone(beside)
+	if meta == nil {
+		meta = map[string]any{}
+	}
+	meta["ampturn"] = all
+	s.Emit(kernel.Output{Kind: kind, Data: data, Metadata: meta})
 }
 
 func (s *Session) showText(k int, text string) {
