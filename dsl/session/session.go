@@ -4,6 +4,7 @@
 //	Attach, BeginCell, EndCell, Finish, Reset, SetContext    called by the runner of cells
 //	Cell, Serial, Context, Show, Display, Place, Update      called by the vocabulary
 //	OnReset, OnBegin, OnEnd, OnPass, OnFinish                for packages that keep state per notebook
+//	SetFolder, Sources; ReadFile, Rest                       the files beside the notebook, and what its numbers rest on
 //
 // One notebook runs in a process at a time; all functions may be called from any goroutine. Without a runner (a
 // plain Go program, a test) output is dropped and the context never ends.
@@ -48,6 +49,7 @@ func Reset() {
 	state.Lock()
 	state.key, state.number = "", 0
 	state.serial++
+	sources.list = nil
 	state.Unlock()
 	for _, f := range hooks.reset {
 		f()
