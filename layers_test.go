@@ -25,6 +25,7 @@ var layers = map[string][]string{
 	"magcirc/induct":       {"magcirc", "magcirc/phys", "magcirc/internal/num"},
 	"magcirc/reluct":       {"magcirc", "magcirc/phys", "magcirc/internal/num", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct"},
 	"magcirc/design":       {"magcirc", "magcirc/phys", "magcirc/internal/num", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct", "magcirc/reluct"},
+	"magcirc/tol":          {"magcirc", "magcirc/phys", "magcirc/internal/num", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct", "magcirc/reluct", "magcirc/design"},
 
 	"stdlib": {"magcirc", "magcirc/*"},
 
