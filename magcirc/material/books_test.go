@@ -199,3 +199,33 @@ func TestBrauerAsAFunction(t *testing.T) {
 }
 
 var errNone = errors.New("no error")
+
+// Chapman, Electric Machinery Fundamentals, 5th ed., problem 2-2, magnetisation file p22_mag: points of flux in Wb over
+// the first column as published, read as mmf in A. With a path of 1 m and 1000 mm2 they are B in T over H in A/m. The law
+// must run through each of them, both ways, for both halves, and be steepest where the file is.
+func TestCurveOfAProblem(t *testing.T) {
+	mmf := []float64{20, 100, 200, 300, 400, 440}
+	flux := []float64{8.9717e-5, 4.4546e-4, 8.07447e-4, 9.99362e-4, 1.08791e-3, 1.09935e-3}
+	h, b := []float64{0}, []float64{0}
+	for k := range mmf {
+		h, b = append(h, mmf[k]), append(b, flux[k]/1e-3)
+	}
+	for _, between := range []material.Interpolation{material.Monotone, material.Straight} {
+		law := must(material.Points{Source: "p22_mag", H: h, B: b, Between: between}.Law())
+		for k := range h {
+			for _, sign := range []float64{1, -1} {
+				if got, slope := law.At(sign * h[k]); math.Abs(got-sign*b[k]) > 1e-12 || slope < phys.Mu0 {
+					t.Errorf("%v: B %v, slope %v at %v A/m, want %v", between, got, slope, sign*h[k], b[k])
+				}
+				if back, _ := law.Inverse(sign * b[k]); math.Abs(back-sign*h[k]) > 1e-9*(h[k]+1) {
+					t.Errorf("%v: H %v at %v T, want %v", between, back, sign*b[k], h[k])
+				}
+			}
+		}
+		_, low := law.At(60)
+		_, high := law.At(420)
+		if chord := (b[2] - b[1]) / 80; math.Abs(low-chord) > 0.1*chord || high > 0.1*low {
+			t.Errorf("%v: slope %v at 60 A/m, chord %v; %v at 420 A/m", between, low, chord, high)
+		}
+	}
+}
