@@ -65,6 +65,7 @@ type frame struct {
 	guarded bool // counts its depth
 	values  bool // its code outlives the cell as a value: a literal or a method
 	loops   []*loop
+	named   []string // variables of named results
 	top     bool // statements of the cell itself
 	parent  *frame
 }
@@ -103,9 +104,13 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 			}
 		}
 	}
-	var funcs []string
+	var funcs, early []string // methods of generic types stand before the variables of such types
 	for _, f := range r.funcs {
-		funcs = append(funcs, l.function(f))
+		if genericRecv(f.decl) {
+			early = append(early, l.function(f))
+		} else {
+			funcs = append(funcs, l.function(f))
+		}
 	}
 	res := &lowered{run: s.version("cell", false)}
 	body := l.statements(res)
@@ -114,7 +119,8 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 		funcs = append(funcs, "func "+res.undo+"() {\n\t"+strings.Join(l.undo, "\n\t")+"\n}\n")
 	}
 	res.imports = l.newImp
-	res.decls = strings.Join(l.types, "\n") + "\n" + strings.Join(funcs, "\n") + "\n" + strings.Join(l.globals, "\n") + "\n" +
+	res.decls = strings.Join(l.types, "\n") + "\n" + strings.Join(early, "\n") + "\n" + strings.Join(l.globals, "\n") + "\n" +
+		strings.Join(funcs, "\n") + "\n" +
 		"func " + res.run + "() {\n" + prefixed(l.prolog) + body + "}\n"
 	return res
 }

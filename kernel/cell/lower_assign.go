@@ -21,7 +21,7 @@ func (l *lowering) assign(s *ast.AssignStmt) {
 		l.line("%s %s= %s", x, op, y) // the fastest form
 		return
 	}
-	l.line("%s = %s %s %s", x, x, op, y)
+	l.line("%s = %s %s %s", x, x, op, l.wrap(s.Rhs[0], y))
 }
 
 // target is where a value goes.
@@ -174,9 +174,9 @@ func (l *lowering) commaOK(e ast.Expr) []string {
 	switch e := ast.Unparen(e).(type) {
 	case *ast.IndexExpr:
 		m := l.info.TypeOf(e.X).Underlying().(*types.Map)
-		text = l.expr(e.X) + "[" + l.convert(e.Index, m.Key()) + "]"
+		text = l.operand(e.X) + "[" + l.convert(e.Index, m.Key()) + "]"
 	case *ast.TypeAssertExpr:
-		text = l.expr(e.X) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
+		text = l.operand(e.X) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
 	}
 	v, ok := l.name("v"), l.name("ok")
 	l.before("%s, %s := %s", v, ok, text)

@@ -14,7 +14,7 @@ func (l *lowering) expr(e ast.Expr) string {
 	}
 	switch e := e.(type) {
 	case *ast.ParenExpr:
-		return "(" + l.expr(e.X) + ")"
+		return l.expr(e.X)
 	case *ast.Ident:
 		return l.ident(e)
 	case *ast.SelectorExpr:
@@ -24,7 +24,7 @@ func (l *lowering) expr(e ast.Expr) string {
 	case *ast.UnaryExpr:
 		return l.unary(e)
 	case *ast.StarExpr:
-		return "(*" + l.expr(e.X) + ")"
+		return "*" + l.operand(e.X)
 	case *ast.CallExpr:
 		return l.call(e, false)
 	case *ast.IndexExpr:
@@ -41,7 +41,7 @@ func (l *lowering) expr(e ast.Expr) string {
 		l.before("%s := %s", f, text)
 		return f
 	case *ast.TypeAssertExpr:
-		return l.expr(e.X) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
+		return l.operand(e.X) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
 	}
 	if l.info.Types[e].IsType() {
 		return l.typ(l.info.TypeOf(e))
@@ -146,10 +146,17 @@ func (l *lowering) selector(e *ast.SelectorExpr) string {
 	}
 }
 
-// operand lowers what stands before a dot, an index or a call.
-func (l *lowering) operand(e ast.Expr) string {
-	text := l.expr(e)
-	if strings.HasPrefix(text, "&") || strings.HasPrefix(text, "-") {
+// operand lowers what stands beside an operator, before a dot, an index or a call. Only there are brackets written: the
+// interpreter loses values of bracketed expressions that are assigned or returned.
+func (l *lowering) operand(e ast.Expr) string { return l.wrap(e, l.expr(e)) }
+
+// wrap puts brackets around the text of an expression that has an operator of its own.
+func (l *lowering) wrap(e ast.Expr, text string) string {
+	if l.info.Types[e].Value != nil || simple(text) {
+		return text
+	}
+	switch ast.Unparen(e).(type) {
+	case *ast.BinaryExpr, *ast.UnaryExpr, *ast.StarExpr, *ast.CompositeLit:
 		return "(" + text + ")"
 	}
 	return text
@@ -242,24 +249,24 @@ func (l *lowering) binary(e *ast.BinaryExpr) string {
 	if e.Op == token.EQL || e.Op == token.NEQ {
 		texts = l.list([]ast.Expr{x, y}, []types.Type{l.info.TypeOf(x), l.info.TypeOf(y)})
 		if texts[0] == "nil" {
-			texts[0], texts[1] = texts[1], texts[0]
+			return texts[1] + " " + e.Op.String() + " nil"
 		}
 	} else {
 		texts = l.list([]ast.Expr{x, y}, []types.Type{l.info.TypeOf(x), l.info.TypeOf(y)})
 	}
-	return "(" + texts[0] + " " + e.Op.String() + " " + texts[1] + ")"
+	return l.wrap(x, texts[0]) + " " + e.Op.String() + " " + l.wrap(y, texts[1])
 }
 
 // shortCircuit keeps the right side of && and || from being evaluated early.
 func (l *lowering) shortCircuit(e *ast.BinaryExpr) string {
-	left := l.expr(e.X)
+	left := l.operand(e.X)
 	outer, moved := l.pre, l.moved
 	l.pre = nil
-	right := l.expr(e.Y)
+	right := l.operand(e.Y)
 	inner := l.pre
 	l.pre = outer
 	if len(inner) == 0 {
-		return "(" + left + " " + e.Op.String() + " " + right + ")"
+		return left + " " + e.Op.String() + " " + right
 	}
 	l.moved = moved + 1
 	t := l.name("b")
@@ -282,9 +289,9 @@ func (l *lowering) unary(e *ast.UnaryExpr) string {
 			return "&" + l.composite(c, l.info.TypeOf(c))
 		}
 		l.capture(x)
-		return "&" + l.expr(x)
+		return "&" + l.operand(x)
 	}
-	return e.Op.String() + "(" + l.expr(e.X) + ")"
+	return e.Op.String() + l.operand(e.X)
 }
 
 // capture notes that a pointer into a variable of the notebook is taken.
@@ -319,14 +326,7 @@ func (l *lowering) index(e *ast.IndexExpr) string {
 		to = m.Key()
 	}
 	texts := l.list([]ast.Expr{e.X, e.Index}, []types.Type{l.info.TypeOf(e.X), to})
-	return paren(texts[0]) + "[" + texts[1] + "]"
-}
-
-func paren(text string) string {
-	if strings.HasPrefix(text, "&") || strings.HasPrefix(text, "-") {
-		return "(" + text + ")"
-	}
-	return text
+	return l.wrap(e.X, texts[0]) + "[" + texts[1] + "]"
 }
 
 func (l *lowering) slice(e *ast.SliceExpr) string {
@@ -352,7 +352,7 @@ func (l *lowering) slice(e *ast.SliceExpr) string {
 		texts = append(texts[:1], texts[2:]...)
 		return t
 	}
-	out := paren(texts[0]) + "[" + next(e.Low) + ":" + next(e.High)
+	out := l.wrap(e.X, texts[0]) + "[" + next(e.Low) + ":" + next(e.High)
 	if e.Slice3 {
 		out += ":" + next(e.Max)
 	}
@@ -488,6 +488,9 @@ func (l *lowering) convert(e ast.Expr, to types.Type) string {
 	}
 	text := l.expr(e)
 	from := l.info.TypeOf(e)
+	if to != nil && from != nil && types.IsInterface(to) && !types.IsInterface(from) && l.wrap(e, text) != text {
+		return l.hold(text) // the interpreter computes in place, which an interface is not
+	}
 	if to == nil || from == nil || text == "nil" || !compiledInterface(to) || types.Identical(from, to) {
 		return text
 	}

@@ -200,19 +200,21 @@ func (l *lowering) funcBody(fr *frame, t *ast.FuncType, recv *ast.Field, body *a
 			params = append(params, name+" "+text)
 		}
 	}
-	var results []string
+	var results, named []string
 	if t.Results != nil {
 		for _, f := range t.Results.List {
 			text := l.typ(l.info.TypeOf(f.Type))
 			for _, n := range paramNames(f) {
-				switch {
-				case n == nil:
-					results = append(results, text)
-				case n.Name == "_":
-					results = append(results, l.name("r")+" "+text)
-				default:
-					results = append(results, l.local(l.info.Defs[n])+" "+text)
+				results = append(results, text)
+				if n == nil {
+					continue
 				}
+				name := l.name("r")
+				if n.Name != "_" {
+					name = l.local(l.info.Defs[n])
+				}
+				fr.named = append(fr.named, name)
+				named = append(named, "var "+name+" "+text)
 			}
 		}
 	}
@@ -223,6 +225,9 @@ func (l *lowering) funcBody(fr *frame, t *ast.FuncType, recv *ast.Field, body *a
 	l.stopCheck()
 	if fr.guarded {
 		l.enter()
+	}
+	for _, v := range named { // named results are plain variables: the interpreter mistakes them in expressions
+		l.line("%s", v)
 	}
 	l.block(body.List)
 	if fr.guarded && len(results) == 0 {

@@ -424,7 +424,9 @@ func (l *lowering) returnStmt(s *ast.ReturnStmt) {
 	}
 	var texts []string
 	res := l.fn.sig.Results()
-	if len(s.Results) == 1 && res.Len() > 1 {
+	if len(s.Results) == 0 {
+		texts = append(texts, l.fn.named...)
+	} else if len(s.Results) == 1 && res.Len() > 1 {
 		texts = l.tuple(s.Results[0])
 	} else {
 		var to []types.Type
@@ -432,6 +434,13 @@ func (l *lowering) returnStmt(s *ast.ReturnStmt) {
 			to = append(to, res.At(i).Type())
 		}
 		texts = l.list(s.Results, to)
+	}
+	if len(texts) > 1 { // the interpreter mixes up several results that it computes in place
+		for i, t := range texts {
+			if !simple(t) {
+				texts[i] = l.hold(t)
+			}
+		}
 	}
 	if l.fn.guarded {
 		for i, t := range texts {
