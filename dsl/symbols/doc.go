@@ -67,14 +67,13 @@ var Docs = sync.OnceValue(func() map[string]string {
 // untypedString is an untyped string constant.
 func untypedString(s string) reflect.Value { return reflect.ValueOf(constant.MakeString(s)) }
 
-// untypedInt is an untyped whole constant.
-func untypedInt(text string) reflect.Value {
-	return reflect.ValueOf(constant.MakeFromLiteral(text, token.INT, 0))
-}
-
-// untypedFloat is an untyped constant too large or small for a ratio.
-func untypedFloat(text string) reflect.Value {
-	return reflect.ValueOf(constant.MakeFromLiteral(text, token.FLOAT, 0))
+// untypedNumber is an untyped whole constant, or one too large or small for a ratio, which is written in binary ("0x1p+5").
+func untypedNumber(text string) reflect.Value {
+	kind := token.INT
+	if strings.Contains(text, "p") {
+		kind = token.FLOAT
+	}
+	return reflect.ValueOf(constant.MakeFromLiteral(text, kind, 0))
 }
 
 // untypedRatio is an untyped constant as a ratio of whole numbers.

@@ -28,7 +28,7 @@ func init() {
 		"FormatFloat":              reflect.ValueOf(strconv.FormatFloat),
 		"FormatInt":                reflect.ValueOf(strconv.FormatInt),
 		"FormatUint":               reflect.ValueOf(strconv.FormatUint),
-		"IntSize":                  untypedInt("64"),
+		"IntSize":                  untypedNumber("64"),
 		"IsGraphic":                reflect.ValueOf(strconv.IsGraphic),
 		"IsPrint":                  reflect.ValueOf(strconv.IsPrint),
 		"Itoa":                     reflect.ValueOf(strconv.Itoa),

@@ -47,7 +47,6 @@ func init() {
 		"SplitAfter":     reflect.ValueOf(strings.SplitAfter),
 		"SplitAfterN":    reflect.ValueOf(strings.SplitAfterN),
 		"SplitN":         reflect.ValueOf(strings.SplitN),
-		"Title":          reflect.ValueOf(strings.Title),
 		"ToLower":        reflect.ValueOf(strings.ToLower),
 		"ToLowerSpecial": reflect.ValueOf(strings.ToLowerSpecial),
 		"ToTitle":        reflect.ValueOf(strings.ToTitle),

@@ -220,7 +220,7 @@ func TestConstantText(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	lit := regexp.MustCompile(`untypedFloat\("(.*)"\)`).FindStringSubmatch(text)
+	lit := regexp.MustCompile(`untypedNumber\("(.*)"\)`).FindStringSubmatch(text)
 	if lit == nil {
 		t.Fatalf("written as %s", text)
 	}

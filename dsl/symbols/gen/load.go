@@ -14,6 +14,7 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"strings"
 )
 
 // listed is what the go command says of a package.
@@ -60,6 +61,8 @@ type loaded struct {
 	files []*ast.File    // with comments and bodies
 	full  *types.Package // the exported names as they are
 	api   *types.Package // what is offered: see strip
+
+	deprecated map[string]bool // functions that their comments call so
 }
 
 // load parses and checks one package from source, its imports from export data.
@@ -68,13 +71,18 @@ func (l listing) load(path string, table map[string]bool) (*loaded, error) {
 	if !ok {
 		return nil, fmt.Errorf("go list: no package %s", path)
 	}
-	p := &loaded{path: path, table: table, build: l, fset: token.NewFileSet()}
+	p := &loaded{path: path, table: table, build: l, fset: token.NewFileSet(), deprecated: map[string]bool{}}
 	for _, name := range at.GoFiles {
 		f, err := parser.ParseFile(p.fset, filepath.Join(at.Dir, name), nil, parser.ParseComments|parser.SkipObjectResolution)
 		if err != nil {
 			return nil, err
 		}
 		p.files = append(p.files, f)
+		for _, d := range f.Decls {
+			if fn, ok := d.(*ast.FuncDecl); ok && fn.Recv == nil && strings.Contains(fn.Doc.Text(), "\nDeprecated: ") {
+				p.deprecated[fn.Name.Name] = true
+			}
+		}
 	}
 	var err error
 	if p.full, err = p.check(p.files, nil); err != nil {

@@ -11,6 +11,9 @@ import (
 // leftOut are functions of the standard packages that cells get no symbol for: they read the standard input.
 var leftOut = map[string]bool{"fmt.Scan": true, "fmt.Scanf": true, "fmt.Scanln": true}
 
+// keptOld are deprecated functions that cells get all the same; the others are left out.
+var keptOld = map[string]bool{"math/rand.Seed": true}
+
 // strip checks the package once more, without what cells have no use for: unexported fields and the signatures of
 // unexported methods, which would drag the insides of other packages into the export data, and, outside the vocabulary, functions and methods that cells
 // could not call (generics, types of packages that are not in the table). What remains must not change by that.
@@ -145,7 +148,7 @@ func (p *loaded) unusable(fn *types.Func) bool {
 	if p.whole {
 		return false
 	}
-	if fn.Signature().Recv() == nil && leftOut[p.path+"."+fn.Name()] {
+	if name := p.path + "." + fn.Name(); fn.Signature().Recv() == nil && (leftOut[name] || p.deprecated[fn.Name()] && !keptOld[name]) {
 		return true
 	}
 	if fn.Signature().TypeParams().Len() > 0 {

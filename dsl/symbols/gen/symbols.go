@@ -15,6 +15,7 @@ import (
 // source writes the symbol table of one package.
 type source struct {
 	pkg     *types.Package
+	old     map[string]bool // deprecated functions
 	imports map[string]bool
 	entries bytes.Buffer
 	wraps   bytes.Buffer
@@ -22,7 +23,7 @@ type source struct {
 
 // symbols writes the Go file that registers a package's symbols and declares its interface wrappers.
 func (p *loaded) symbols(name string) ([]byte, error) {
-	s := &source{pkg: p.api, imports: map[string]bool{p.path: true, "reflect": true}}
+	s := &source{pkg: p.api, old: p.deprecated, imports: map[string]bool{p.path: true, "reflect": true}}
 	for _, n := range p.api.Scope().Names() {
 		if obj := p.api.Scope().Lookup(n); obj.Exported() {
 			if err := s.symbol(n, obj); err != nil {
@@ -76,7 +77,12 @@ func (s *source) symbol(name string, obj types.Object) error {
 }
 
 // entry adds a row of the table.
-func (s *source) entry(name, value string) { fmt.Fprintf(&s.entries, "\t\t%q: %s,\n", name, value) }
+func (s *source) entry(name, value string) {
+	if s.old[name] {
+		s.entries.WriteString("\t\t//lint:ignore SA1019 a cell may ask for it\n")
+	}
+	fmt.Fprintf(&s.entries, "\t\t%q: %s,\n", name, value)
+}
 
 // isConstraint tells whether an interface can only constrain type parameters.
 func isConstraint(t types.Type) bool {
@@ -109,7 +115,7 @@ func constantText(full string, c *types.Const) (string, error) {
 	case constant.String:
 		return fmt.Sprintf("untypedString(%s)", v.ExactString()), nil
 	case constant.Int:
-		return fmt.Sprintf("untypedInt(%q)", v.ExactString()), nil
+		return fmt.Sprintf("untypedNumber(%q)", v.ExactString()), nil
 	case constant.Float:
 		if num, den := constant.Num(v), constant.Denom(v); num.Kind() == constant.Int && den.Kind() == constant.Int {
 			return fmt.Sprintf("untypedRatio(%q, %q)", num.ExactString(), den.ExactString()), nil
@@ -118,7 +124,7 @@ func constantText(full string, c *types.Const) (string, error) {
 		if !ok {
 			return "", fmt.Errorf("%s: a constant of no known form", full)
 		}
-		return fmt.Sprintf("untypedFloat(%q)", f.Text('x', -1)), nil
+		return fmt.Sprintf("untypedNumber(%q)", f.Text('x', -1)), nil
 	default:
 		return "", fmt.Errorf("%s: an untyped constant of kind %v has no symbol", full, v.Kind())
 	}
