@@ -191,7 +191,7 @@ func seal(t *ast.FuncType) {
 
 // stripFields puts one blank field in the place of all unexported fields that are not embedded; its type keeps the
 // struct as comparable as it was.
-func stripFields(st *ast.StructType, comparable bool) {
+func stripFields(st *ast.StructType, compares bool) {
 	kept := st.Fields.List[:0]
 	var hidden bool
 	for _, f := range st.Fields.List {
@@ -213,7 +213,7 @@ func stripFields(st *ast.StructType, comparable bool) {
 	if hidden {
 		at := st.Fields.Opening
 		var blank ast.Expr = &ast.StructType{Struct: at, Fields: &ast.FieldList{Opening: at, Closing: at}}
-		if !comparable {
+		if !compares {
 			blank = &ast.ArrayType{Lbrack: at, Len: &ast.BasicLit{ValuePos: at, Kind: token.INT, Value: "0"},
 				Elt: &ast.FuncType{Func: at, Params: &ast.FieldList{Opening: at, Closing: at}}}
 		}

@@ -75,7 +75,7 @@ func (in *inference) together(e *ast.CallExpr, args []value) value {
 		if i >= len(args) {
 			break
 		}
-		if !comparable(v, args[i]) {
+		if !mayCompare(v, args[i]) {
 			in.refuseCompare(e, e.Args[0], v, a, args[i])
 			return lost
 		}

@@ -100,7 +100,7 @@ func (in *inference) switched(s *ast.SwitchStmt) {
 		clause := c.(*ast.CaseClause)
 		for _, e := range clause.List {
 			v := in.expr(e)
-			if s.Tag != nil && !comparable(tag, v) {
+			if s.Tag != nil && !mayCompare(tag, v) {
 				in.refuseCompare(e, s.Tag, tag, e, v)
 			}
 		}

@@ -160,7 +160,7 @@ func sum(x, y value, minus bool) (v value, ok bool) {
 	return x, false
 }
 
-// comparable tells whether two values may be compared: one unit, or a bare number beside one.
-func comparable(x, y value) bool {
+// mayCompare tells whether two values may be compared: one unit, or a bare number beside one.
+func mayCompare(x, y value) bool {
 	return x.kind != known || y.kind != known || x.dim == y.dim || x.dim == Number || y.dim == Number
 }
