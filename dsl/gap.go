@@ -82,6 +82,8 @@ type GapPart struct {
 	length float64
 	faces  *Section
 	rule   *WindowRule
+	spread spread  // of the length
+	bias   float64 // share by which the permeance is off what its method gives
 }
 
 // Gap is an air gap. It takes the section of the leg beside it, or of .Faces(section), and counts the flux around it

@@ -19,6 +19,7 @@ const roomTemperature = 25.0
 // methods give a new one.
 type MagneticMaterial struct {
 	below *material.Material
+	lot   spread // how its permeability is spread, as far as Normal and Together say it
 }
 
 // NewMaterial makes a material of a law at 25 degC.
@@ -28,7 +29,7 @@ func NewMaterial(name string, law Law) *MagneticMaterial {
 	if name == "" {
 		refuse(magcirc.BadValue, "material", "has no name", `write NewMaterial("lot 12", law)`)
 	}
-	return &MagneticMaterial{material.New(name, lawBelow("material "+name, law))}
+	return &MagneticMaterial{below: material.New(name, lawBelow("material "+name, law))}
 }
 
 // Also adds the law at another temperature. Between two temperatures the flux density at equal field strength is
@@ -40,20 +41,20 @@ func (m *MagneticMaterial) Also(temperature Celsius, law Law) *MagneticMaterial 
 	wantTemperature(elem, temperature)
 	next, err := m.below.Also(temperature, lawBelow(elem, law))
 	named(elem, err)
-	return &MagneticMaterial{next}
+	return &MagneticMaterial{next, m.lot}
 }
 
 // Extrapolate allows temperatures further than 20 K beyond the data; every result then says how far.
 func (m *MagneticMaterial) Extrapolate() *MagneticMaterial {
 	m.given()
-	return &MagneticMaterial{m.below.Extrapolate()}
+	return &MagneticMaterial{m.below.Extrapolate(), m.lot}
 }
 
 // Tolerance states the spread of the permeability, relative: what the maker guarantees.
 func (m *MagneticMaterial) Tolerance(spread Ratio) *MagneticMaterial {
 	m.given()
 	wantRange("material "+m.Name(), "tolerance", spread, 0, 1, "")
-	return &MagneticMaterial{m.below.Tolerance(spread)}
+	return &MagneticMaterial{m.below.Tolerance(spread), m.lot}
 }
 
 // Name is the name it was given.

@@ -67,7 +67,7 @@ func (m *model) part(c *MagneticCircuit, at place) reluct.Element {
 		named(elem, err)
 		m.note(r.Notes...)
 		m.gaps[at] = r
-		e.Kind, e.Permeance, e.Length, e.Area = reluct.Gap, r.Permeance, part.length, s.Face.Gross()
+		e.Kind, e.Permeance, e.Length, e.Area = reluct.Gap, r.Permeance*(1+part.bias), part.length, s.Face.Gross()
 	case PermeancePart:
 		e.Kind, e.Permeance = reluct.Stray, part.permeance
 	case MagnetPart:

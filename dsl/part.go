@@ -31,6 +31,8 @@ type LegPart struct {
 	material *MagneticMaterial
 	length   float64
 	section  Section
+	along    spread // of the length
+	across   spread // of the section's area
 }
 
 // Leg is a length of magnetic material with a section: a leg, a limb, a post, the whole of a ring.
@@ -116,6 +118,7 @@ func (w WindingPart) signed() float64 {
 type PermeancePart struct {
 	name      string
 	permeance float64
+	spread    spread
 }
 
 // Permeance is a stray path of known permeance, flux per ampere-turn: the inductance of one turn around it.
@@ -154,6 +157,7 @@ type MagnetPart struct {
 	length   float64
 	section  Section
 	reversed bool
+	spread   spread // of the remanence
 }
 
 // Magnet is a permanent magnet of remanence Br and recoil permeability mur on its straight recoil line

@@ -15,7 +15,7 @@ import (
 func Material(name string) *MagneticMaterial {
 	m, err := stdlib.Material(name)
 	check(err)
-	return &MagneticMaterial{m}
+	return &MagneticMaterial{below: m}
 }
 
 // Materials lists the shelf: what it carries, at which temperatures, by which law, and where each row comes from. Names

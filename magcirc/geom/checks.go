@@ -2,6 +2,7 @@ package geom
 
 import (
 	"fmt"
+	"math"
 
 	"ampturn/magcirc"
 	"ampturn/magcirc/phys"
@@ -41,6 +42,13 @@ func (s Section) Grown(by float64) (Section, bool) {
 		return s, false
 	}
 	return s, true
+}
+
+// Scaled gives the section with k times its area, its outline keeping its shape, k > 0.
+func (s Section) Scaled(k float64) Section {
+	side := math.Sqrt(k)
+	s.W, s.D, s.Do, s.Di, s.A = s.W*side, s.D*side, s.Do*side, s.Di*side, s.A*k
+	return s
 }
 
 // Validate refuses a section that cannot be one, in the name of the part elem ("leg T1.centre").
