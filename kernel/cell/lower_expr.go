@@ -162,6 +162,18 @@ func (l *lowering) wrap(e ast.Expr, text string) string {
 	return text
 }
 
+// isOperation tells whether an expression is computed by an operator.
+func (l *lowering) isOperation(e ast.Expr) bool {
+	if l.info.Types[e].Value != nil {
+		return false
+	}
+	switch ast.Unparen(e).(type) {
+	case *ast.BinaryExpr, *ast.UnaryExpr:
+		return true
+	}
+	return false
+}
+
 // fieldPath writes a selection with all embedded fields on its way.
 func (l *lowering) fieldPath(text string, sel *types.Selection) string {
 	return text + l.path(sel, sel.Index())
@@ -488,7 +500,7 @@ func (l *lowering) convert(e ast.Expr, to types.Type) string {
 	}
 	text := l.expr(e)
 	from := l.info.TypeOf(e)
-	if to != nil && from != nil && types.IsInterface(to) && !types.IsInterface(from) && l.wrap(e, text) != text {
+	if to != nil && from != nil && types.IsInterface(to) && !types.IsInterface(from) && l.isOperation(e) {
 		return l.hold(text) // the interpreter computes in place, which an interface is not
 	}
 	if to == nil || from == nil || text == "nil" || !compiledInterface(to) || types.Identical(from, to) {
