@@ -325,31 +325,23 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 	}
 	begun := time.Now()
 	done := make(chan struct{})
-	var stopped any
-	var stack []byte
+	var end ending // written by the cell's goroutine before done is closed
 	go func() {
 		defer close(done)
 		defer func() {
-			if stopped = recover(); stopped != nil {
-				stack = ownStack(stopped)
+			if end.value = recover(); end.value != nil {
+				end.stack = ownStack(end.value)
 			}
 			if s.tooDeep.Load() {
-				stopped = tooDeep{}
+				end.value = tooDeep{}
 			}
 		}()
 		s.runner.Store(goroutine())
 		u.run()
 	}()
-	select {
-	case <-done:
-	case <-ctx.Done():
-		s.machine.interrupt()
-		select {
-		case <-done:
-		case <-time.After(patience):
-			s.stuck, s.stuckCell = done, c.Number
-			stopped = interrupted{}
-		}
+	stopped, stack := any(interrupted{}), []byte(nil)
+	if s.wait(ctx, done, c.Number) {
+		stopped, stack = end.value, end.stack
 	}
 	var o kernel.Outcome
 	if stopped != nil && ctx.Err() != nil {
@@ -363,6 +355,29 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 		s.hooks.End(key, stopped != nil)
 	}
 	return o
+}
+
+// ending is how the goroutine of a cell ended: with what was recovered, and its stack if that is nobody's fault.
+type ending struct {
+	value any
+	stack []byte
+}
+
+// wait waits for the end of a cell. After an interrupt it waits a while longer, then leaves the cell's goroutine behind.
+func (s *Session) wait(ctx context.Context, done chan struct{}, number int) bool {
+	select {
+	case <-done:
+		return true
+	case <-ctx.Done():
+	}
+	s.machine.interrupt()
+	select {
+	case <-done:
+		return true
+	case <-time.After(patience):
+		s.stuck, s.stuckCell = done, number
+		return false
+	}
 }
 
 // rollback takes back the names of a cell that failed; older variables keep what was assigned to them.
