@@ -37,6 +37,20 @@ func exits(ts *testscript.TestScript, _ bool, args []string) {
 	}
 }
 
+// ampturn gives the command under test, as a link to the test's own binary.
+func ampturn(t *testing.T) string {
+	t.Helper()
+	exe, err := os.Executable()
+	if err != nil {
+		t.Fatal(err)
+	}
+	bin := filepath.Join(t.TempDir(), "ampturn")
+	if err := os.Symlink(exe, bin); err != nil {
+		t.Fatal(err)
+	}
+	return bin
+}
+
 // TestInterrupt stops a notebook in the middle of an endless cell: it says so, ends with 1, and the file that was
 // there before still opens.
 func TestInterrupt(t *testing.T) {
@@ -45,15 +59,7 @@ func TestInterrupt(t *testing.T) {
 	if err := os.WriteFile(nb, []byte("// %%\na := 1\na\n\n// %%\nfor {\n\ta++\n}\n\n// %%\na\n"), 0o644); err != nil {
 		t.Fatal(err)
 	}
-	exe, err := os.Executable()
-	if err != nil {
-		t.Fatal(err)
-	}
-	bin := filepath.Join(dir, "ampturn")
-	if err := os.Symlink(exe, bin); err != nil {
-		t.Fatal(err)
-	}
-	cmd := exec.Command(bin, "run", "--out", filepath.Join(dir, "out"), nb)
+	cmd := exec.Command(ampturn(t), "run", "--out", filepath.Join(dir, "out"), nb)
 	var said strings.Builder
 	cmd.Stdout, cmd.Stderr = &said, &said
 	if err := cmd.Start(); err != nil {

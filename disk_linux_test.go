@@ -57,20 +57,6 @@ func runInto(t *testing.T, dir, before, want string) {
 	}
 }
 
-// ampturn gives the command under test, as a link to the test's own binary.
-func ampturn(t *testing.T) string {
-	t.Helper()
-	exe, err := os.Executable()
-	if err != nil {
-		t.Fatal(err)
-	}
-	bin := filepath.Join(t.TempDir(), "ampturn")
-	if err := os.Symlink(exe, bin); err != nil {
-		t.Fatal(err)
-	}
-	return bin
-}
-
 func writeOld(t *testing.T, out string) {
 	t.Helper()
 	if err := os.WriteFile(filepath.Join(out, "big.ipynb"), []byte("old"), 0o644); err != nil {
