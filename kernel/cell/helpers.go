@@ -55,6 +55,7 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"Println":    reflect.ValueOf(func(v ...any) (int, error) { return s.print(fmt.Sprintln(v...)) }),
 		"Printf":     reflect.ValueOf(func(format string, v ...any) (int, error) { return s.print(fmt.Sprintf(format, v...)) }),
 		"Worded":     reflect.ValueOf(func(v any, text func() string) any { return worded{v, text} }),
+		"Typed":      reflect.ValueOf(func(k int, v any) any { return typed{v, s.shownAt(k).typ} }),
 		"Sort":       reflect.ValueOf(sortKeys),
 		"MinFloat":   reflect.ValueOf(func(v ...float64) float64 { return extreme(v, math.Min) }),
 		"MaxFloat":   reflect.ValueOf(func(v ...float64) float64 { return extreme(v, math.Max) }),

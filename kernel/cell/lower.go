@@ -66,7 +66,7 @@ type frame struct {
 	values  bool // its code outlives the cell as a value: a literal or a method
 	loops   []*loop
 	named   []string // variables of named results
-	top     bool // statements of the cell itself
+	top     bool     // statements of the cell itself
 	parent  *frame
 }
 

@@ -121,7 +121,11 @@ func (l *lowering) args(e *ast.CallExpr, sig *types.Signature, units string) str
 	texts := l.list(e.Args, to)
 	if o := callee(l.info, ast.Unparen(e.Fun)); o != nil && foreign(o) {
 		for i, a := range e.Args {
-			texts[i] = l.worded(a, to[i], texts[i])
+			plain := texts[i]
+			texts[i] = l.worded(a, to[i], plain)
+			if texts[i] == plain && o.Pkg().Path() == "fmt" && isAny(to[i]) {
+				texts[i] = l.typed(a, plain)
+			}
 		}
 	}
 	text := strings.Join(texts, ", ")
@@ -158,6 +162,34 @@ func (l *lowering) worded(e ast.Expr, to types.Type, text string) string {
 		}
 	}
 	return text
+}
+
+// typed gives fmt a value together with its static type, which alone knows the names of types and fields as typed.
+func (l *lowering) typed(e ast.Expr, text string) string {
+	t := l.info.TypeOf(e)
+	if t == nil || types.IsInterface(t) || !mentionsCell(t, 0) {
+		return text
+	}
+	l.s.shows = append(l.s.shows, shown{typ: t})
+	return fmt.Sprintf("%s(%d, %s)", l.nb("Typed"), len(l.s.shows)-1, text)
+}
+
+// mentionsCell tells whether a type of a cell occurs in a type.
+func mentionsCell(t types.Type, depth int) bool {
+	if isCellType(t) {
+		return true
+	}
+	switch t := types.Unalias(t).(type) {
+	case *types.Pointer:
+		return depth < 4 && mentionsCell(t.Elem(), depth+1)
+	case *types.Slice:
+		return depth < 4 && mentionsCell(t.Elem(), depth+1)
+	case *types.Array:
+		return depth < 4 && mentionsCell(t.Elem(), depth+1)
+	case *types.Map:
+		return depth < 4 && (mentionsCell(t.Elem(), depth+1) || mentionsCell(t.Key(), depth+1))
+	}
+	return false
 }
 
 // vocabularyCall lowers calls of compiled functions that the notebook treats in its own way.

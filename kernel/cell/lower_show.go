@@ -79,11 +79,10 @@ func (l *lowering) help(x ast.Expr) bool {
 	case *ast.Ident:
 		o, name = l.info.Uses[f], f.Name
 	case *ast.SelectorExpr:
-		if l.info.Selections[f] != nil {
-			return false
-		}
 		o = l.info.Uses[f.Sel]
-		if o != nil && o.Pkg() != nil {
+		if l.info.Selections[f] != nil {
+			name = l.src.quote(f.Pos(), f.End())
+		} else if o != nil && o.Pkg() != nil {
 			name = o.Pkg().Name() + "." + f.Sel.Name
 		}
 	}

@@ -15,6 +15,10 @@ func (l *lowering) block(list []ast.Stmt) {
 
 // stmt lowers a statement: its mark, what is due before it, itself.
 func (l *lowering) stmt(s ast.Stmt) {
+	switch s.(type) {
+	case *ast.ExprStmt, *ast.AssignStmt, *ast.DeclStmt:
+		defer l.keepDepth(s)()
+	}
 	switch s := s.(type) {
 	case nil:
 	case *ast.EmptyStmt:
@@ -145,13 +149,7 @@ func (l *lowering) exprStmt(s *ast.ExprStmt) {
 		return
 	}
 	text := l.call(call, true)
-	restore := l.restoresDepth(call)
 	l.flush()
-	if restore {
-		d := l.name("d")
-		l.line("%s := nb__depth", d)
-		defer l.line("nb__depth = %s", d)
-	}
 	if text != "" {
 		l.line("%s", text)
 	}
@@ -170,32 +168,36 @@ func (l *lowering) prints(x ast.Expr) bool {
 	return o.Pkg().Path() == "fmt" && strings.HasPrefix(o.Name(), "Print") || o.Pkg().Path() == l.s.voc.Open && o.Name() == "Show"
 }
 
-// restoresDepth tells whether a call may come back from deep within functions of the notebook by a failure that the
-// vocabulary caught.
-func (l *lowering) restoresDepth(call *ast.CallExpr) bool {
-	if racing {
-		return false
+// keepDepth counts the depth of calls as before after a statement in which compiled code may have caught a failure that
+// came from deep within functions of the notebook. It gives what is due after the statement.
+func (l *lowering) keepDepth(s ast.Stmt) func() {
+	if racing || !l.callsBack(s) {
+		return func() {}
 	}
-	for _, a := range call.Args {
-		if t := l.info.TypeOf(a); t != nil {
-			if _, ok := t.Underlying().(*types.Signature); ok && foreignCallee(l.info, call) {
-				return true
-			}
-		}
-	}
-	return false
+	d := l.name("d")
+	l.line("%s := nb__depth", d)
+	return func() { l.line("nb__depth = %s", d) }
 }
 
-func foreignCallee(info *types.Info, call *ast.CallExpr) bool {
-	switch f := ast.Unparen(call.Fun).(type) {
-	case *ast.Ident:
-		o := info.Uses[f]
-		return o != nil && foreign(o)
-	case *ast.SelectorExpr:
-		o := info.Uses[f.Sel]
-		return o != nil && foreign(o)
-	}
-	return false
+// callsBack tells whether a statement gives a function to compiled code.
+func (l *lowering) callsBack(s ast.Stmt) bool {
+	found := false
+	ast.Inspect(s, func(n ast.Node) bool {
+		switch n := n.(type) {
+		case *ast.FuncLit, *ast.BlockStmt:
+			return false
+		case *ast.CallExpr:
+			if o := callee(l.info, ast.Unparen(n.Fun)); o != nil && foreign(o) {
+				for _, a := range n.Args {
+					if t := l.info.TypeOf(a); t != nil {
+						found = found || isFunc(t)
+					}
+				}
+			}
+		}
+		return !found
+	})
+	return found
 }
 
 // isTop tells whether a statement is one of the cell's top level.

@@ -2,6 +2,7 @@ package cell
 
 import (
 	"go/ast"
+	"go/constant"
 	"go/token"
 	"go/types"
 	"strings"
@@ -184,12 +185,32 @@ func (w *subsetWalk) call(n *ast.CallExpr) {
 		}
 	case *ast.SelectorExpr:
 		o := w.c.info.Uses[f.Sel]
+		if o != nil && o.Pkg() != nil && o.Pkg().Path() == "fmt" {
+			w.typeVerb(n)
+		}
 		if o != nil && o.Pkg() != nil && o.Pkg().Path() == "errors" && (o.Name() == "As" || o.Name() == "Is") && len(n.Args) == 2 {
 			t := w.typeOf(n.Args[1])
 			if t != nil && (o.Name() == "As" || isCellType(deref(t)) || isCellType(t)) {
 				w.refuse(n, "errors."+o.Name()+" does not know the error types of a cell; use a type switch on the error itself")
 			}
 		}
+	}
+}
+
+// typeVerb refuses %T for what holds types of a cell: at run time they have no name.
+func (w *subsetWalk) typeVerb(n *ast.CallExpr) {
+	format, held := false, false
+	for _, a := range n.Args {
+		tv := w.c.info.Types[a]
+		switch {
+		case tv.Value != nil && tv.Value.Kind() == constant.String:
+			format = format || strings.Contains(constant.StringVal(tv.Value), "%T")
+		case tv.Type != nil:
+			held = held || mentionsCell(tv.Type, 0)
+		}
+	}
+	if format && held {
+		w.refuse(n, "%T does not know the types of a cell; write the type's name as text")
 	}
 }
 
