@@ -130,7 +130,8 @@ func vocabulary() *cell.Vocabulary {
 	v := &cell.Vocabulary{
 		Symbols: symbols.Symbols, Export: symbols.Export(), Docs: symbols.Docs(),
 		Open: "ampturn/dsl", Packages: packages, Functions: si.Functions, Format: phys.Format,
-		Units: &unit.Table{Words: si.Words, Bare: si.Bare, Aliases: si.Aliases, Value: "Value", Functions: si.Functions},
+		Units: &unit.Table{Words: si.Words, Bare: si.Bare, Aliases: si.Aliases, Value: si.Value, Functions: si.Functions,
+			Powers: si.Powers},
 	}
 	for _, s := range si.Symbols {
 		v.Units.Symbols = append(v.Units.Symbols, unit.Symbol(s))
