@@ -149,9 +149,9 @@ func buildOverlay(dir, folder string, files map[string]string) (binary string, e
 		return "", err
 	}
 	binary = filepath.Join(dir, "program")
-	cmd := exec.Command("go", "build", "-gcflags=-N -l", "-ldflags=-s -w", "-overlay", list, "-o", binary, "./"+folder)
+	cmd := exec.Command("go", "build", "-gcflags=-N -l -e", "-ldflags=-s -w", "-overlay", list, "-o", binary, "./"+folder)
 	if out, err := cmd.CombinedOutput(); err != nil {
-		return "", fmt.Errorf("%s does not build: %w\n%.3000s", folder, err, out)
+		return "", fmt.Errorf("%s does not build: %w\n%.9000s", folder, err, out)
 	}
 	return binary, nil
 }

@@ -57,7 +57,7 @@ func (w *writer) sameVariable() {
 }
 
 func (w *writer) otherVariable() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) })
+	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) && !w.usedHere(e.name) })
 	if len(all) == 0 {
 		w.newVariable()
 		return
@@ -69,7 +69,10 @@ func (w *writer) otherVariable() {
 		return
 	}
 	w.count("variable declared again, other type")
-	w.set(e.name, t, w.value(t, 2))
+	w.shun = e.name // functions that use it do not fit any more
+	value := w.value(t, 2)
+	w.shun = ""
+	w.set(e.name, t, value)
 }
 
 // itself declares a variable again with another type, from its own value.
@@ -87,8 +90,8 @@ func (w *writer) itself() {
 	case 0:
 		w.give([]string{e.name}, []*typ{stringType}, e.name+" := ", "fmt.Sprint("+x+")")
 	case 1:
-		w.give([]string{e.name}, []*typ{sliceOf(e.typ)}, e.name+" := ", "[]"+e.typ.text()+"{"+x+", "+w.value(e.typ, 1)+"}")
-	case 2:
+		w.give([]string{e.name}, []*typ{sliceOf(e.typ)}, e.name+" := ", "[]"+e.typ.text()+"{"+x+", "+w.value(e.typ, 0)+"}")
+	default:
 		w.give([]string{e.name}, []*typ{e.typ}, e.name+" := ", x+" + "+w.dynamic(e.typ, 1))
 	}
 }
