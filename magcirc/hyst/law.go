@@ -41,6 +41,7 @@ type State struct {
 	x, m float64   // Jiles-Atherton: reduced effective field and magnetisation; play: field strength in A/m, magnetisation
 	cell int       // Jiles-Atherton: interval of the table that holds x
 	hr   []float64 // play: reversible field of each cell in A/m
+	own  []float64 // play: magnetisation of each cell in A/m
 	rest []float64 // play: magnetisation in A/m of cell k and those after it
 	heat float64   // play: dissipated energy in J/m3
 }
@@ -49,9 +50,11 @@ type State struct {
 func (s *State) Clone() State {
 	c := *s
 	if s.hr != nil {
-		both := make([]float64, len(s.hr)+len(s.rest))
-		c.hr, c.rest = both[:len(s.hr):len(s.hr)], both[len(s.hr):]
+		n := len(s.hr)
+		all := make([]float64, 3*n+1)
+		c.hr, c.own, c.rest = all[:n:n], all[n:2*n:2*n], all[2*n:]
 		copy(c.hr, s.hr)
+		copy(c.own, s.own)
 		copy(c.rest, s.rest)
 	}
 	return c
