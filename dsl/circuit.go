@@ -21,6 +21,7 @@ type MagneticCircuit struct {
 	asked       bool     // the temperature was asked for
 	changes     []string // what With changed, in words
 	variant     bool
+	drawn       bool // a draw of a sample or a trial: nothing of it enters the document
 }
 
 // path is one branch: where it runs, and its parts in order.

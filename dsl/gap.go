@@ -140,7 +140,7 @@ func (g GapPart) MIMEBundle() map[string]any {
 func (g GapPart) spec(elem string, beside *LegPart, leg float64) gap.Spec {
 	s := gap.Spec{Elem: elem, Length: g.length, Leg: leg}
 	if beside != nil {
-		s.Face = beside.section.shape
+		s.Face = beside.section.shape.Scaled(1 + beside.stretch)
 	}
 	if g.faces != nil {
 		s.Face = g.faces.shape

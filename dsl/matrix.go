@@ -16,6 +16,8 @@ type InductanceMatrix struct {
 	caption string
 	remarks []Remark
 	checks  *doc.Table // the readings it was made from
+	origin  *OperatingPoint
+	kind    answerKind // of its inductances
 }
 
 // index finds a winding.
@@ -48,18 +50,34 @@ func (m *InductanceMatrix) given() {
 }
 
 // Self is the inductance of a winding with the others open.
-func (m *InductanceMatrix) Self(winding string) Henry { i := m.index(winding); return m.matrix.Self(i) }
+func (m *InductanceMatrix) Self(winding string) Henry {
+	i := m.index(winding)
+	return m.keep(m.kind, "H", func(m *InductanceMatrix) float64 { return m.matrix.Self(i) }, winding)
+}
+
+// keep asks the matrix, and remembers what the number is where an operating point gave the matrix.
+func (m *InductanceMatrix) keep(kind answerKind, unit string, ask func(m *InductanceMatrix) float64, names ...string) float64 {
+	if m.kind == secantKind && kind != secantKind {
+		kind += ", secant"
+	}
+	return m.origin.keep(kind, unit, ask(m), func(op *OperatingPoint) float64 {
+		if m.kind == secantKind {
+			return ask(op.SecantMatrix())
+		}
+		return ask(op.Matrix())
+	}, names...)
+}
 
 // Mutual is the mutual inductance of two windings, negative where their dots oppose.
 func (m *InductanceMatrix) Mutual(first, second string) Henry {
 	i := m.indices([]string{first, second})
-	return m.matrix.Mutual(i[0], i[1])
+	return m.keep(mutualKind, "H", func(m *InductanceMatrix) float64 { return m.matrix.Mutual(i[0], i[1]) }, first, second)
 }
 
 // Coupling is the coupling factor of two windings, with the sign of their mutual inductance.
 func (m *InductanceMatrix) Coupling(first, second string) Ratio {
 	i := m.indices([]string{first, second})
-	return m.matrix.Coupling(i[0], i[1])
+	return m.keep(couplingKind, "", func(m *InductanceMatrix) float64 { return m.matrix.Coupling(i[0], i[1]) }, first, second)
 }
 
 // Leakage is the inductance seen at a winding with the others named shorted, and the rest open.
@@ -68,19 +86,19 @@ func (m *InductanceMatrix) Leakage(seen string, shorted ...string) Henry {
 		refuse(magcirc.WrongUse, "Leakage", "names no shorted winding", `write Leakage("P", "S")`)
 	}
 	i := m.indices(append([]string{seen}, shorted...))
-	return must(m.matrix.Leakage(i[0], i[1:]))
+	return m.keep(leakageKind, "H", func(m *InductanceMatrix) float64 { return must(m.matrix.Leakage(i[0], i[1:])) }, append([]string{seen}, shorted...)...)
 }
 
 // PerPhase is the inductance per phase of windings with balanced currents, whose sum is zero.
 func (m *InductanceMatrix) PerPhase(windings ...string) Henry {
 	i := m.indices(windings)
-	return must(m.matrix.PerPhase(i...))
+	return m.keep(perPhaseKind, "H", func(m *InductanceMatrix) float64 { return must(m.matrix.PerPhase(i...)) }, windings...)
 }
 
 // InPhase is the inductance per winding of windings with equal currents.
 func (m *InductanceMatrix) InPhase(windings ...string) Henry {
 	i := m.indices(windings)
-	return must(m.matrix.InPhase(i...))
+	return m.keep(inPhaseKind, "H", func(m *InductanceMatrix) float64 { return must(m.matrix.InPhase(i...)) }, windings...)
 }
 
 // EquivalentCircuit is the circuit of two windings: series, magnetising and ratio, and the T form.

@@ -60,7 +60,7 @@ func (m *model) part(c *MagneticCircuit, at place) reluct.Element {
 		named(elem, err)
 		m.note(notes...)
 		e.Kind, e.Law, e.Length = reluct.Leg, law, part.length
-		e.Area, e.Air = part.section.Metal(), p.enclosed(part)
+		e.Area, e.Air = part.section.Metal()*(1+part.stretch), p.enclosed(part)
 	case GapPart:
 		s := part.spec(elem, p.beside(elem, at.part), p.legLength(at.part))
 		r, err := gap.Permeance(s)

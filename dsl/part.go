@@ -31,8 +31,9 @@ type LegPart struct {
 	material *MagneticMaterial
 	length   float64
 	section  Section
-	along    spread // of the length
-	across   spread // of the section's area
+	along    spread  // of the length
+	across   spread  // of the section's area
+	stretch  float64 // share by which its area differs in a draw
 }
 
 // Leg is a length of magnetic material with a section: a leg, a limb, a post, the whole of a ring.

@@ -30,11 +30,10 @@ type OperatingPoint struct {
 //	op := T1.Solve(Currents{"main": 3.2*amp})
 //	op.FluxDensity("centre")
 func (c *MagneticCircuit) Solve(drives ...Drive) *OperatingPoint {
-	m := c.model()
-	d := c.driveOf(drives)
-	s := m.solve(d)
-	op := &OperatingPoint{circuit: *c, drive: d, model: m, solution: s, shown: s.Rounded()}
-	c.keepAssumptions(op.Notes())
+	op := c.solved(c.driveOf(drives))
+	if !c.drawn {
+		c.keepAssumptions(op.Notes())
+	}
 	return op
 }
 
@@ -48,15 +47,20 @@ func (op *OperatingPoint) given() {
 // Flux is the flux of a path along its arrow.
 func (op *OperatingPoint) Flux(path string) Weber {
 	op.given()
-	return op.shown.Flux[op.circuit.pathOf(path)]
+	i := op.circuit.pathOf(path)
+	return op.keep(fluxKind, "Wb", op.shown.Flux[i], func(op *OperatingPoint) float64 { return op.shown.Flux[i] }, path)
 }
 
 // FluxDensity is the flux density in a leg, or the largest magnitude among the legs of a path (its gaps never), with
 // the sign of the path's arrow. Which leg it was stands in the table that the operating point shows.
-func (op *OperatingPoint) FluxDensity(path string) Tesla { return op.leg(path).B }
+func (op *OperatingPoint) FluxDensity(path string) Tesla {
+	return op.keep(densityKind, "T", op.leg(path).B, func(op *OperatingPoint) float64 { return op.leg(path).B }, path)
+}
 
 // FieldStrength is the field strength in a leg, or in that leg of a path whose flux density is largest.
-func (op *OperatingPoint) FieldStrength(path string) AmperePerMetre { return op.leg(path).H }
+func (op *OperatingPoint) FieldStrength(path string) AmperePerMetre {
+	return op.keep(fieldKind, "A/m", op.leg(path).H, func(op *OperatingPoint) float64 { return op.leg(path).H }, path)
+}
 
 // leg gives the state of a part, or of the leg of a path with the largest flux density.
 func (op *OperatingPoint) leg(name string) reluct.ElementState {
@@ -96,6 +100,11 @@ func (op *OperatingPoint) fullest(path int) int {
 // MMF is the drop of magnetic potential over a part, or over all parts of a path, along the arrow.
 func (op *OperatingPoint) MMF(part string) Ampere {
 	op.given()
+	ask := func(op *OperatingPoint) float64 { return op.mmf(part) }
+	return op.keep(mmfKind, "A", ask(op), ask, part)
+}
+
+func (op *OperatingPoint) mmf(part string) float64 {
 	at := op.circuit.pathOrPart(part)
 	if at.part >= 0 {
 		return op.state(at).MMF
@@ -119,20 +128,30 @@ func (op *OperatingPoint) drop(path int) float64 {
 // Current is the current of a winding into its dot: as given, or as its linkage needs it.
 func (op *OperatingPoint) Current(winding string) Ampere {
 	op.given()
-	return op.shown.Current[op.circuit.windingOf(winding)]
+	w := op.circuit.windingOf(winding)
+	return op.keep(currentKind, "A", op.shown.Current[w], func(op *OperatingPoint) float64 { return op.shown.Current[w] }, winding)
 }
 
 // Linkage is the flux linkage of a winding: the flux through each turn, summed.
 func (op *OperatingPoint) Linkage(winding string) Weber {
 	op.given()
-	return op.shown.Linkage[op.circuit.windingOf(winding)]
+	w := op.circuit.windingOf(winding)
+	return op.keep(linkageKind, "Wb", op.shown.Linkage[w], func(op *OperatingPoint) float64 { return op.shown.Linkage[w] }, winding)
 }
 
 // Energy is the magnetic energy of the circuit.
-func (op *OperatingPoint) Energy() Joule { op.given(); return op.solution.Energy() }
+func (op *OperatingPoint) Energy() Joule {
+	op.given()
+	ask := func(op *OperatingPoint) float64 { return op.solution.Energy() }
+	return op.keep(energyKind, "J", ask(op), ask)
+}
 
 // Coenergy is the magnetic co-energy of the circuit.
-func (op *OperatingPoint) Coenergy() Joule { op.given(); return op.solution.Coenergy() }
+func (op *OperatingPoint) Coenergy() Joule {
+	op.given()
+	ask := func(op *OperatingPoint) float64 { return op.solution.Coenergy() }
+	return op.keep(coenergyKind, "J", ask(op), ask)
+}
 
 // Inductance is the incremental inductance of a winding, the others open: what a small change of its current meets.
 func (op *OperatingPoint) Inductance(winding string) Henry { return op.Matrix().Self(winding) }
@@ -174,7 +193,7 @@ func (op *OperatingPoint) Matrix() *InductanceMatrix {
 	op.wantWindings()
 	if op.incremental == nil {
 		l := must(op.solution.Incremental())
-		op.incremental = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)).Rounded(), "incremental inductances")
+		op.incremental = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)).Rounded(), "incremental inductances", incrementalKind)
 	}
 	return op.incremental
 }
@@ -184,7 +203,7 @@ func (op *OperatingPoint) SecantMatrix() *InductanceMatrix {
 	op.wantWindings()
 	if op.secant == nil {
 		l := must(op.solution.Secant())
-		op.secant = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)).Rounded(), "secant inductances")
+		op.secant = op.matrix(must(induct.NewMatrix(op.circuit.windings(), l)).Rounded(), "secant inductances", secantKind)
 	}
 	return op.secant
 }
@@ -196,8 +215,11 @@ func (op *OperatingPoint) wantWindings() {
 	}
 }
 
-func (op *OperatingPoint) matrix(m *induct.Matrix, what string) *InductanceMatrix {
-	return &InductanceMatrix{matrix: m, owner: op.circuit.name, caption: what + ": " + op.conditions(), remarks: op.Notes()}
+func (op *OperatingPoint) matrix(m *induct.Matrix, what string, kind answerKind) *InductanceMatrix {
+	if op.circuit.drawn {
+		return &InductanceMatrix{matrix: m, owner: op.circuit.name, kind: kind}
+	}
+	return &InductanceMatrix{matrix: m, owner: op.circuit.name, caption: what + ": " + op.conditions(), remarks: op.Notes(), origin: op, kind: kind}
 }
 
 // Notes lists what a reader must know about this result.

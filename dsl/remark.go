@@ -48,6 +48,9 @@ func Assumptions() { review.PlaceAssumptions() }
 
 // keepAssumptions enters what a result of the circuit assumes or extrapolates into the notebook's list.
 func (c *MagneticCircuit) keepAssumptions(notes []magcirc.Note) {
+	if c.drawn {
+		return
+	}
 	for _, n := range notes {
 		if n.Kind != magcirc.Remark {
 			review.Assume(n.String())
