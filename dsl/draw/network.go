@@ -123,6 +123,9 @@ func (n Network) solved() bool {
 	return false
 }
 
+// tie is the relative difference below which two fluxes count as equal: of equal ones the first is named.
+const tie = 1e-6
+
 // Text says in words what the drawing shows.
 func (n Network) Text() string {
 	var b strings.Builder
@@ -132,10 +135,10 @@ func (n Network) Text() string {
 		fmt.Fprintf(&b, "\n%s (%s -> %s)", p.Name, n.Nodes[p.From], n.Nodes[p.To])
 		if p.Flux != "" {
 			fmt.Fprintf(&b, ", flux %s", p.Flux)
-			if most < 0 || math.Abs(p.Share) > math.Abs(n.Paths[most].Share) {
+			if most < 0 || math.Abs(p.Share) > math.Abs(n.Paths[most].Share)*(1+tie) {
 				most = k
 			}
-			if least < 0 || math.Abs(p.Share) < math.Abs(n.Paths[least].Share) {
+			if least < 0 || math.Abs(p.Share) < math.Abs(n.Paths[least].Share)*(1-tie) {
 				least = k
 			}
 		}
