@@ -27,8 +27,7 @@ var update = flag.Bool("update", false, "rewrite the outputs of probes from what
 //
 // A line that ends in //! with a regular expression stops its cell there: the message must name the line and match.
 // Of every other probe the output comes from compiled Go: of the part "go", a file without its package clause, or
-// else of the cells themselves, declarations taken out of main. Probes whose shown form is the notebook's own have
-// their output written by hand.
+// else of the cells themselves, declarations taken out of main.
 func TestLanguageProbes(t *testing.T) {
 	files, err := filepath.Glob("testdata/cells/probes/*.txtar")
 	if err != nil || len(files) == 0 {
@@ -204,8 +203,7 @@ func show(v any) { fmt.Println("=>", v) }
 var _, _ = fmt.Print, show
 `
 
-// goText is the Go that prints what the probe should; ok is false for probes that stop or are shown in the notebook's
-// own way.
+// goText is the Go that prints what the probe should; ok is false for probes that stop.
 func (p *languageProbe) goText() (text string, ok bool) {
 	if text, ok := p.part("go"); ok {
 		return strings.Replace(text, "func main()", "func Main()", 1), true
@@ -220,9 +218,6 @@ func (p *languageProbe) goText() (text string, ok bool) {
 			decls += d
 			body += s
 		}
-	}
-	if out, ok := p.part("out"); ok && (body == "" || strings.Contains(out, "=> ") && strings.Contains(out, ", ")) {
-		return "", false
 	}
 	return decls + "func Main() {\n" + body + "}\n", true
 }
