@@ -51,7 +51,8 @@ var layers = map[string][]string{
 	"kernel/page/mathml": {},
 	"kernel/page/clean":  {},
 	"kernel/page":        {"kernel", "kernel/notebook", "kernel/page/mathml", "kernel/page/clean"},
-	"kernel/batch":       {"kernel", "kernel/notebook", "kernel/page"},
+	"kernel/diff":        {"kernel/notebook"},
+	"kernel/batch":       {"kernel", "kernel/notebook", "kernel/diff", "kernel/page"},
 }
 
 // owners says which one package imports a third-party module, so that it can be replaced. gonum is free in magcirc.

@@ -12,7 +12,6 @@ import (
 
 	"github.com/alecthomas/kong"
 
-	"ampturn/dsl/review"
 	"ampturn/dsl/session"
 	"ampturn/dsl/si"
 	"ampturn/dsl/symbols"
@@ -21,72 +20,8 @@ import (
 	"ampturn/kernel/cell"
 	"ampturn/kernel/cell/unit"
 	"ampturn/kernel/page"
-	"ampturn/kernel/spec"
 	"ampturn/magcirc/phys"
 )
-
-type commands struct {
-	Run     runCommand     `cmd:"" help:"Run notebooks from the top in a fresh kernel; write the run notebook and a self-contained HTML page."`
-	Install installCommand `cmd:"" help:"Register the kernel with Jupyter."`
-	Remove  removeCommand  `cmd:"" help:"Take the kernel's entry out of Jupyter again."`
-	Kernel  kernelCommand  `cmd:"" help:"Serve a Jupyter front end; Jupyter calls this."`
-}
-
-type runCommand struct {
-	Notebooks []string `arg:"" name:"notebook" help:"An .ipynb (nbformat 4) or a .go text in percent cells."`
-	Out       string   `help:"Folder for the run notebook and the page." default:"out" placeholder:"DIR"`
-}
-
-type place struct {
-	User   bool   `help:"For this user only (the default)." xor:"place"`
-	Prefix string `help:"Below DIR, as DIR/share/jupyter/kernels/ampturn." placeholder:"DIR" xor:"place"`
-}
-
-type (
-	installCommand struct{ place }
-	removeCommand  struct{ place }
-	kernelCommand  struct {
-		Connection string `arg:"" help:"The connection file that Jupyter wrote."`
-	}
-)
-
-func (c *runCommand) Run(ctx context.Context, code *int) error {
-	*code = batch.Run(ctx, c.Notebooks, batch.Settings{
-		Out: c.Out, Engine: newEngine, Tally: tally, Provenance: provenance(), Report: os.Stdout, Trouble: os.Stderr,
-		Finish: func(out kernel.Sink) { session.Attach(pass(out)); session.Finish() },
-	})
-	return nil
-}
-
-func (c *installCommand) Run() error {
-	binary, err := os.Executable()
-	if err != nil {
-		return err
-	}
-	dir, err := spec.Install(spec.Entry{Binary: binary}, spec.Place{Prefix: c.Prefix})
-	if err != nil {
-		return err
-	}
-	fmt.Printf("the kernel ampturn is registered in %s\n", dir)
-	return nil
-}
-
-func (c *removeCommand) Run() error {
-	dir, err := spec.Remove("ampturn", spec.Place{Prefix: c.Prefix})
-	if err != nil {
-		return err
-	}
-	fmt.Printf("%s is removed\n", dir)
-	return nil
-}
-
-func (c *kernelCommand) Run(ctx context.Context) error {
-	engine, err := newEngine()
-	if err != nil {
-		return err
-	}
-	return kernel.Serve(context.WithoutCancel(ctx), c.Connection, engine, nil)
-}
 
 // joined is the cell engine whose cells send what the vocabulary shows to their own sink.
 type joined struct{ *cell.Session }
@@ -157,11 +92,6 @@ func provenance() []page.Row {
 		}
 	}
 	return rows
-}
-
-func tally() (string, bool) {
-	s := review.Count()
-	return s.String(), s.Fail > 0
 }
 
 func main() {

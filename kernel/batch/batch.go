@@ -1,5 +1,6 @@
 // Package batch runs notebooks without a front end: each from its top in a fresh engine, leaving the run notebook and
-// a page to read, and telling how it went in a line per cell.
+// a page to read, and telling how it went in a line per cell ([Run]). It compares a fresh run with what is saved ([Verify])
+// and two revisions with each other ([Compare]).
 package batch
 
 import (
@@ -12,6 +13,7 @@ import (
 	"strings"
 
 	"ampturn/kernel"
+	"ampturn/kernel/diff"
 	"ampturn/kernel/notebook"
 	"ampturn/kernel/page"
 )
@@ -22,18 +24,33 @@ const (
 	Failed = 1 // a cell failed or was interrupted, or a file could not be read or written
 	Use    = 2 // wrong use
 	Missed = 3 // a limit was missed
+	Differ = 4 // a fresh run differs from what is saved, or two revisions differ
 )
 
 // Settings of a run.
 type Settings struct {
 	Out        string                            // folder of what is written
+	Files      string                            // folder of the data files; "": that of the notebook
 	Engine     func() (kernel.Engine, error)     // a fresh engine
+	Folder     func(dir string)                  // tells the engine's cells the folder of the data files
 	Finish     func(kernel.Sink)                 // called after the last cell: fills what waited for the end
 	Tally      func() (line string, missed bool) // the notebook's judgement in words, and whether it misses a limit
+	Verdicts   func() []notebook.Verdict         // the notebook's judgement row by row
+	Sources    func() []Source                   // data files and seeds that the run has used
 	Provenance []page.Row                        // what the page's foot says of program and libraries
+	Tolerance  diff.Tolerance                    // how far apart two runs may be
+	Format     diff.Format                       // writes a number with its unit
 	Report     io.Writer                         // a line per cell
 	Trouble    io.Writer                         // what went wrong
 }
+
+// Source is something beside the cells that the numbers rest on.
+type Source struct {
+	Kind, Name, Value string
+}
+
+// dataFile is the Kind of a file, with the SHA-256 of its bytes as Value.
+const dataFile = "data file"
 
 // Run runs notebooks one after another and gives the exit code: the failure of one outranks a limit missed by another.
 func Run(ctx context.Context, paths []string, s Settings) int {
@@ -74,25 +91,60 @@ func stem(path string) string {
 	return strings.TrimSuffix(filepath.Base(path), filepath.Ext(path))
 }
 
+// document is a notebook to run, with its name in messages and the folder of its data files.
+type document struct {
+	nb        *notebook.Notebook
+	path, dir string
+}
+
+// open reads a notebook.
+func (s Settings) open(path string) (document, error) {
+	nb, err := notebook.Read(path)
+	if err != nil {
+		return document{}, err
+	}
+	dir := s.Files
+	if dir == "" {
+		dir = filepath.Dir(path)
+	}
+	return document{nb, path, dir}, nil
+}
+
 // one runs one notebook. The exit code counts even where the error is nil.
 func one(ctx context.Context, path string, s Settings) (int, error) {
-	nb, err := notebook.Read(path)
+	d, err := s.open(path)
 	if err != nil {
 		return Failed, err
 	}
+	return s.run(ctx, d)
+}
+
+// run runs a notebook and leaves what it gives.
+func (s Settings) run(ctx context.Context, d document) (int, error) {
 	if err := os.MkdirAll(s.Out, 0o755); err != nil {
 		return Failed, fmt.Errorf("%s: the folder cannot be made: %w", s.Out, errors.Unwrap(err))
 	}
-	engine, err := s.Engine()
+	fmt.Fprintf(s.Report, "%s\n", d.path)
+	report, err := s.execute(ctx, d, s.tell, s.Finish)
 	if err != nil {
 		return Failed, err
 	}
-	fmt.Fprintf(s.Report, "%s\n", path)
-	report := notebook.Run(ctx, nb, engine, notebook.Options{Cell: func(c notebook.CellReport) { s.tell(c) }, Finish: s.Finish})
-	if err := s.write(nb, path); err != nil {
+	if err := s.write(d); err != nil {
 		return Failed, err
 	}
-	return s.close(report, path)
+	return s.close(report, d.path)
+}
+
+// execute runs all cells in a fresh engine.
+func (s Settings) execute(ctx context.Context, d document, tell func(notebook.CellReport), finish func(kernel.Sink)) (*notebook.Report, error) {
+	if s.Folder != nil {
+		s.Folder(d.dir)
+	}
+	engine, err := s.Engine()
+	if err != nil {
+		return nil, err
+	}
+	return notebook.Run(ctx, d.nb, engine, notebook.Options{Cell: tell, Finish: finish}), nil
 }
 
 // tell writes the line of a cell, and what stopped it.
@@ -113,19 +165,15 @@ func (s Settings) tell(c notebook.CellReport) {
 }
 
 // write leaves the run notebook and the page. The page is made before anything is written.
-func (s Settings) write(nb *notebook.Notebook, path string) error {
-	rows := append([]page.Row{
-		{Name: "notebook", Value: filepath.Base(path)},
-		{Name: "hash of the cells (SHA-256)", Value: nb.Hash()},
-	}, s.Provenance...)
-	html, err := page.Render(nb, page.Options{Provenance: rows, Files: os.DirFS(filepath.Dir(path))})
+func (s Settings) write(d document) error {
+	html, err := s.page(d)
 	if err != nil {
-		return fmt.Errorf("%s: the page cannot be made: %w", path, err)
+		return fmt.Errorf("%s: the page cannot be made: %w", d.path, err)
 	}
-	if err := nb.Write(filepath.Join(s.Out, stem(path)+".ipynb")); err != nil {
+	if err := d.nb.Write(filepath.Join(s.Out, stem(d.path)+".ipynb")); err != nil {
 		return err
 	}
-	return notebook.Save(filepath.Join(s.Out, stem(path)+".html"), html)
+	return notebook.Save(filepath.Join(s.Out, stem(d.path)+".html"), html)
 }
 
 // close tells how the notebook ended and gives the exit code.

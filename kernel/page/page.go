@@ -34,6 +34,10 @@ type Options struct {
 	Lang       string // language of the text; empty: "en"
 	Provenance []Row  // where the numbers come from: program, libraries, hashes, seeds
 	Files      fs.FS  // folder of the notebook, for pictures that its text names; nil: none
+
+	// Rests gives more rows for the foot: what is known only when all texts and the pictures that they name have been
+	// read. It is called once, after that. Nil: none.
+	Rests func() []Row
 }
 
 //go:embed style.css
@@ -96,11 +100,15 @@ func hex(r rune) string {
 
 // foot writes where the numbers come from.
 func (d *document) foot(b *strings.Builder) {
-	if len(d.opt.Provenance) == 0 {
+	rows := d.opt.Provenance
+	if d.opt.Rests != nil {
+		rows = append(rows[:len(rows):len(rows)], d.opt.Rests()...)
+	}
+	if len(rows) == 0 {
 		return
 	}
 	b.WriteString("<footer class=\"at-foot\">\n<h2 class=\"at-foot-head\">Provenance</h2>\n<dl>\n")
-	for _, r := range d.opt.Provenance {
+	for _, r := range rows {
 		b.WriteString("<div><dt>" + html.EscapeString(r.Name) + "</dt><dd>" + html.EscapeString(r.Value) + "</dd></div>\n")
 	}
 	b.WriteString("</dl>\n</footer>\n")
