@@ -131,7 +131,7 @@ func (s *Session) point(m mark, value any) int {
 	}
 	text := m.src.text[m.off:m.end]
 	for _, n := range quoted.FindAllString(e.Error(), -1) {
-		if i := strings.Index(text, n); i >= 0 && wordAt(text, i, len(n)) && strings.Index(text[i+1:], n) < 0 {
+		if i := strings.Index(text, n); i >= 0 && wordAt(text, i, len(n)) && !strings.Contains(text[i+1:], n) {
 			return m.off + i
 		}
 	}

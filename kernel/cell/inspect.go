@@ -106,7 +106,7 @@ func (s *Session) memberDoc(t types.Type, o types.Object) string {
 // card writes what an object is: its declaration and its documentation.
 func (s *Session) card(o types.Object, l *live) (map[string]any, bool) {
 	doc := ""
-	head := o.Name()
+	var head string
 	switch o := o.(type) {
 	case *types.Const:
 		if s.base.objects[o.Name()] == o {

@@ -27,10 +27,9 @@ type live struct {
 
 // function is what a function needs to be made again when something it uses has changed.
 type function struct {
-	src    *source
-	decl   *ast.FuncDecl
-	uses   map[string]bool // names of the notebook in its body and signature
-	direct bool            // it reads or calls nothing of the notebook
+	src  *source
+	decl *ast.FuncDecl
+	uses map[string]bool // names of the notebook in its body and signature
 }
 
 // scope is the set of live names.

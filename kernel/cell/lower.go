@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"go/ast"
 	"go/types"
-	"sort"
 	"strings"
 )
 
@@ -25,11 +24,10 @@ type topStmt struct {
 
 // mark is a place that a running cell can name.
 type mark struct {
-	src  *source
-	off  int
-	end  int
-	fn   string // function around it
-	caps int
+	src *source
+	off int
+	end int
+	fn  string // function around it
 }
 
 // lowering turns one checked cell into text.
@@ -380,9 +378,4 @@ func (l *lowering) fallible(nodes ...ast.Node) bool {
 		})
 	}
 	return found
-}
-
-// sortLives orders lives by name.
-func sortLives(ls []*live) {
-	sort.Slice(ls, func(i, j int) bool { return ls[i].name < ls[j].name })
 }

@@ -54,12 +54,14 @@ func (l *lowering) method(f *fnUnit) string {
 	text := "func " + body + l.funcBody(fr, decl.Type, recv, decl.Body)
 	if !f.own {
 		l.prolog = append(l.prolog, f.meth.impl+" = "+body)
+		l.undo = append(l.undo, f.meth.impl+" = "+f.meth.body)
+		l.s.pendingMethods = append(l.s.pendingMethods, &method{function: f.function, typ: f.recv, name: f.name, body: body, impl: f.meth.impl})
 		return text
 	}
 	impl := body + "__impl"
 	l.globals = append(l.globals, "var "+impl+" func("+joinComma(l.typ(rt), l.params(fr.sig, nil))+")"+l.results(fr.sig.Results(), nil))
 	l.prolog = append(l.prolog, impl+" = "+body)
-	l.s.pendingMethods = append(l.s.pendingMethods, &method{function: f.function, typ: f.recv, name: f.name, impl: impl})
+	l.s.pendingMethods = append(l.s.pendingMethods, &method{function: f.function, typ: f.recv, name: f.name, body: body, impl: impl})
 	params, args := l.forward(fr.sig)
 	call := impl + "(" + joinComma("r__", args) + ")"
 	if fr.sig.Results().Len() > 0 {

@@ -3,11 +3,11 @@ package cell
 import (
 	"fmt"
 	"io"
+	"io/fs"
 	"math/rand"
 	"path"
 	"reflect"
 	"sync/atomic"
-	"testing/fstest"
 
 	"github.com/traefik/yaegi/interp"
 )
@@ -26,7 +26,7 @@ type machine struct {
 func newMachine(v *Vocabulary, helpers map[string]reflect.Value) (*machine, error) {
 	m := &machine{packages: map[string]map[string]reflect.Value{}, imported: map[string]bool{}}
 	m.i = interp.New(interp.Options{
-		Stdin: eof{}, Stdout: io.Discard, Stderr: io.Discard, SourcecodeFilesystem: fstest.MapFS{}, Args: []string{"cell"},
+		Stdin: eof{}, Stdout: io.Discard, Stderr: io.Discard, SourcecodeFilesystem: noFiles{}, Args: []string{"cell"},
 	})
 	use := interp.Exports{"nb/nb": helpers}
 	for key, symbols := range v.Symbols {
@@ -66,6 +66,13 @@ func newMachine(v *Vocabulary, helpers map[string]reflect.Value) (*machine, erro
 	}
 	m.stop = x.Interface().(*int32)
 	return m, nil
+}
+
+// noFiles is a file system without files: lowered text cannot load source from anywhere.
+type noFiles struct{}
+
+func (noFiles) Open(name string) (fs.File, error) {
+	return nil, &fs.PathError{Op: "open", Path: name, Err: fs.ErrNotExist}
 }
 
 // eof is an empty input.

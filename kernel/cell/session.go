@@ -36,6 +36,7 @@ type Session struct {
 	shows          []shown
 	texts          map[int]string
 	cache          map[string]*unitOfWork
+	late           []string // notes on names that the cell took over
 
 	sink      atomic.Pointer[kernel.Sink]
 	now       kernel.Cell // the running cell
@@ -51,20 +52,19 @@ var _ kernel.Engine = (*Session)(nil)
 
 // unitOfWork is a compiled cell.
 type unitOfWork struct {
-	text     string
-	run      func()
-	undo     func()
-	low      *lowered
-	src      *source
-	own      []*live
-	fresh    map[string]bool         // names that the cell declares first
-	uses     map[string]types.Object // what the names in it meant
-	notes    []string
-	checked  *checked
-	queries  map[ast.Expr]string // unit texts it was lowered with
-	before   *scope
-	methods  []*method
-	implsLen int
+	text    string
+	run     func()
+	undo    func()
+	low     *lowered
+	src     *source
+	own     []*live
+	fresh   map[string]bool         // names that the cell declares first
+	uses    map[string]types.Object // what the names in it meant
+	notes   []string
+	checked *checked
+	queries map[ast.Expr]string // unit texts it was lowered with
+	before  *scope
+	methods []*method
 }
 
 // New makes a session with a vocabulary.
@@ -122,12 +122,14 @@ func (s *Session) Run(ctx context.Context, c kernel.Cell, out kernel.Sink) kerne
 		return kernel.Outcome{Interrupted: true, Fault: &kernel.Fault{Name: "Interrupted", Text: fmt.Sprintf("cell %d was interrupted before it began", c.Number)}}
 	}
 	s.mu.Lock()
+	s.late = nil
 	u, bad := s.prepare(c)
+	late := s.late
 	s.mu.Unlock()
 	if len(bad) > 0 {
 		return kernel.Outcome{Fault: s.refusal(bad)}
 	}
-	for _, n := range u.notes {
+	for _, n := range append(late, u.notes...) {
 		s.stream("stderr", n+"\n")
 	}
 	return s.execute(ctx, c, u)
@@ -141,7 +143,7 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 		for _, l := range u.own {
 			l.cell = c.Number
 		}
-		u.before = s.scope
+		u.before, u.methods = s.scope, s.methods
 		u.fresh = map[string]bool{}
 		s.texts[c.Number] = u.text
 		return u, nil
@@ -287,18 +289,24 @@ func (s *Session) checkUnits(r *checked) (*unit.Report, []problem) {
 // commit makes the names of a compiled cell those of the notebook.
 func (s *Session) commit(u *unitOfWork, r *checked, report *unit.Report) {
 	s.scope = r.after
+	u.methods = s.methods
+	again := map[string]bool{}
+	for _, m := range s.pendingMethods {
+		again[m.typ+"."+m.name] = true
+	}
+	methods := s.pendingMethods
 	for _, m := range s.methods {
-		if t := s.scope.names[m.typ]; t != nil && u.before.names[m.typ] == t {
-			u.methods = append(u.methods, m)
+		if t := s.scope.names[m.typ]; t != nil && u.before.names[m.typ] == t && !again[m.typ+"."+m.name] {
+			methods = append(methods, m)
 		}
 	}
-	s.methods = append(u.methods, s.pendingMethods...)
+	s.methods = methods
 	if report != nil {
 		report.Commit()
 	}
 	for _, l := range r.gone {
 		if l.captured {
-			s.stream("stderr", fmt.Sprintf("note: %s has another type now; functions made before cell %d keep the earlier one\n", l.name, r.src.cell))
+			s.late = append(s.late, fmt.Sprintf("note: %s has another type now; functions made before cell %d keep the earlier one", l.name, r.src.cell))
 		}
 	}
 }
@@ -387,7 +395,7 @@ func (s *Session) rollback(u *unitOfWork) {
 	if u.undo != nil && s.stuck == nil {
 		u.undo()
 	}
-	s.scope = u.before
+	s.scope, s.methods = u.before, u.methods
 	delete(s.cache, u.src.text)
 }
 

@@ -81,21 +81,26 @@ var vocabulary = sync.OnceValues(func() (*cell.Vocabulary, error) {
 	}
 	for _, line := range strings.Fields(strings.ReplaceAll(string(out), " ", "\x00")) {
 		path, file, _ := strings.Cut(line, "\x00")
-		f, err := os.Open(file)
-		if err != nil {
+		if v.Export[path], err = exportData(file); err != nil {
 			return nil, err
 		}
-		r, err := gcexportdata.NewReader(bufio.NewReader(f))
-		if err != nil {
-			return nil, err
-		}
-		if v.Export[path], err = io.ReadAll(r); err != nil {
-			return nil, err
-		}
-		f.Close()
 	}
 	return v, nil
 })
+
+// exportData takes the export data out of a compiled package.
+func exportData(file string) ([]byte, error) {
+	f, err := os.Open(file)
+	if err != nil {
+		return nil, err
+	}
+	defer f.Close()
+	r, err := gcexportdata.NewReader(bufio.NewReader(f)) //lint:ignore SA1019 the go command hands out archives
+	if err != nil {
+		return nil, err
+	}
+	return io.ReadAll(r)
+}
 
 // notebook runs cells and gathers what they show.
 type notebook struct {
