@@ -186,7 +186,7 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 	u.uses = s.meanings(p, r)
 	s.commit(u, r, report)
 	s.cache[c.Source] = u
-	if len(s.cache) > 256 {
+	if len(s.cache) > 64 {
 		s.cache = map[string]*unitOfWork{c.Source: u}
 	}
 	return u, nil
