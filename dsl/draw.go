@@ -28,7 +28,7 @@ func (op *OperatingPoint) Draw() *Figure {
 			n.Paths[i].Share = op.shown.Flux[i] / largest
 		}
 		for k := range n.Paths[i].Parts {
-			if n.Paths[i].Parts[k].Kind == draw.Leg {
+			if kind := n.Paths[i].Parts[k].Kind; kind == draw.Leg || kind == draw.Magnet {
 				n.Paths[i].Parts[k].Label = phys.Format(op.state(place{i, k}).B, "T")
 			}
 		}

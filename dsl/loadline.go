@@ -2,6 +2,7 @@ package dsl
 
 import (
 	"fmt"
+	"slices"
 
 	"ampturn/dsl/doc"
 	"ampturn/dsl/session"
@@ -97,9 +98,11 @@ func (l *LoadLine) Plot() *Figure {
 	h, b := l.line.Point()
 	f := newFigure(l.elem+", "+l.caption, axis{Label: "field strength in the magnet", Unit: "A/m"}, axis{Label: "flux density in the magnet", Unit: "T"})
 	f.add("recoil line", []float64{l.line.Coercivity, 0}, []float64{0, l.line.Remanence})
-	x, y := l.line.H, l.line.B
+	x, y := slices.Clone(l.line.H), slices.Clone(l.line.B)
+	slices.Reverse(x) // from the working point outwards: the name of a line stands at its end
+	slices.Reverse(y)
 	if l.fromOrigin {
-		x, y = append([]float64{0}, x...), append([]float64{0}, y...)
+		x, y = append(x, 0), append(y, 0)
 	}
 	f.add("load line", x, y)
 	f.add("working point", []float64{h, h, 0}, []float64{0, b, b})

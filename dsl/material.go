@@ -114,14 +114,18 @@ func (m *MagneticMaterial) MIMEBundle() map[string]any {
 		return nil
 	}
 	t := doc.Table{Caption: "material " + m.Name(), Columns: []doc.Column{{Name: "temperature"}, {Name: "law"}, {Name: "data to", Unit: "T"}}}
+	var remarks []magcirc.Note
 	for _, at := range m.below.Temperatures() {
-		law := m.law(at)
+		law, notes, err := m.below.Law(at)
+		check(err)
+		remarks = mergeNotes(remarks, notes)
 		row := []doc.Cell{doc.Text(phys.Format(at, "degC")), doc.Text(law.Describe()), doc.Text("formula")}
 		if _, b := law.Range(); !math.IsInf(b, 1) {
 			row[2] = doc.Num(b)
 		}
 		t.Rows = append(t.Rows, row)
 	}
+	t.Notes = noteLines(remarks)
 	return t.Bundle()
 }
 

@@ -21,22 +21,21 @@ func Material(name string) *MagneticMaterial {
 // Materials lists the shelf: what it carries, at which temperatures, by which law, and where each row comes from. Names
 // that hold one of the words given are listed alone: Materials("ferrite").
 func Materials(words ...string) *TableView {
-	t := doc.Table{Caption: "materials of the shelf; " + stdlib.Representative, Columns: []doc.Column{{Name: "name"}, {Name: "class"},
-		{Name: "temperatures"}, {Name: "law at the first"}, {Name: "permeability within"}, {Name: "source"}, {Name: "note"}}}
+	t := doc.Table{Caption: "materials of the shelf: " + stdlib.Representative, Columns: []doc.Column{{Name: "name"}, {Name: "class"},
+		{Name: "degC"}, {Name: "law, at the first of them"}, {Name: "source"}}}
 	for _, r := range stdlib.Materials() {
 		if !holds(r.Name+" "+r.Class, words) {
 			continue
 		}
-		spread := ""
-		if r.Tolerance > 0 {
-			spread = "+-" + phys.Format(r.Tolerance, "percent")
-		}
 		var at []string
 		for _, temperature := range r.Temperatures {
-			at = append(at, phys.Format(temperature, "degC"))
+			at = append(at, phys.Format(temperature, ""))
 		}
-		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.Name), doc.Text(r.Class), doc.Text(strings.Join(at, ", ")), doc.Text(r.Law),
-			doc.Text(spread), doc.Text(r.Source), doc.Text(r.Note)})
+		law := r.Law
+		if r.Tolerance > 0 {
+			law += " +-" + phys.Format(r.Tolerance, "percent")
+		}
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.Name), doc.Text(r.Class), doc.Text(strings.Join(at, ", ")), doc.Text(law), doc.Text(r.Source)})
 	}
 	return &TableView{table: t}
 }
