@@ -115,6 +115,9 @@ func judged(what string, value float64, unit string, bound Bound, conditions []C
 	if strings.TrimSpace(what) == "" {
 		refuse(magcirc.BadValue, "limit", "has no name", `say what is judged: Limit("flux density", ...)`)
 	}
+	if sampling.Load() > 0 {
+		refuse(magcirc.WrongUse, "limit \""+what+"\"", "is judged within a sampled function", "give the number back and judge the band: Limit(..., b.Min(), ..., b)")
+	}
 	bound.given()
 	text, typed := bare(unit)
 	text = plain(text)
@@ -136,10 +139,31 @@ func judged(what string, value float64, unit string, bound Bound, conditions []C
 		}
 		v.Conditions = append(v.Conditions, c.conditions())
 	}
+	trace(v, conditions)
 	return v
 }
 
-// Uncertain states the uncertainty of the value, relative. A PASS with less margin than that says so.
+// trace adds what is known of a value that an operating point or a band gave: the uncertainty that the methods behind it
+// bring, and which single input would turn the verdict.
+func trace(v *review.Verdict, conditions []Condition) {
+	for _, c := range conditions {
+		if b, ok := c.(*Band); ok {
+			if b.from != nil {
+				v.Uncertainty = b.from.uncertainty()
+			}
+			return
+		}
+	}
+	a := conditionAnswer(v.Value, conditions)
+	if a == nil {
+		return
+	}
+	v.Uncertainty = a.uncertainty()
+	v.Flip = func() string { return a.flip(v.Rule.Margin) }
+}
+
+// Uncertain states the uncertainty of the value, relative, in place of the one that the methods behind it bring. A PASS with
+// less margin than that says so.
 func (v *Verdict) Uncertain(share Ratio) *Verdict {
 	v.given()
 	wantRange("limit \""+v.kept.What+"\"", "uncertainty", share, 0, 10, "")

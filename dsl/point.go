@@ -33,6 +33,7 @@ func (c *MagneticCircuit) Solve(drives ...Drive) *OperatingPoint {
 	op := c.solved(c.driveOf(drives))
 	if !c.drawn {
 		c.keepAssumptions(op.Notes())
+		op.keepEnergy()
 	}
 	return op
 }

@@ -42,24 +42,10 @@ func SVG(text string) *Figure {
 // Clear clears what the cell has shown so far.
 func Clear() { session.Clear(false) }
 
-// Assumptions marks the place of the list of what results of the notebook assume or extrapolate; the finished run fills
-// it.
+// Assumptions marks the place of the list of what results of the notebook rest on: defaults that nobody chose, each with
+// the line that would change it, extrapolations, formulas outside their range, overrides; and of the cautions that the
+// parts in it call for. The finished run fills it.
 func Assumptions() { review.PlaceAssumptions() }
-
-// keepAssumptions enters what a result of the circuit assumes or extrapolates into the notebook's list.
-func (c *MagneticCircuit) keepAssumptions(notes []magcirc.Note) {
-	if c.drawn {
-		return
-	}
-	for _, n := range notes {
-		if n.Kind != magcirc.Remark {
-			review.Assume(n.String())
-		}
-	}
-	if !c.asked {
-		review.Assume(c.name + ": computed at 25 degC, nobody chose a temperature")
-	}
-}
 
 // Fragment is a piece of HTML of one's own.
 type Fragment struct {

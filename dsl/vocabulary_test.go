@@ -269,7 +269,7 @@ func TestAssumptionsAreListed(t *testing.T) {
 		cell("1", 2, Assumptions)
 	})
 	list := out[len(out)-1].Data["text/plain"].(string)
-	contains(t, list, "T1: computed at 25 degC, nobody chose a temperature")
+	contains(t, list, "T1 is computed at 25 degC")
 	contains(t, list, "110 degC is 10 K beyond its data")
 }
 

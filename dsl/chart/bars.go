@@ -17,6 +17,8 @@ type Bars struct {
 	Axis        Axis
 	Names       []string
 	Values      []float64
+	From        []float64 // where each bar begins; nil: all at zero
+	Middle      float64   // with From: the value that all bars belong to, drawn as a line
 	Bands       []Band
 }
 
@@ -27,13 +29,23 @@ func (b *Bars) Check() error {
 		return fmt.Errorf("a bar chart needs at least one bar")
 	case len(b.Names) != len(b.Values):
 		return fmt.Errorf("%d names for %d values; the lists must be equally long", len(b.Names), len(b.Values))
+	case b.From != nil && len(b.From) != len(b.Values):
+		return fmt.Errorf("%d beginnings for %d values; the lists must be equally long", len(b.From), len(b.Values))
 	}
 	for i, v := range b.Values {
-		if bad(v) {
+		if bad(v) || bad(b.from(i)) {
 			return fmt.Errorf("bar %q: %g cannot be drawn", b.Names[i], v)
 		}
 	}
 	return nil
+}
+
+// from is where a bar begins.
+func (b *Bars) from(i int) float64 {
+	if b.From == nil {
+		return 0
+	}
+	return b.From[i]
 }
 
 const (
@@ -70,19 +82,23 @@ func (b *Bars) SVG() string {
 	for i, n := range b.Names {
 		y := top + barPitch*float64(i) + (barPitch-barHeight)/2
 		v := b.Values[i] * r.factor
-		x0, x1 := math.Min(x(0), x(v)), math.Max(x(0), x(v))
+		begin := x(b.from(i) * r.factor)
+		x0, x1 := math.Min(begin, x(v)), math.Max(begin, x(v))
 		fmt.Fprintf(&cv.body, `<rect x="%s" y="%s" width="%s" height="%d" fill="%s"/>`+"\n", num(x0), num(y), num(math.Max(x1-x0, 1)), barHeight, hex(strokes[0].paint))
 		cv.words(left-8, y+barHeight-4, 0, "end", fontSize, inkHex, n)
 		cv.words(x1+5, y+barHeight-4, 0, "start", fontSize, inkHex, phys.Format(b.Values[i], b.Axis.Unit))
+		if b.From != nil {
+			cv.words(x0-5, y+barHeight-4, 0, "end", fontSize, inkHex, phys.Format(b.From[i], b.Axis.Unit))
+		}
 	}
 	return cv.svg(b.Title, b.describe())
 }
 
 // ruler spans zero, all bars and the finite ends of the limits.
 func (b *Bars) ruler() ruler {
-	low, high := 0.0, 0.0
-	for _, v := range b.Values {
-		low, high = math.Min(low, v), math.Max(high, v)
+	low, high := b.zero(), b.zero()
+	for i, v := range b.Values {
+		low, high = math.Min(low, math.Min(v, b.from(i))), math.Max(high, math.Max(v, b.from(i)))
 	}
 	for _, l := range b.Bands {
 		for _, e := range []float64{l.Low, l.High} {
@@ -91,14 +107,25 @@ func (b *Bars) ruler() ruler {
 			}
 		}
 	}
-	return span(low, high, b.Axis.Unit, true)
+	if b.From != nil { // room for the value at the lower end of each bar
+		low, high = low-0.25*(high-low), high+0.05*(high-low)
+	}
+	return span(low, high, b.Axis.Unit, b.From == nil)
+}
+
+// zero is where the line is that all bars begin at or belong to.
+func (b *Bars) zero() float64 {
+	if b.From == nil {
+		return 0
+	}
+	return b.Middle
 }
 
 // scale draws the axis below the bars.
 func (b *Bars) scale(cv *canvas, r ruler, x func(float64) float64, top float64) {
 	y := top + barPitch*float64(len(b.Names)) + 4
 	fmt.Fprintf(&cv.body, `<path d="M%s %sL%s %sM%s %sL%s %s" fill="none" stroke="%s" stroke-width="1"/>`+"\n",
-		num(x(r.low)), num(y), num(x(r.high)), num(y), num(x(0)), num(top), num(x(0)), num(y), inkHex)
+		num(x(r.low)), num(y), num(x(r.high)), num(y), num(x(b.zero()*r.factor)), num(top), num(x(b.zero()*r.factor)), num(y), inkHex)
 	for _, t := range (ticks{}).Ticks(r.low, r.high) {
 		fmt.Fprintf(&cv.body, `<path d="M%s %sv4" stroke="%s" stroke-width="1"/>`+"\n", num(x(t.Value)), num(y), inkHex)
 		cv.words(x(t.Value), y+16, 0, "middle", fontSize, inkHex, t.Label)
@@ -145,7 +172,11 @@ func (b *Bars) Text() string {
 		return s.String() + "no picture: " + err.Error()
 	}
 	for i, n := range b.Names {
-		fmt.Fprintf(&s, "  %s: %s\n", n, phys.Format(b.Values[i], b.Axis.Unit))
+		words := phys.Format(b.Values[i], b.Axis.Unit)
+		if b.From != nil {
+			words = between(b.From[i], b.Values[i], b.Axis.Unit)
+		}
+		fmt.Fprintf(&s, "  %s: %s\n", n, words)
 	}
 	for _, l := range b.Bands {
 		fmt.Fprintf(&s, "  limit: %s\n", l.Text)

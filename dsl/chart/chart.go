@@ -41,6 +41,9 @@ type Chart struct {
 	Bands       []Band
 	Wide        bool // 640 x 240 instead of 640 x 400, for waveforms under each other
 	Zero        bool // the vertical axis starts at zero
+
+	filled bool   // the area below the first line is filled
+	twin   string // words of its own for its text
 }
 
 // Check tells what is wrong with the chart's data, or nil.
@@ -86,6 +89,11 @@ func (c *Chart) SVG() string {
 	dress(p)
 	p.X.Label.Text, p.Y.Label.Text = f.x.title(c.X), f.y.title(c.Y)
 	p.X.Min, p.X.Max, p.Y.Min, p.Y.Max = f.x.low, f.x.high, f.y.low, f.y.high
+	if c.filled {
+		for _, piece := range pieces(c.Series[0], f) {
+			p.Add(area{piece})
+		}
+	}
 	for _, b := range c.Bands {
 		p.Add(f.band(b))
 	}

@@ -29,6 +29,9 @@ func (c *Chart) describe() string {
 
 // Text is the chart in words: what is drawn, ranges, extremes, and where a line crosses a limit.
 func (c *Chart) Text() string {
+	if c.twin != "" && c.Check() == nil {
+		return c.words()
+	}
 	var b strings.Builder
 	if c.Title != "" {
 		b.WriteString(c.Title + "\n")

@@ -41,6 +41,15 @@ type Table struct {
 	Columns []Column
 	Rows    [][]Cell
 	Notes   []string // lines below the table
+	Folds   []Fold   // rows that unfold, below others
+}
+
+// Fold is what belongs to a row and is shown on demand: in HTML it unfolds below that row, in text it stands below
+// the table.
+type Fold struct {
+	After   int // index of the row
+	Summary string
+	Table   Table // without a caption
 }
 
 // Bundle is the table as text and HTML.
@@ -82,6 +91,12 @@ func (t Table) Text() string {
 		b.WriteString(t.Caption + "\n")
 	}
 	g.write(&b)
+	for _, f := range t.Folds {
+		b.WriteString(f.Summary + "\n")
+		for _, line := range strings.Split(f.Table.Text(), "\n") {
+			b.WriteString("  " + line + "\n")
+		}
+	}
 	for _, n := range t.Notes {
 		b.WriteString("note: " + n + "\n")
 	}
@@ -173,12 +188,22 @@ func (t Table) HTML() string {
 			b.WriteString(c.open(right[k]) + escape(texts[k][i]) + "</td>")
 		}
 		b.WriteString("</tr>\n")
+		for _, f := range t.Folds {
+			if f.After == i {
+				b.WriteString(f.html(len(t.Columns)))
+			}
+		}
 	}
 	b.WriteString("</tbody>\n</table>")
 	for _, n := range t.Notes {
 		b.WriteString("\n" + `<p class="note">` + escape(n) + "</p>")
 	}
 	return b.String()
+}
+
+// html is the fold as a row of its own.
+func (f Fold) html(columns int) string {
+	return `<tr class="fold"><td colspan="` + strconv.Itoa(columns) + `"><details><summary>` + escape(f.Summary) + "</summary>\n" + f.Table.HTML() + "</details></td></tr>\n"
 }
 
 // open is the opening tag of the cell.

@@ -16,8 +16,10 @@ type entries struct {
 	waives []*waiver
 	places int // tables of verdicts placed by this cell
 
-	assumed []string // what its results assume
-	lists   int      // lists of assumptions placed by this cell
+	assumed   []Assumption // what its results rest on
+	cautions  []string
+	insulated []string // parts with windings that it computed
+	lists     int      // lists of assumptions placed by this cell
 }
 
 // check is a verdict on a requirement, which may have been stated in another cell.
@@ -57,7 +59,7 @@ func Clear() { ledger.cells, ledger.corner, ledger.changed, ledger.finished = ni
 // drop forgets what a cell has stated; its place among the cells stays.
 func drop(key string) {
 	for _, e := range ledger.cells {
-		if e.key == key && (len(e.items)+len(e.checks)+len(e.waives)+len(e.assumed)+e.places+e.lists > 0) {
+		if e.key == key && (len(e.items)+len(e.checks)+len(e.waives)+len(e.assumed)+len(e.cautions)+len(e.insulated)+e.places+e.lists > 0) {
 			*e = entries{key: key}
 			ledger.changed = true
 		}
@@ -143,7 +145,9 @@ func settle() {
 			case *Requirement:
 				item.waived = waivers[item.What]
 			case *OpenPoint:
-				item.waived = waivers[item.What]
+				if !isInsulation(item.What) {
+					item.waived = waivers[item.What]
+				}
 			}
 		}
 	}
@@ -154,7 +158,7 @@ type Summary struct {
 	Pass, Fail, Open, Waived int
 }
 
-// Count gives the summary.
+// Count gives the summary: names are counted, each with its worst condition.
 func Count() Summary {
 	var s Summary
 	for _, r := range rows() {

@@ -217,13 +217,13 @@ func TestPlaceIsFilled(t *testing.T) {
 
 func TestAssumptions(t *testing.T) {
 	session.Reset()
-	cell("a", false, func() { review.Assume("25 degC"); review.Assume("25 degC") })
-	cell("b", false, func() { review.Assume("25 degC"); review.Assume("law extrapolated") })
-	if got := review.Assumed(); len(got) != 2 || got[1] != "law extrapolated" {
-		t.Errorf("assumed %q", got)
+	cell("a", false, func() { review.Assume("25 degC", review.Assumed, "At(100*degC)"); review.Assume("25 degC", review.Assumed, "") })
+	cell("b", false, func() { review.Assume("25 degC", review.Assumed, ""); review.Assume("law extrapolated", review.Extrapolated, "") })
+	if got := review.Assumptions(); len(got) != 2 || got[0].Change != "At(100*degC)" || got[1].Text != "law extrapolated" {
+		t.Errorf("assumed %v", got)
 	}
 	cell("b", false, func() {})
-	if got := review.Assumed(); len(got) != 1 {
-		t.Errorf("after the rerun %q", got)
+	if got := review.Assumptions(); len(got) != 1 {
+		t.Errorf("after the rerun %v", got)
 	}
 }

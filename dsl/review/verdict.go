@@ -32,9 +32,11 @@ type Verdict struct {
 	Rule        Rule
 	Conditions  []string // what the value holds for
 	Corner      string
-	Uncertainty float64 // of the value, relative; 0: not stated
+	Uncertainty float64       // of the value, relative; 0: not known
+	Flip        func() string // says which single input turns it, moved how far; nil: not known
 
 	waived *waiver
+	flips  *string
 }
 
 // Check refuses a value that is no number.
@@ -94,7 +96,10 @@ func (v *Verdict) Where() string {
 func (v *Verdict) Line() string {
 	unit := known(v.unit())
 	s := fmt.Sprintf("limit %q: %s, %s, %s", v.What, phys.Format(v.Value, unit), v.Rule, v.marginWords())
-	if v.Uncertainty > 0 {
+	if v.Thin() {
+		s = fmt.Sprintf("limit %q: %s is within %s of the bound %s, less than its uncertainty (%s)", v.What, phys.Format(v.Value, unit),
+			phys.FormatDigits(v.Rule.Margin(v.Value), difference(unit), 3), v.Rule, phys.FormatDigits(v.Uncertainty*math.Abs(v.Value), difference(unit), 3))
+	} else if v.Uncertainty > 0 {
 		s += ", uncertainty " + phys.Format(v.Uncertainty*math.Abs(v.Value), difference(unit))
 	}
 	s += ": " + v.StatusWords()
@@ -102,6 +107,18 @@ func (v *Verdict) Line() string {
 		s += " [" + w + "]"
 	}
 	return s
+}
+
+// flipWords says which single input turns the verdict; it is computed once.
+func (v *Verdict) flipWords() string {
+	if v.Flip == nil {
+		return ""
+	}
+	if v.flips == nil {
+		words := v.Flip()
+		v.flips = &words
+	}
+	return *v.flips
 }
 
 // unit is that of the value, or of its rule where the value's is not known.
