@@ -123,7 +123,7 @@ func TestRequirementIsOpenUntilChecked(t *testing.T) {
 		t.Errorf("checked: %v, %v", r.Status(), review.Count())
 	}
 	cell("c", false, check(11e-6))
-	if r.Status() != review.Fail || review.Count() != (review.Summary{Pass: 1, Fail: 1}) {
+	if r.Status() != review.Fail || review.Count() != (review.Summary{Fail: 1}) { // one name, its worst check
 		t.Errorf("one check missed: %v, %v", r.Status(), review.Count())
 	}
 	cell("b", false, func() {})

@@ -24,6 +24,7 @@ func init() {
 		"AtLeastWithUnits":         reflect.ValueOf(dsl.AtLeastWithUnits),
 		"AtMost":                   reflect.ValueOf(dsl.AtMost),
 		"AtMostWithUnits":          reflect.ValueOf(dsl.AtMostWithUnits),
+		"Band":                     reflect.ValueOf((*dsl.Band)(nil)),
 		"Bars":                     reflect.ValueOf(dsl.Bars),
 		"BarsWithUnits":            reflect.ValueOf(dsl.BarsWithUnits),
 		"Basis":                    reflect.ValueOf(dsl.Basis),
@@ -101,6 +102,8 @@ func init() {
 		"Materials":                reflect.ValueOf(dsl.Materials),
 		"Metre":                    reflect.ValueOf((*dsl.Metre)(nil)),
 		"MetrePerSecond":           reflect.ValueOf((*dsl.MetrePerSecond)(nil)),
+		"MonteCarlo":               reflect.ValueOf(dsl.MonteCarlo),
+		"MonteCarloWithUnits":      reflect.ValueOf(dsl.MonteCarloWithUnits),
 		"NewMaterial":              reflect.ValueOf(dsl.NewMaterial),
 		"Newton":                   reflect.ValueOf((*dsl.Newton)(nil)),
 		"NoFringe":                 reflect.ValueOf(dsl.NoFringe),
@@ -129,6 +132,7 @@ func init() {
 		"Requirement":              reflect.ValueOf((*dsl.Requirement)(nil)),
 		"Revision":                 reflect.ValueOf(dsl.Revision),
 		"SVG":                      reflect.ValueOf(dsl.SVG),
+		"Sample":                   reflect.ValueOf((*dsl.Sample)(nil)),
 		"Second":                   reflect.ValueOf((*dsl.Second)(nil)),
 		"Section":                  reflect.ValueOf((*dsl.Section)(nil)),
 		"Series":                   reflect.ValueOf(dsl.Series),
@@ -169,6 +173,8 @@ func init() {
 		"WindowRule":               reflect.ValueOf((*dsl.WindowRule)(nil)),
 		"Within":                   reflect.ValueOf(dsl.Within),
 		"WithinWithUnits":          reflect.ValueOf(dsl.WithinWithUnits),
+		"WorstCase":                reflect.ValueOf(dsl.WorstCase),
+		"WorstCaseWithUnits":       reflect.ValueOf(dsl.WorstCaseWithUnits),
 		"Yoke":                     reflect.ValueOf(dsl.Yoke),
 	}
 	Aliases["ampturn/magcirc.Error"] = "Fault"
