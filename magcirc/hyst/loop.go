@@ -3,6 +3,7 @@ package hyst
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"ampturn/magcirc"
 	"ampturn/magcirc/phys"
@@ -34,10 +35,11 @@ func NewLoop(name string, h, b []float64) (*Loop, error) {
 	if err := checkLoop(l.elem(), h, b); err != nil {
 		return nil, err
 	}
-	n := len(h)
-	if h[n-1] == h[0] && b[n-1] == b[0] { // the first point stands again at the end
-		n--
+	h, b, err := l.close(h, b)
+	if err != nil {
+		return nil, err
 	}
+	n := len(h)
 	top, low := 0, 0
 	for i := range n {
 		if h[i] > h[top] {
@@ -57,8 +59,45 @@ func NewLoop(name string, h, b []float64) (*Loop, error) {
 			Msg:  fmt.Sprintf("it runs clockwise (area %s): no core gives energy", phys.Format(area, "J/m3")),
 			Hint: "are H and B exchanged, or is one of them inverted?"}
 	}
-	l.gap()
 	return l, nil
+}
+
+// close drops a last point that repeats the first, after taking out the drift that lies between them.
+func (l *Loop) close(h, b []float64) (_, _ []float64, err error) {
+	n := len(h) - 1
+	lo, hi := slices.Min(h), slices.Max(h)
+	if math.Abs(h[n]-h[0]) > 2e-3*(hi-lo) {
+		return h, b, nil
+	}
+	drift, height := b[n]-b[0], slices.Max(b)-slices.Min(b)
+	switch {
+	case math.Abs(drift) > 0.1*height:
+		return nil, nil, &magcirc.Error{Code: magcirc.BadValue, Elem: l.elem(), Quantity: "B", Unit: "T", Got: b[n], Limit: b[0],
+			Msg: fmt.Sprintf("not closed: B is %s at the first point and %s at the last, %s of its height apart",
+				phys.Format(b[0], "T"), phys.Format(b[n], "T"), percent(math.Abs(drift)/height)), Hint: "give one steady cycle"}
+	case math.Abs(drift) > 0.002*height:
+		l.Notes = append(l.Notes, magcirc.Note{Kind: magcirc.Remark, Elem: l.elem(), Text: fmt.Sprintf(
+			"B drifts by %s over the cycle (%s of its height): taken out evenly", phys.Format(drift, "T"), percent(math.Abs(drift)/height))})
+	}
+	straight := make([]float64, n)
+	for i := range straight {
+		straight[i] = b[i] - drift*float64(i)/float64(n)
+	}
+	return h[:n], straight, nil
+}
+
+// Centred gives the loop moved so that its tips lie opposite each other about zero, with a note of the offsets: what the
+// zero of an integrator or of an amplifier added.
+func (l *Loop) Centred() *Loop {
+	dh, db := (l.H[0]+l.H[l.turn])/2, (l.B[0]+l.B[l.turn])/2
+	c := *l
+	c.H, c.B = make([]float64, len(l.H)), make([]float64, len(l.B))
+	for i := range l.H {
+		c.H[i], c.B[i] = l.H[i]-dh, l.B[i]-db
+	}
+	c.Notes = append(slices.Clone(l.Notes), magcirc.Note{Kind: magcirc.Remark, Elem: l.elem(), Text: fmt.Sprintf(
+		"moved by %s and %s to lie about zero", phys.Format(-dh, "A/m"), phys.Format(-db, "T"))})
+	return &c
 }
 
 func (l *Loop) elem() string {
@@ -98,24 +137,6 @@ func checkLoop(elem string, h, b []float64) error {
 		return e
 	}
 	return nil
-}
-
-// gap notes a measured loop whose ends do not meet: the drift of an integrator.
-func (l *Loop) gap() {
-	n := len(l.H)
-	widest, at := 0.0, 0
-	lo, hi := l.span()
-	for i := range n {
-		j := (i + 1) % n
-		dh, db := (l.H[j]-l.H[i])/(l.H[0]-l.H[l.turn]), (l.B[j]-l.B[i])/(hi-lo)
-		if math.Abs(dh) < 0.02 && math.Abs(db) > widest { // B jumps while H stands
-			widest, at = math.Abs(db), i
-		}
-	}
-	if widest > 0.02 {
-		l.Notes = append(l.Notes, magcirc.Note{Kind: magcirc.Remark, Elem: l.elem(), Text: fmt.Sprintf(
-			"B jumps by %s percent of its height at H %s: does the integrator drift?", phys.FormatDigits(100*widest, "", 2), phys.Format(l.H[at], "A/m"))})
-	}
 }
 
 func (l *Loop) span() (lo, hi float64) {
