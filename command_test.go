@@ -4,6 +4,7 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"regexp"
 	"strings"
 	"testing"
 	"time"
@@ -20,7 +21,8 @@ func TestCommand(t *testing.T) {
 	testscript.Run(t, testscript.Params{
 		Dir: "testdata/script",
 		Cmds: map[string]func(ts *testscript.TestScript, neg bool, args []string){
-			"exits": exits,
+			"exits":  exits,
+			"change": change,
 		},
 	})
 }
@@ -49,6 +51,19 @@ func ampturn(t *testing.T) string {
 		t.Fatal(err)
 	}
 	return bin
+}
+
+// change writes a copy of a file in which the first match of a pattern is another text: change in out pattern text. It
+// fails where nothing matches.
+func change(ts *testscript.TestScript, _ bool, args []string) {
+	old := ts.ReadFile(args[0])
+	at := regexp.MustCompile(args[2]).FindStringIndex(old)
+	if at == nil {
+		ts.Fatalf("%s: nothing matches %s", args[0], args[2])
+	}
+	if err := os.WriteFile(ts.MkAbs(args[1]), []byte(old[:at[0]]+args[3]+old[at[1]:]), 0o600); err != nil {
+		ts.Fatalf("%v", err)
+	}
 }
 
 // TestInterrupt stops a notebook in the middle of an endless cell: it says so, ends with 1, and the file that was

@@ -37,9 +37,9 @@ func (t Tolerance) output(a, b *notebook.Output) compared {
 	case a.Kind == notebook.Stream && a.Name != b.Name:
 		return compared{changes: []Change{{Place: "stream", Old: a.Name, New: b.Name}}}
 	case a.Kind == notebook.Stream:
-		return t.texts(a.Text, b.Text, false)
+		return t.texts(a.Text, b.Text, nil)
 	case a.Kind == notebook.Fault:
-		return t.texts(a.Fault+": "+a.Text, b.Fault+": "+b.Text, false)
+		return t.texts(a.Fault+": "+a.Text, b.Fault+": "+b.Text, nil)
 	}
 	return t.bundles(a, b)
 }
@@ -49,9 +49,9 @@ func (t Tolerance) bundles(a, b *notebook.Output) compared {
 	if old, now := strings.Join(slices.Sorted(maps.Keys(a.Data)), ", "), strings.Join(slices.Sorted(maps.Keys(b.Data)), ", "); old != now {
 		return compared{changes: []Change{{Place: "forms", Old: quoted(old), New: quoted(now)}}}
 	}
-	page := t.form(a, b, "text/html", t.texts, false)
 	behind := t.behind(a, b)
-	plain := t.form(a, b, "text/plain", t.texts, page.full || behind.full)
+	page := t.form(a, b, "text/html", t.texts, behind.fulls)
+	plain := t.form(a, b, "text/plain", t.texts, append(behind.fulls, page.fulls...))
 	all := compared{numbers: page.numbers + behind.numbers + plain.numbers}
 	for _, c := range []compared{plain, page, behind} { // the same change is said once, in the form that reads best
 		if len(all.changes) == 0 {
@@ -63,7 +63,7 @@ func (t Tolerance) bundles(a, b *notebook.Output) compared {
 		case "text/html", "text/plain":
 			continue
 		case "image/svg+xml":
-			c := t.form(a, b, kind, t.drawings, false)
+			c := t.form(a, b, kind, t.drawings, nil)
 			all.numbers += c.numbers
 			if len(all.changes) == 0 {
 				all.changes = c.changes
@@ -76,13 +76,13 @@ func (t Tolerance) bundles(a, b *notebook.Output) compared {
 }
 
 // form compares one form of two bundles, if it is there.
-func (t Tolerance) form(a, b *notebook.Output, kind string, by func(x, y string, rounded bool) compared, rounded bool) compared {
+func (t Tolerance) form(a, b *notebook.Output, kind string, by func(x, y string, fulls []float64) compared, fulls []float64) compared {
 	x, ok := a.Data[kind].(string)
 	y, ok2 := b.Data[kind].(string)
 	if !ok || !ok2 {
 		return compared{}
 	}
-	return by(x, y, rounded)
+	return by(x, y, fulls)
 }
 
 func exact(kind string, a, b any) []Change {
@@ -99,8 +99,8 @@ const step = 0.021
 
 // drawings compares two SVG drawings: the same elements, attributes and words in the same order, coordinates to their
 // last place.
-func (t Tolerance) drawings(a, b string, _ bool) compared {
-	old, now := pieces(a), pieces(b)
+func (t Tolerance) drawings(a, b string, _ []float64) compared {
+	old, now := pieces(a, false), pieces(b, false)
 	if !alike(old, now) {
 		return compared{changes: []Change{{Place: "picture", Old: fmt.Sprintf("%d elements", strings.Count(a, "<")), New: fmt.Sprintf("%d, or other ones", strings.Count(b, "<"))}}}
 	}
@@ -127,7 +127,6 @@ func (t Tolerance) behind(a, b *notebook.Output) compared {
 	}
 	var c compared
 	t.values(&c, "", plainValue(x), plainValue(y))
-	c.full = c.numbers > 0 && len(c.changes) == 0
 	return c
 }
 
@@ -152,9 +151,11 @@ func (t Tolerance) values(c *compared, place string, a, b any) {
 		c.numbers++
 		if y, ok := b.(float64); !ok || !t.same(x, y, fullNoise) {
 			c.changes = append(c.changes, Change{Place: place + " in full", Old: fmt.Sprint(a), New: fmt.Sprint(b)})
+			return
 		}
+		c.fulls = append(c.fulls, x)
 	case string:
-		if y, ok := b.(string); !ok || len(t.texts(x, y, false).changes) > 0 {
+		if y, ok := b.(string); !ok || len(t.texts(x, y, nil).changes) > 0 {
 			c.changes = append(c.changes, Change{Place: place, Old: quoted(x), New: quoted(fmt.Sprint(b))})
 		}
 	}

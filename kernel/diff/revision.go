@@ -104,7 +104,7 @@ func (t Tolerance) verdicts(old, now []notebook.Verdict, format Format) []Moved 
 	for _, k := range newKeys {
 		v, was := after[k], before[k]
 		if _, ok := before[k]; !ok {
-			moved = append(moved, Moved{Name: title(v), New: outcome(v, format), Note: "new; " + v.Where})
+			moved = append(moved, Moved{Name: title(v), New: outcome(v, format), Note: v.Where})
 			continue
 		}
 		if m, ok := t.verdict(was, v, format); ok {
@@ -113,7 +113,7 @@ func (t Tolerance) verdicts(old, now []notebook.Verdict, format Format) []Moved 
 	}
 	for _, k := range oldKeys {
 		if _, ok := after[k]; !ok {
-			moved = append(moved, Moved{Name: title(before[k]), Old: outcome(before[k], format), Note: "gone"})
+			moved = append(moved, Moved{Name: title(before[k]), Old: outcome(before[k], format)})
 		}
 	}
 	return moved
@@ -121,8 +121,8 @@ func (t Tolerance) verdicts(old, now []notebook.Verdict, format Format) []Moved 
 
 // verdict compares one verdict.
 func (t Tolerance) verdict(was, v notebook.Verdict, format Format) (Moved, bool) {
-	limit := len(t.texts(was.Limit, v.Limit, false).changes) > 0
-	where := len(t.texts(was.Where, v.Where, false).changes) > 0
+	limit := len(t.texts(was.Limit, v.Limit, nil).changes) > 0
+	where := len(t.texts(was.Where, v.Where, nil).changes) > 0
 	value := !t.numbers(was.Value, v.Value)
 	if was.Status == v.Status && !limit && !where && !value {
 		return Moved{}, false
@@ -131,7 +131,7 @@ func (t Tolerance) verdict(was, v notebook.Verdict, format Format) (Moved, bool)
 	var notes []string
 	if limit {
 		notes = append(notes, "limit "+was.Limit+" -> "+v.Limit)
-	} else if v.Limit != "" {
+	} else if v.Limit != "" && v.Value != nil {
 		notes = append(notes, v.Limit)
 	}
 	if was.Margin != nil && v.Margin != nil && !t.numbers(was.Margin, v.Margin) {

@@ -11,8 +11,8 @@ import (
 )
 
 // Tolerance says how far apart two numbers may be and still count as the same. Rounding to the printed digits cannot
-// hide a difference: where the full value stands beside a printed number, the full values are compared, and only then
-// may the printed ones differ by one in their last place.
+// hide a difference: where full values stand beside printed numbers, they are compared. A printed number may differ by one
+// in its last place only where the full value lies so exactly between the two that either may be printed.
 type Tolerance struct {
 	Relative float64 // share of the larger magnitude
 }
@@ -60,9 +60,9 @@ type piece struct {
 
 var numeral = regexp.MustCompile(`(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?`)
 
-// pieces splits a text. A digit that belongs to a name, as in L1, is part of the words; so is a minus sign between two
-// names.
-func pieces(s string) []piece {
+// pieces splits a text. With names, a digit that belongs to a name, as in L1, is part of the words; so is a minus sign
+// between two names. Without, as in the paths of a drawing, every number counts.
+func pieces(s string, names bool) []piece {
 	var list []piece
 	words := 0 // start of the words under way
 	for at := 0; at < len(s); {
@@ -71,14 +71,14 @@ func pieces(s string) []piece {
 			break
 		}
 		start, end := at+m[0], at+m[1]
-		if start > 0 && isName(s[start-1]) {
+		if names && start > 0 && isName(s[start-1]) {
 			for end < len(s) && isName(s[end]) {
 				end++
 			}
 			at = end
 			continue
 		}
-		if start > 0 && (s[start-1] == '-' || s[start-1] == '+') && (start == 1 || !isName(s[start-2]) && s[start-2] != ')') {
+		if start > 0 && (s[start-1] == '-' || s[start-1] == '+') && (!names || start == 1 || !isName(s[start-2]) && s[start-2] != ')') {
 			start--
 		}
 		value, err := strconv.ParseFloat(s[start:end], 64)
@@ -102,19 +102,17 @@ func isName(c byte) bool {
 type compared struct {
 	changes []Change
 	numbers int
-	full    bool // full values stand in the text, and all of them are the same
+	fulls   []float64 // values in full, which are the same in both
 }
 
-// texts compares two texts. rounded tells that the full values behind the printed ones are known to be the same.
-func (t Tolerance) texts(a, b string, rounded bool) compared {
-	old, now := pieces(a), pieces(b)
+// texts compares two texts. fulls are values in full that are known to be the same and may stand behind printed ones.
+func (t Tolerance) texts(a, b string, fulls []float64) compared {
+	old, now := pieces(a, true), pieces(b, true)
 	var c compared
 	if !alike(old, now) {
 		c.changes = []Change{firstWords(a, b)}
 		return c
 	}
-	held := false // the full value of the next printed number is the same
-	fulls, kept := 0, 0
 	for i, p := range old {
 		if !p.number {
 			continue
@@ -123,21 +121,34 @@ func (t Tolerance) texts(a, b string, rounded bool) compared {
 		q := now[i]
 		switch {
 		case p.full:
-			fulls++
-			held = t.same(p.value, q.value, fullNoise) || i+2 < len(old) && old[i+2].number && noise(old[i+2], now[i+2])
-			if held {
-				kept++
+			rest := i+2 < len(old) && old[i+2].number && noise(old[i+2], now[i+2])
+			if t.same(p.value, q.value, fullNoise) || rest {
+				c.fulls = append(c.fulls, p.value)
 				continue
 			}
-		case t.same(p.value, q.value, printedNoise), (rounded || held) && lastPlace(p.text, q.text):
-			held = false
+		case t.same(p.value, q.value, printedNoise), t.rounded(p.text, q.text, append(fulls, c.fulls...)):
 			continue
 		}
-		held = false
 		c.changes = append(c.changes, Change{Place: context(old, i), Old: p.text, New: q.text})
 	}
-	c.full = fulls > 0 && fulls == kept
 	return c
+}
+
+// rounded tells whether two printed numbers are neighbours between which one of the full values lies so exactly that
+// rounding may give either.
+func (t Tolerance) rounded(a, b string, fulls []float64) bool {
+	if !lastPlace(a, b) {
+		return false
+	}
+	x, _ := strconv.ParseFloat(a, 64) // both have been parsed before
+	y, _ := strconv.ParseFloat(b, 64)
+	for _, full := range fulls {
+		decade := math.Log10(math.Abs(full / ((x + y) / 2))) // the prefix of the unit is a power of ten
+		if math.Abs(decade-math.Round(decade)) <= t.Relative {
+			return true
+		}
+	}
+	return false
 }
 
 func noise(a, b piece) bool {
@@ -183,7 +194,7 @@ func exponent(s string) string {
 	return e
 }
 
-var tags = regexp.MustCompile(`<[^>]*>`)
+var tags = regexp.MustCompile(`<[^>]*(?:>|$)`)
 
 // context gives the last words before a number.
 func context(list []piece, i int) string {
@@ -201,10 +212,22 @@ func firstWords(a, b string) Change {
 	for i := 0; i < len(old) || i < len(now); i++ {
 		x, y := lineAt(old, i), lineAt(now, i)
 		if strings.Join(strings.Fields(x), " ") != strings.Join(strings.Fields(y), " ") {
+			x, y = fromDifference(x, y)
 			return Change{Place: fmt.Sprintf("line %d", i+1), Old: quoted(x), New: quoted(y)}
 		}
 	}
 	return Change{Place: "blanks", Old: fmt.Sprintf("%d signs", len(a)), New: fmt.Sprintf("%d signs", len(b))}
+}
+
+// fromDifference cuts two lines to a few words before the place where they part.
+func fromDifference(a, b string) (string, string) {
+	x, y := strings.Fields(a), strings.Fields(b)
+	i := 0
+	for i < len(x) && i < len(y) && x[i] == y[i] {
+		i++
+	}
+	i = max(0, i-3)
+	return strings.Join(x[min(i, len(x)):], " "), strings.Join(y[min(i, len(y)):], " ")
 }
 
 func lineAt(lines []string, i int) string {

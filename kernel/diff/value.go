@@ -34,14 +34,14 @@ func (t Tolerance) shown(p pair, number, before map[*notebook.Cell]int, format F
 		is[v.name] = true
 		o, ok := was[v.name]
 		if !ok {
-			moved = append(moved, Moved{Name: cell + ": " + v.name, New: v.print(format), Note: "new"})
+			moved = append(moved, Moved{Name: cell + ": " + v.name, New: v.print(format)})
 			continue
 		}
 		moved = append(moved, t.value(cell, o, v, format)...)
 	}
 	for _, o := range old {
 		if !is[o.name] {
-			moved = append(moved, Moved{Name: cell + ": " + o.name, Old: o.print(format), Note: "gone"})
+			moved = append(moved, Moved{Name: cell + ": " + o.name, Old: o.print(format)})
 		}
 	}
 	return moved
@@ -63,11 +63,11 @@ func (t Tolerance) value(cell string, o, v shownValue, format Format) []Moved {
 
 // lines compares texts line by line.
 func (t Tolerance) lines(name, a, b string) []Moved {
-	if len(t.texts(a, b, false).changes) == 0 {
+	if len(t.texts(a, b, nil).changes) == 0 {
 		return nil
 	}
 	var moved []Moved
-	out, in := changed(strings.Split(a, "\n"), strings.Split(b, "\n"), func(x, y string) bool { return len(t.texts(x, y, false).changes) == 0 })
+	out, in := changed(strings.Split(a, "\n"), strings.Split(b, "\n"), func(x, y string) bool { return len(t.texts(x, y, nil).changes) == 0 })
 	for i := range max(len(out), len(in)) {
 		m := Moved{Name: name}
 		if i < len(out) {
@@ -92,9 +92,9 @@ func (v shownValue) print(format Format) string {
 	return first
 }
 
-// verdictForm finds outputs whose content is in the list of verdicts already: lines of a verdict and tables with
-// status words.
-var verdictForm = regexp.MustCompile(`<p class="verdict|<td class="(?:pass|fail|open|waived)`)
+// verdictForm finds outputs whose content is compared elsewhere: lines of a verdict and tables with status words are in
+// the list of verdicts, revisions and sources in the cells that state them.
+var verdictForm = regexp.MustCompile(`<p class="(?:verdict|revision|cite)|<td class="(?:pass|fail|open|waived)`)
 
 // valuesOf lists what a cell shows, each with a name that is unique in it.
 func valuesOf(c *notebook.Cell) []shownValue {
