@@ -11,7 +11,7 @@ import (
 
 // Moved is one thing that two revisions have differently. Old is empty for what is new, New for what is gone.
 type Moved struct {
-	Name     string // "flux density [overload, hot]", "cell 4: L1.GapFor(...)"
+	Name     string // "height [overload, hot]", "cell 4: L1.GapFor(...)"
 	Old, New string
 	Note     string   // what belongs to it: margins, a limit that changed too
 	Lines    []string // inputs: the lines that changed, "- " and "+ " in front
