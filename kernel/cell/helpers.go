@@ -41,7 +41,9 @@ func (s *Session) helpers() map[string]reflect.Value {
 				s.deep()
 			}
 		}),
-		"Leave": reflect.ValueOf(func() { depth.Add(-1) }),
+		"Depth":    reflect.ValueOf(depth.Load),
+		"SetDepth": reflect.ValueOf(depth.Store),
+		"Leave":    reflect.ValueOf(func() { depth.Add(-1) }),
 		"Pass": reflect.ValueOf(func() {
 			if s.hooks.Pass != nil {
 				s.hooks.Pass()

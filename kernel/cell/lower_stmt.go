@@ -171,10 +171,14 @@ func (l *lowering) prints(x ast.Expr) bool {
 // keepDepth counts the depth of calls as before after a statement in which compiled code may have caught a failure that
 // came from deep within functions of the notebook. It gives what is due after the statement.
 func (l *lowering) keepDepth(s ast.Stmt) func() {
-	if racing || !l.callsBack(s) {
+	if !l.callsBack(s) {
 		return func() {}
 	}
 	d := l.name("d")
+	if racing {
+		l.line("%s := %s()", d, l.nb("Depth"))
+		return func() { l.line("%s(%s)", l.nb("SetDepth"), d) }
+	}
 	l.line("%s := nb__depth", d)
 	return func() { l.line("nb__depth = %s", d) }
 }
