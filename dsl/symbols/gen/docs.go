@@ -5,15 +5,18 @@ import (
 	"encoding/json"
 	"fmt"
 	"go/ast"
-	"go/doc"
 	"go/token"
 	"sort"
 	"strings"
 )
 
 // docs adds the doc comments of the package, of its exported names and of their exported methods and fields. The
-// keys are "PATH", "PATH.Name" and "PATH.Name.Member". A name of the vocabulary without a comment is an error.
+// keys are "PATH", "PATH.Name" and "PATH.Name.Member". A name of the vocabulary without a comment is an error. Packages
+// of Go's library have their own documentation, which is not copied here.
 func (p *loaded) docs(all map[string]string) error {
+	if !p.whole {
+		return nil
+	}
 	d := &docs{p: p, all: all}
 	for _, f := range p.files {
 		if f.Doc != nil {
@@ -45,11 +48,7 @@ type docs struct {
 // add adds the first comment that says anything.
 func (d *docs) add(key string, comments ...*ast.CommentGroup) {
 	for _, c := range comments {
-		text := strings.TrimSpace(c.Text())
-		if !d.p.whole {
-			text = new(doc.Package).Synopsis(text)
-		}
-		if text != "" {
+		if text := strings.TrimSpace(c.Text()); text != "" {
 			d.all[key] = text
 			return
 		}
