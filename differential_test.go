@@ -43,6 +43,7 @@ var calls = randcell.Options{
 		{Name: "Disc", Text: "(@Disc($1*mm).Metal()/mm2)"},
 		{Name: "Annulus", Text: "(@Annulus((10 + $1)*mm, $2*mm).Gross()/mm2)"},
 		{Name: "Stacking", Text: "(@Area($1*mm2).Stacking(0.95).Metal()/mm2)"},
+		{Name: "LawOf", Text: "(@LawOf(func(h @AmperePerMetre) @Tesla { return (1 + $1) * mu0 * h }).FluxDensity(100*$2)/tesla)"},
 		{Name: "Span", Text: "@Span(0, $1, 5)[3]"},
 		{Name: "refused section", Text: "@Rect(-$1*mm, $2*mm).Gross()", Fails: true},
 		{Name: "refused annulus", Text: "@Annulus($1*mm, 20*mm).Gross()", Fails: true},
@@ -50,7 +51,7 @@ var calls = randcell.Options{
 }
 
 // units gives the reference the units that the calls name.
-const referenceUnits = "\nconst mm, um, cm, mm2 = 1e-3, 1e-6, 1e-2, 1e-6\n\nvar _ = dsl.Rect\n"
+const referenceUnits = "\nconst mm, um, cm, mm2, tesla, mu0 = 1e-3, 1e-6, 1e-2, 1e-6, 1, 1.256637061435917295385057353311801153678867759750e-6\n\nvar _ = dsl.Rect\n"
 
 func TestDifferential(t *testing.T) {
 	fixed, fresh := fixedNotebooks, freshNotebooks

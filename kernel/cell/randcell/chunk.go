@@ -57,7 +57,9 @@ func (w *writer) sameVariable() {
 }
 
 func (w *writer) otherVariable() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) && !w.usedHere(e.name) })
+	all := w.redeclarable(func(e *entity) bool {
+		return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) && !w.usedHere(e.name)
+	})
 	if len(all) == 0 {
 		w.newVariable()
 		return

@@ -60,6 +60,7 @@ func (w *writer) genericType() {
 		w.names["Stack"] = e
 		w.touched["Stack"] = true
 		w.count("generic type")
+		w.once = true
 		for _, d := range []string{
 			"type " + nameOpen + "Stack" + nameEnd + draft,
 			"func (s *" + nameOpen + "Stack" + nameEnd + "[T]) Push(x T) int {\n\ts.items = append(s.items, x)\n\treturn len(s.items)\n}\n",
@@ -141,6 +142,7 @@ func (w *writer) wrapped() {
 		return
 	}
 	w.count("function value wrapped")
+	w.once = true // run again, the older value would be the newer one
 	h, old := w.mark(pick(w, all).name), w.fresh("old")
 	w.top(old + " := " + h + "\n" + h + " = func(x int) int { return " + old + "(x) + " + w.value(intType, 0) + " }")
 	w.top("fmt.Println(" + h + "(" + w.value(intType, 1) + "))")

@@ -246,7 +246,9 @@ func (w *writer) copies() {
 
 // roleChange lets the name of a variable stand for a function.
 func (w *writer) roleChange() {
-	all := w.redeclarable(func(e *entity) bool { return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) && !w.usedHere(e.name) })
+	all := w.redeclarable(func(e *entity) bool {
+		return e.role == variable && e.typ.kind <= boolKind && !w.inMethod(e.name) && !w.usedHere(e.name)
+	})
 	if len(all) == 0 {
 		return
 	}

@@ -25,6 +25,7 @@ break or continue
 cell that fails
 cell that is interrupted
 cell that is refused
+cell run again
 cell that runs
 clear
 closure call

@@ -17,7 +17,9 @@ func New(seed uint64, opt Options) *Notebook {
 	var run strings.Builder
 	fmt.Fprintf(&run, "func %sbook() {\n", w.prefix)
 	for range 5 + w.IntN(4) {
-		w.oneCell(&run)
+		if len(w.past) == 0 || !w.chance(15) || !w.oncemore(&run) {
+			w.oneCell(&run)
+		}
 	}
 	run.WriteString("}\n")
 	w.book.Reference = w.global.String() + run.String()
@@ -30,6 +32,7 @@ func (w *writer) oneCell(run *strings.Builder) {
 	w.body.Reset()
 	w.prolog.Reset()
 	w.locals, w.touched, w.changed = nil, map[string]bool{}, map[string]bool{}
+	w.once = false
 	w.times, w.spent, w.budget, w.loop, w.pure, w.sealed, w.callee = 1, 0, 3000, 0, 0, 0, false
 	number := len(w.book.Cells) + 1
 	before := w.snapshot()
@@ -45,6 +48,7 @@ func (w *writer) oneCell(run *strings.Builder) {
 		}
 		w.chunk()
 	}
+	w.once = w.once || len(w.locals) > 0 // closures may hold them
 	w.state()
 	cell := Cell{Source: w.cell.String(), Outcome: outcome}
 	w.book.Cells = append(w.book.Cells, cell)
@@ -57,6 +61,7 @@ func (w *writer) oneCell(run *strings.Builder) {
 	fmt.Fprintf(&w.global, "func %scell%d() {\n%s%s}\n", w.prefix, number, indent(w.prolog.String()), indent(w.body.String()))
 	if outcome == Runs {
 		fmt.Fprintf(run, "\tcell(%d, %scell%d)\n", number, w.prefix, number)
+		w.remember(cell)
 		return
 	}
 	w.names = before

@@ -59,6 +59,8 @@ type writer struct {
 	deps    []map[string]bool
 	touched map[string]bool // names that the cell has used or declared
 	changed map[string]bool // function variables of the reference that the cell sets
+	once    bool            // the cell gives something another meaning: run again it is another cell
+	past    []past
 
 	times  int    // how often the text being written will run
 	spent  int    // statements run by it
@@ -219,6 +221,7 @@ func (w *writer) introduce(e *entity, again bool) {
 	old := w.names[e.name]
 	w.names[e.name] = e
 	w.touched[e.name] = true
+	w.once = w.once || e.role > function || old != nil && e.role == variable
 	if old == nil {
 		return
 	}
@@ -232,6 +235,7 @@ func (w *writer) introduce(e *entity, again bool) {
 		}
 		if d.role == function {
 			w.count("dependent function made again")
+			w.once = true
 			w.setFunction(d)
 		}
 		if d.role == genericFunc {
