@@ -124,12 +124,18 @@ func Permeance(s Spec) (Result, error) {
 		return Result{}, err
 	}
 	r.Method = s.Method
-	r.Permeance = r.Factor * phys.Mu0 * s.Face.Gross() / s.Length
-	r.Reluctance = 1 / r.Permeance
+	r = r.of(s)
 	if s.Face.Stacking > 0 && s.Face.Stacking < 1 {
 		r.note(magcirc.Remark, s.Elem, "the gap takes the gross area of its face; the stacking counts for the metal only")
 	}
 	return r, nil
+}
+
+// of completes the result from its fringing factor.
+func (r Result) of(s Spec) Result {
+	r.Permeance = r.Factor * phys.Mu0 * s.Face.Gross() / s.Length
+	r.Reluctance = 1 / r.Permeance
+	return r
 }
 
 // Compared is the outcome of one method: a result, or the reason why the method refuses.

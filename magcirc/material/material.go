@@ -23,6 +23,8 @@ type Material struct {
 	extrapolate bool
 	tolerance   float64
 	notes       []magcirc.Note
+	factor      float64 // of the permeability of this lot, 0 for 1
+	known       *known  // laws between and beyond the states, shared by lots
 }
 
 // state is the law at one temperature in degC.
@@ -36,7 +38,7 @@ func New(name string, law Law) *Material { return NewAt(name, Room, law) }
 
 // NewAt gives a material whose law belongs to temperature t in degC.
 func NewAt(name string, t float64, law Law) *Material {
-	return &Material{name: name, states: []state{{t, law}}}
+	return &Material{name: name, states: []state{{t, law}}, known: &known{}}
 }
 
 // Name gives the material's name.
@@ -65,7 +67,7 @@ func (m *Material) Also(t float64, law Law) (*Material, error) {
 		return nil, m.refuse(magcirc.DuplicateName, t, t, "it has a law at "+phys.Format(t, "degC")+" already", "")
 	}
 	c := *m
-	c.states = append(slices.Clone(m.states), state{t, law})
+	c.states, c.known = append(slices.Clone(m.states), state{t, law}), &known{}
 	slices.SortFunc(c.states, func(a, b state) int {
 		if a.t < b.t {
 			return -1
@@ -115,7 +117,10 @@ func (m *Material) Law(t float64) (Law, []magcirc.Note, error) {
 	if math.IsNaN(t) {
 		return nil, nil, m.refuse(magcirc.BadValue, t, 0, "no temperature", "")
 	}
-	law, err := m.at(t)
+	law, err := m.known.at(m, t)
+	if err == nil && m.factor != 0 {
+		law, err = NewScaled(law, m.factor)
+	}
 	if err != nil {
 		return nil, nil, err
 	}

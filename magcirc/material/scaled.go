@@ -2,6 +2,7 @@ package material
 
 import (
 	"math"
+	"sync"
 
 	"ampturn/magcirc"
 	"ampturn/magcirc/internal/num"
@@ -82,13 +83,45 @@ func (l scaled) Notes() []magcirc.Note { return Notes(l.law) }
 // Errors: [magcirc.BadValue] for a factor outside 0.01..100.
 func (m *Material) Scaled(k float64) (*Material, error) {
 	c := *m
-	c.states = make([]state, len(m.states))
-	for i, s := range m.states {
-		law, err := NewScaled(s.law, k)
-		if err != nil {
-			return nil, err
-		}
-		c.states[i] = state{s.t, law}
+	if c.factor == 0 {
+		c.factor = 1
+	}
+	c.factor *= k
+	if _, err := NewScaled(m.states[0].law, c.factor); err != nil {
+		return nil, err
 	}
 	return &c, nil
+}
+
+// known keeps the laws that a material has at temperatures without data, for the check of an extrapolated law costs more
+// than its use. A law depends on the states and the temperature only, so who asks first does not matter.
+type known struct {
+	mu  sync.Mutex
+	law map[float64]Law
+}
+
+// keptLaws is for how many temperatures laws are kept.
+const keptLaws = 64
+
+func (k *known) at(m *Material, t float64) (Law, error) {
+	if k == nil {
+		return m.at(t)
+	}
+	k.mu.Lock()
+	law, ok := k.law[t]
+	k.mu.Unlock()
+	if ok {
+		return law, nil
+	}
+	law, err := m.at(t)
+	if err != nil {
+		return nil, err
+	}
+	k.mu.Lock()
+	defer k.mu.Unlock()
+	if k.law == nil || len(k.law) >= keptLaws {
+		k.law = map[float64]Law{}
+	}
+	k.law[t] = law
+	return law, nil
 }

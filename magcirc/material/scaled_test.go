@@ -62,3 +62,33 @@ func TestScaledRefuses(t *testing.T) {
 		t.Error("no law passes")
 	}
 }
+
+// TestScaledMaterial: between temperatures the lot's law is the scaled one too, and the material keeps its own.
+func TestScaledMaterial(t *testing.T) {
+	m, err := material.New("m", must(material.NewFroehlich(2200, 0.49))).Also(100, must(material.NewFroehlich(3000, 0.39)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	lot, err := m.Scaled(0.8)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, temperature := range []float64{25, 60, 110} {
+		own, _, err := m.Law(temperature)
+		if err != nil {
+			t.Fatal(err)
+		}
+		law, _, err := lot.Law(temperature)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, h := range []float64{5, 60, 900} {
+			got, _ := law.At(h)
+			want, _ := must(material.NewScaled(own, 0.8)).At(h)
+			plain, _ := own.At(h)
+			if math.Abs(got-want) > 1e-12 || got >= plain {
+				t.Errorf("%g degC, %g A/m: %g T, want %g, below %g", temperature, h, got, want, plain)
+			}
+		}
+	}
+}
