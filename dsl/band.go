@@ -19,6 +19,7 @@ import (
 type Band struct {
 	elem              string
 	unit              string
+	of                *roster
 	inputs            []input
 	nominal, min, max float64
 	atMin, atMax      []float64

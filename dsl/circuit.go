@@ -7,6 +7,7 @@ import (
 	"ampturn/dsl/doc"
 	"ampturn/dsl/session"
 	"ampturn/magcirc"
+	"ampturn/magcirc/gap"
 	"ampturn/magcirc/phys"
 )
 
@@ -21,6 +22,7 @@ type MagneticCircuit struct {
 	asked       bool     // the temperature was asked for
 	changes     []string // what With changed, in words
 	variant     bool
+	tables      map[place]*gap.Surface
 	drawn       bool // a draw of a sample or a trial: nothing of it enters the document
 }
 

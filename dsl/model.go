@@ -62,8 +62,9 @@ func (m *model) part(c *MagneticCircuit, at place) reluct.Element {
 		e.Kind, e.Law, e.Length = reluct.Leg, law, part.length
 		e.Area, e.Air = part.section.Metal()*(1+part.stretch), p.enclosed(part)
 	case GapPart:
-		s := part.spec(elem, p.beside(elem, at.part), p.legLength(at.part))
-		r, err := gap.Permeance(s)
+		beside := p.beside(elem, at.part)
+		s := part.spec(elem, beside, p.legLength(at.part))
+		r, err := c.permeance(at, s, part, beside)
 		named(elem, err)
 		m.note(r.Notes...)
 		m.gaps[at] = r

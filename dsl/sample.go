@@ -27,6 +27,9 @@ type roster struct {
 	inputs []input
 	index  map[string]int
 	closed bool
+
+	parts    map[*path]*drawnPart
+	circuits []*MagneticCircuit
 }
 
 // Part is the circuit with the values of this sample in place of its tolerances. A part or a material that is used in
@@ -37,15 +40,17 @@ func (s *Sample) Part(circuit *MagneticCircuit) *MagneticCircuit {
 	if circuit.drawn {
 		return circuit
 	}
-	inputs := circuit.spreads()
-	x := make([]float64, len(inputs))
-	for i := range inputs {
-		x[i] = s.take(inputs[i])
+	part := s.of.part(circuit)
+	x := make([]float64, len(part.inputs))
+	for i := range part.inputs {
+		x[i] = s.take(part.inputs[i])
 	}
 	if !s.of.closed {
 		return circuit // nominal: what it assumes enters the document
 	}
-	return circuit.with(inputs, x)
+	next := circuit.with(part.inputs, x)
+	next.tables = part.tables
+	return next
 }
 
 // Of is a number of one's own with a tolerance given as a share of it: a capacitor, a current limit.
@@ -164,6 +169,9 @@ func MonteCarloWithUnits(units []string, count, seed Count, same func(s *Sample)
 	}
 	b, f := survey("MonteCarlo", unitOf(unitAt(units, 2)), same)
 	defer sampling.Add(-1)
+	if count >= 200 { // fewer draws cost less than the tables
+		b.of.tabulate()
+	}
 	d := tol.Draws{Count: int(count), Seed: uint64(seed), Workers: 1}
 	if compiled(same) {
 		d.Workers = runtime.GOMAXPROCS(0)
@@ -192,11 +200,11 @@ func survey(elem, unit string, same func(s *Sample) float64) (*Band, tol.Functio
 			sampling.Add(-1)
 		}
 	}()
-	of := &roster{elem: elem, index: map[string]int{}}
+	of := &roster{elem: elem, index: map[string]int{}, parts: map[*path]*drawnPart{}}
 	value := same(&Sample{of: of})
 	wantFinite(elem, "result at nominal values", value, unit)
 	of.closed = true
-	b := &Band{elem: elem, unit: unit, inputs: of.inputs, nominal: value, from: answerOf(value)}
+	b := &Band{elem: elem, unit: unit, of: of, inputs: of.inputs, nominal: value, from: answerOf(value)}
 	if b.unit == "" && b.from != nil {
 		b.unit = b.from.unit
 	}
