@@ -22,6 +22,7 @@ type Play struct {
 	name string
 	cell []PlayCell // by rising friction
 	ms   float64    // A/m, all cells
+	knee float64    // A/m: beyond it every cell is all but saturated
 }
 
 // NewPlay gives the play law of the cells. Each cell k has a reversible field that H drags along,
@@ -49,6 +50,7 @@ func NewNamedPlay(name string, cells ...PlayCell) (*Play, error) {
 			return nil, err
 		}
 		p.ms += c.Ms
+		p.knee = math.Max(p.knee, 8*c.A+3*c.Kappa)
 	}
 	if p.ms > mostMs {
 		return nil, &magcirc.Error{Code: magcirc.Implausible, Elem: p.elem(), Quantity: "Ms", Unit: "A/m", Got: p.ms, Limit: mostMs,
@@ -219,15 +221,26 @@ func (p *Play) ByMix(s *State, r, b float64) Point {
 	return p.newton(s, r, goal, d, lo, hi, x)
 }
 
-// newton finds the field between lo and hi, hi further along d, at which (1+r) H + M is the goal.
+// newton finds the field between lo and hi, hi further along d, at which (1+r) H + M is the goal. Beyond the knees on
+// both sides the law is all but straight, and Newton's steps would leap from one to the other: the knees cut the
+// bracket first, and a step that leaves half of it for the third time is replaced by halving.
 func (p *Play) newton(s *State, r, goal, d, lo, hi, x float64) Point {
 	const eps = 4 * 0x1p-52
-	last, slow := math.Inf(1), 0
+	for _, knee := range [...]float64{-d * p.knee, d * p.knee} {
+		if (knee-lo)*d > 0 && (hi-knee)*d > 0 {
+			if q := p.ByField(s, knee); ((1+r)*q.H+q.m-goal)*d < 0 {
+				lo, x = knee, knee
+			} else {
+				hi = knee
+			}
+		}
+	}
 	var q Point
+	width, slow := math.Abs(hi-lo), 0
 	for range 200 {
 		q = p.ByField(s, x)
 		f := (1+r)*q.H + q.m - goal
-		if math.Abs(f) <= eps*(math.Abs((1+r)*q.H)+p.ms) {
+		if math.Abs(f) <= eps*(math.Abs((1+r)*q.H)+math.Abs(q.m)) {
 			break
 		}
 		if f*d > 0 {
@@ -235,13 +248,17 @@ func (p *Play) newton(s *State, r, goal, d, lo, hi, x float64) Point {
 		} else {
 			lo = x
 		}
-		if slow++; math.Abs(f) <= 0.5*last {
-			slow = 0
+		slow++
+		if w := math.Abs(hi - lo); w <= 0.5*width {
+			width, slow = w, 0
 		}
-		last = math.Abs(f)
 		next := x - f/(r+q.DB/phys.Mu0)
-		if !((next-lo)*d > 0 && (hi-next)*d > 0) || slow >= 2 {
-			next = lo + (hi-lo)/2
+		inside := (next-lo)*d > 0 && (hi-next)*d > 0
+		if inside && math.Abs(next-x) <= 0x1p-52*math.Abs(x) {
+			break
+		}
+		if !inside || slow >= 3 && math.Abs(next-x) > 1e-3*width {
+			next, slow = lo+(hi-lo)/2, 0
 		}
 		if next == x || next == lo || next == hi {
 			break

@@ -30,6 +30,9 @@ func (l *leg) drop(phi float64) (u, slope float64) {
 
 // metal gives the field strength in A/m at which metal and enclosed air together carry phi, and dH/dB in the metal.
 func (l *leg) metal(phi float64) (h, dh float64) {
+	if m, ok := l.law.(*memory); ok { // not odd in its flux
+		return m.share(phi, l.area, l.air)
+	}
 	target := math.Abs(phi)
 	lo, hi := 0.0, target/l.area
 	b := hi
