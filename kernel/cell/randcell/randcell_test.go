@@ -21,7 +21,7 @@ func TestReferenceBuilds(t *testing.T) {
 		books = append(books, randcell.New(uint64(seed), randcell.Options{}))
 	}
 	dir := t.TempDir()
-	file := filepath.Join(os.TempDir(), "rc_main.go")
+	file := filepath.Join(dir, "main.go")
 	if err := os.WriteFile(file, []byte(randcell.Program(books, `fmt.Sprintf("%.4g", x)`)), 0o600); err != nil {
 		t.Fatal(err)
 	}
