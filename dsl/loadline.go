@@ -125,6 +125,9 @@ func (l *LoadLine) MIMEBundle() map[string]any {
 // words is the working point in one line.
 func (l *LoadLine) words() string {
 	h, b := l.line.Point()
-	return fmt.Sprintf("%s works at %s and %s: permeance coefficient %s, energy product %s (%s)", l.elem, phys.Format(h, "A/m"), phys.Format(b, "T"),
-		phys.FormatDigits(l.line.PermeanceCoefficient(), "", 3), phys.Format(l.line.EnergyProduct(), "J/m3"), l.caption)
+	text := fmt.Sprintf("%s works at %s and %s: ", l.elem, phys.Format(h, "A/m"), phys.Format(b, "T"))
+	if l.fromOrigin { // else the load line has no slope through the origin
+		text += "permeance coefficient " + phys.FormatDigits(l.line.PermeanceCoefficient(), "", 3) + ", "
+	}
+	return text + "energy product " + phys.Format(l.line.EnergyProduct(), "J/m3") + " (" + l.caption + ")"
 }

@@ -2,6 +2,7 @@ package dsl_test
 
 import (
 	"math"
+	"strings"
 	"testing"
 
 	. "ampturn/dsl"
@@ -62,6 +63,9 @@ func TestLoadLineBends(t *testing.T) {
 	// mu0 mur Pc/(Pc + mur) N i/lm with Pc = 20.
 	const pc, mur = 20.0, 1.05
 	near(t, "change by the current", driven.FluxDensity()-plain.FluxDensity(), -4e-7*math.Pi*mur*pc/(pc+mur)*100*5/(10*mm), 1e-6)
+	if said := text(t, driven); strings.Contains(said, "permeance coefficient") {
+		t.Errorf("a load line off the origin has a slope through it:\n%s", said)
+	}
 	refusal := refused(t, func() { build(yoke).Solve().LoadLine("leg") })
 	contains(t, refusal.Error(), "magnet")
 }

@@ -4,6 +4,7 @@ import (
 	"strings"
 
 	"ampturn/dsl/doc"
+	"ampturn/magcirc"
 	"ampturn/magcirc/phys"
 	"ampturn/stdlib"
 )
@@ -36,6 +37,9 @@ func Materials(words ...string) *TableView {
 			law += " +-" + phys.Format(r.Tolerance, "percent")
 		}
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.Name), doc.Text(r.Class), doc.Text(strings.Join(at, ", ")), doc.Text(law), doc.Text(r.Source)})
+	}
+	if len(t.Rows) == 0 {
+		refuse(magcirc.UnknownName, "shelf of materials", "holds nothing of "+strings.Join(words, ", "), "Materials() lists it all")
 	}
 	return &TableView{table: t}
 }

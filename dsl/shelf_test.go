@@ -22,6 +22,7 @@ func TestShelf(t *testing.T) {
 	if all := text(t, Materials("NiZn")); strings.Contains(all, "power ferrite") {
 		t.Errorf("asked for NiZn:\n%s", all)
 	}
+	contains(t, refused(t, func() { Materials("copper") }).Error(), "holds nothing of copper")
 	far := refused(t, func() { Material("power ferite PW3a") })
 	contains(t, far.Error(), `there is no "power ferite PW3a"; nearest to it are "power ferrite PW3a"`)
 }
