@@ -50,7 +50,7 @@ var calls = randcell.Options{
 	},
 }
 
-// units gives the reference the units that the calls name.
+// referenceUnits gives the reference the units that the calls name.
 const referenceUnits = "\nconst mm, um, cm, mm2, tesla, mu0 = 1e-3, 1e-6, 1e-2, 1e-6, 1, 1.256637061435917295385057353311801153678867759750e-6\n\nvar _ = dsl.Rect\n"
 
 func TestDifferential(t *testing.T) {

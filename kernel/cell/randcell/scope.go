@@ -26,7 +26,6 @@ type entity struct {
 	typ    *typ
 	deps   map[string]bool // names in its body
 	body   string          // draft of a function literal, for functions and methods
-	head   string          // signature, for generic functions
 	cost   int             // about how many statements a call runs
 	gone   bool            // withdrawn, or not known to be there
 	pinned bool            // never declared again

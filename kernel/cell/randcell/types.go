@@ -51,7 +51,6 @@ var (
 	floatType  = &typ{kind: floatKind, comparable: true}
 	stringType = &typ{kind: stringKind, comparable: true}
 	boolType   = &typ{kind: boolKind, comparable: true}
-	anyType    = &typ{kind: anyKind}
 	intsType   = sliceOf(intType)
 	floatsType = sliceOf(floatType)
 	wordsType  = sliceOf(stringType)
