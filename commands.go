@@ -4,9 +4,12 @@ import (
 	"context"
 	"fmt"
 	"os"
+	"strings"
 
+	"ampturn/dsl/manual"
 	"ampturn/dsl/review"
 	"ampturn/dsl/session"
+	"ampturn/dsl/start"
 	"ampturn/kernel"
 	"ampturn/kernel/batch"
 	"ampturn/kernel/diff"
@@ -20,6 +23,8 @@ type commands struct {
 	Run     runCommand     `cmd:"" help:"Run notebooks from the top in a fresh kernel; write the run notebook and a self-contained HTML page."`
 	Verify  verifyCommand  `cmd:"" help:"Run notebooks again and compare with the outputs saved in them."`
 	Compare compareCommand `cmd:"" help:"Tell what moved between two run notebooks: verdicts, values, inputs."`
+	New     newCommand     `cmd:"" help:"Write a notebook to start from."`
+	Manual  manualCommand  `cmd:"" help:"Write the manual as a notebook and a page; all of its examples run meanwhile."`
 	Install installCommand `cmd:"" help:"Register the kernel with Jupyter."`
 	Remove  removeCommand  `cmd:"" help:"Take the kernel's entry out of Jupyter again."`
 	Kernel  kernelCommand  `cmd:"" help:"Serve a Jupyter front end; Jupyter calls this."`
@@ -64,6 +69,31 @@ func (c *compareCommand) Run(code *int) error {
 	s := settings()
 	s.Out = c.Out
 	*code = batch.Compare(c.Old, c.New, s)
+	return nil
+}
+
+type newCommand struct {
+	Name string `arg:"" help:"File to write: NAME.ipynb, or NAME.go for a text. An existing file is left alone."`
+	Like string `help:"Kind of part: ${kinds}." default:"buck-inductor" placeholder:"KIND"`
+}
+
+func (c *newCommand) Run(code *int) error {
+	text, ok := start.Like(c.Like)
+	if !ok {
+		return wrongUse(code, fmt.Sprintf("there is no notebook like %q; there are %s", c.Like, strings.Join(start.Kinds(), ", ")))
+	}
+	*code = batch.New(c.Name, text, settings())
+	return nil
+}
+
+type manualCommand struct {
+	Out string `help:"Folder for the notebook and the page." default:"out" placeholder:"DIR"`
+}
+
+func (c *manualCommand) Run(ctx context.Context, code *int) error {
+	s := settings()
+	s.Out = c.Out
+	*code = batch.RunText(ctx, manual.Name, manual.Notebook, s)
 	return nil
 }
 

@@ -27,6 +27,7 @@ var layers = map[string][]string{
 	"magcirc/datafile":     {"magcirc", "magcirc/phys"},
 	"magcirc/reluct":       {"magcirc", "magcirc/phys", "magcirc/internal/num", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct", "magcirc/hyst"},
 	"magcirc/design":       {"magcirc", "magcirc/phys", "magcirc/internal/num", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct", "magcirc/reluct"},
+	"magcirc/working":      {"magcirc", "magcirc/phys", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct", "magcirc/reluct"},
 	"magcirc/tol":          {"magcirc", "magcirc/phys", "magcirc/internal/num", "magcirc/geom", "magcirc/material", "magcirc/gap", "magcirc/induct", "magcirc/reluct", "magcirc/design"},
 
 	"stdlib": {"magcirc", "magcirc/*"},

@@ -8,12 +8,14 @@ import (
 	"os"
 	"os/signal"
 	"runtime/debug"
+	"strings"
 	"syscall"
 
 	"github.com/alecthomas/kong"
 
 	"ampturn/dsl/session"
 	"ampturn/dsl/si"
+	"ampturn/dsl/start"
 	"ampturn/dsl/symbols"
 	"ampturn/kernel"
 	"ampturn/kernel/batch"
@@ -99,7 +101,7 @@ func main() {
 	defer stop()
 	code := batch.Fine
 	parser := kong.Must(&commands{}, kong.Name("ampturn"), kong.Description("Calculation notebooks for inductors and transformers."),
-		kong.BindTo(ctx, (*context.Context)(nil)), kong.Bind(&code))
+		kong.Vars{"kinds": strings.Join(start.Kinds(), ", ")}, kong.BindTo(ctx, (*context.Context)(nil)), kong.Bind(&code))
 	run, err := parser.Parse(os.Args[1:])
 	if err != nil {
 		fmt.Fprintf(os.Stderr, "ampturn: %v; see ampturn --help\n", err)

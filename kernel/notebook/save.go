@@ -81,3 +81,23 @@ func cause(err error) error {
 	}
 	return err
 }
+
+// Create writes the notebook to a file that must not be there yet.
+//
+// Errors: [fs.ErrExist] if there is a file of that name; what [Notebook.Write] meets.
+func (nb *Notebook) Create(path string) error {
+	f, err := os.OpenFile(path, os.O_CREATE|os.O_EXCL|os.O_WRONLY, 0o644)
+	if err != nil {
+		if errors.Is(err, fs.ErrExist) {
+			return fmt.Errorf("%s is there already; choose another name, nothing was written: %w", path, fs.ErrExist)
+		}
+		return saveError(path, false, err)
+	}
+	if err := f.Close(); err != nil {
+		return saveError(path, false, err)
+	}
+	if err := nb.Write(path); err != nil {
+		return errors.Join(err, os.Remove(path))
+	}
+	return nil
+}
