@@ -217,8 +217,14 @@ func TestPlaceIsFilled(t *testing.T) {
 
 func TestAssumptions(t *testing.T) {
 	session.Reset()
-	cell("a", false, func() { review.Assume("25 degC", review.Assumed, "At(100*degC)"); review.Assume("25 degC", review.Assumed, "") })
-	cell("b", false, func() { review.Assume("25 degC", review.Assumed, ""); review.Assume("law extrapolated", review.Extrapolated, "") })
+	cell("a", false, func() {
+		review.Assume("25 degC", review.Assumed, "At(100*degC)")
+		review.Assume("25 degC", review.Assumed, "")
+	})
+	cell("b", false, func() {
+		review.Assume("25 degC", review.Assumed, "")
+		review.Assume("law extrapolated", review.Extrapolated, "")
+	})
 	if got := review.Assumptions(); len(got) != 2 || got[0].Change != "At(100*degC)" || got[1].Text != "law extrapolated" {
 		t.Errorf("assumed %v", got)
 	}

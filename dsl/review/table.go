@@ -116,7 +116,11 @@ func (r row) cells() []doc.Cell {
 		value = doc.Cell{Words: r.value, Value: r.exact, Number: true, Printed: true}
 	}
 	verdict := doc.Cell{Words: r.words, Class: strings.ToLower(r.status.String())}
-	return []doc.Cell{value, doc.Text(r.limit), doc.Text(r.margin), doc.Text(r.where), doc.Text(r.flips), verdict}
+	where := r.where
+	if r.flips != "" {
+		where += ". Flips at: " + r.flips
+	}
+	return []doc.Cell{value, doc.Text(r.limit), doc.Text(strings.TrimPrefix(r.margin, "margin ")), doc.Text(strings.TrimPrefix(where, ". ")), verdict}
 }
 
 // Table is the table of all verdicts of the notebook: one row a name with its worst condition, the others folded.
@@ -150,7 +154,7 @@ func Table() doc.Table {
 }
 
 func columns(value string) []doc.Column {
-	return []doc.Column{{Name: value, Mixed: true}, {Name: "limit"}, {Name: "margin"}, {Name: "corner and conditions"}, {Name: "flips at"}, {Name: "verdict"}}
+	return []doc.Column{{Name: value, Mixed: true}, {Name: "limit"}, {Name: "margin"}, {Name: "corner, conditions, what flips it"}, {Name: "verdict"}}
 }
 
 // fold is the other conditions of a row, the worst of them first.
