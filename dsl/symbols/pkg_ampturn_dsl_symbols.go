@@ -173,6 +173,8 @@ func init() {
 		"WindowRule":               reflect.ValueOf((*dsl.WindowRule)(nil)),
 		"Within":                   reflect.ValueOf(dsl.Within),
 		"WithinWithUnits":          reflect.ValueOf(dsl.WithinWithUnits),
+		"Working":                  reflect.ValueOf(dsl.Working),
+		"WorkingView":              reflect.ValueOf((*dsl.WorkingView)(nil)),
 		"WorstCase":                reflect.ValueOf(dsl.WorstCase),
 		"WorstCaseWithUnits":       reflect.ValueOf(dsl.WorstCaseWithUnits),
 		"Yoke":                     reflect.ValueOf(dsl.Yoke),
