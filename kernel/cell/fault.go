@@ -189,9 +189,6 @@ func faultText(value any) (name, text string) {
 	case tooDeep:
 		return "TooDeep", fmt.Sprintf("functions call each other more than %d deep; is the end of a recursion missing?", maxDepth)
 	case userPanic:
-		if w, ok := v.value.(worded); ok {
-			return "Panic", w.text()
-		}
 		if c, ok := v.value.(coded); ok {
 			return c.CodeName(), c.Error()
 		}

@@ -149,16 +149,23 @@ func (l *lowering) statements(res *lowered) string {
 	for i, s := range l.r.stmts {
 		off, _ := l.src.offset(s.Pos())
 		res.top = append(res.top, topStmt{off: off, assigns: l.assigned(s)})
-		l.line("nb__top = %d", i)
+		l.topLine(i)
 		l.stmt(s)
 	}
-	l.line("nb__top = %d", len(l.r.stmts))
+	l.topLine(len(l.r.stmts))
 	for _, g := range l.r.gone {
 		if !g.captured {
 			l.line("%s = %s", g.lowered, l.zero(g.obj.Type()))
 		}
 	}
 	return l.out.String()
+}
+
+// topLine notes which statement of the top level runs.
+func (l *lowering) topLine(i int) {
+	if !l.s.plain {
+		l.line("nb__top = %d", i)
+	}
 }
 
 // assigned lists the older variables of the notebook that a statement sets itself.
@@ -272,7 +279,7 @@ func reserved(name string) bool {
 
 // pkg gives the name under which lowered text knows a compiled package.
 func (l *lowering) pkg(path string) string {
-	alias := "p_" + strings.NewReplacer("/", "_", ".", "_", "-", "_").Replace(path)
+	alias := importName(path)
 	if !l.s.machine.imported[alias] && !l.imports[alias] {
 		l.imports[alias] = true
 		l.newImp = append(l.newImp, fmt.Sprintf("import %s %q", alias, path))
@@ -285,6 +292,9 @@ func (l *lowering) nb(name string) string { return "p_nb." + name }
 
 // at writes the mark of a place in the cell.
 func (l *lowering) at(n ast.Node) {
+	if l.s.plain {
+		return
+	}
 	off, ok := l.src.offset(n.Pos())
 	if !ok {
 		return
@@ -309,6 +319,9 @@ func (l *lowering) fnName() string {
 
 // stopCheck writes the check for an interrupt.
 func (l *lowering) stopCheck() {
+	if l.s.plain {
+		return
+	}
 	if racing {
 		l.line("%s()", l.nb("Poll"))
 		return
@@ -318,6 +331,9 @@ func (l *lowering) stopCheck() {
 
 // enter and leave count the depth of calls in functions that may call themselves.
 func (l *lowering) enter() {
+	if l.s.plain {
+		return
+	}
 	if racing {
 		l.line("%s()", l.nb("Enter"))
 		return
@@ -327,6 +343,9 @@ func (l *lowering) enter() {
 }
 
 func (l *lowering) leave() {
+	if l.s.plain {
+		return
+	}
 	if racing {
 		l.line("%s()", l.nb("Leave"))
 		return

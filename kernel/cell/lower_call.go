@@ -144,7 +144,7 @@ func (l *lowering) isTuple(e ast.Expr) bool {
 // would be lost otherwise.
 func (l *lowering) worded(e ast.Expr, to types.Type, text string) string {
 	from := l.info.TypeOf(e)
-	if from == nil || !isAny(to) || !isCellType(from) || types.IsInterface(from) {
+	if l.s.plain || from == nil || !isAny(to) || !isCellType(from) || types.IsInterface(from) {
 		return text
 	}
 	for _, m := range []string{"Error", "String"} {
@@ -167,7 +167,7 @@ func (l *lowering) worded(e ast.Expr, to types.Type, text string) string {
 // typed gives fmt a value together with its static type, which alone knows the names of types and fields as typed.
 func (l *lowering) typed(e ast.Expr, text string) string {
 	t := l.info.TypeOf(e)
-	if t == nil || types.IsInterface(t) || !mentionsCell(t, 0) {
+	if l.s.plain || t == nil || types.IsInterface(t) || !mentionsCell(t, 0) {
 		return text
 	}
 	l.s.shows = append(l.s.shows, shown{typ: t})

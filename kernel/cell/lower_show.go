@@ -89,6 +89,18 @@ func (l *lowering) help(x ast.Expr) bool {
 	if _, ok := o.(*types.Func); !ok {
 		return false
 	}
-	l.line("%s(%q)", l.nb("Help"), name)
+	l.showHelp(name)
 	return true
+}
+
+// showHelp writes the call that shows the help on a name.
+func (l *lowering) showHelp(name string) {
+	if !l.s.plain {
+		l.line("%s(%q)", l.nb("Help"), name)
+		return
+	}
+	if data, ok := l.s.describeText(name, l.r.after); ok {
+		text, _ := data["text/plain"].(string)
+		l.line("%s(%q)", l.nb("Write"), text+"\n")
+	}
 }

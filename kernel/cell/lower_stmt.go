@@ -23,7 +23,7 @@ func (l *lowering) stmt(s ast.Stmt) {
 	case nil:
 	case *ast.EmptyStmt:
 		if name := l.r.help[s]; name != "" {
-			l.line("%s(%q)", l.nb("Help"), name)
+			l.showHelp(name)
 		}
 	case *ast.LabeledStmt:
 		l.labeled(s)
@@ -171,7 +171,7 @@ func (l *lowering) prints(x ast.Expr) bool {
 // keepDepth counts the depth of calls as before after a statement in which compiled code may have caught a failure that
 // came from deep within functions of the notebook. It gives what is due after the statement.
 func (l *lowering) keepDepth(s ast.Stmt) func() {
-	if !l.callsBack(s) {
+	if l.s.plain || !l.callsBack(s) {
 		return func() {}
 	}
 	d := l.name("d")

@@ -23,8 +23,9 @@ type Session struct {
 	machine *machine
 	units   *unit.Checker
 
-	running sync.Mutex // one cell at a time
-	mu      sync.Mutex // guards what follows
+	turn  turn // of who evaluates
+	later later
+	mu    sync.Mutex // guards what follows
 
 	scope          *scope
 	methods        []*method
@@ -36,10 +37,12 @@ type Session struct {
 	shows          []shown
 	texts          map[int]string
 	cache          map[string]*unitOfWork
+	plain          bool     // lowers to a plain program, which is not run
 	late           []string // notes on names that the cell took over
 
 	sink      atomic.Pointer[kernel.Sink]
 	now       kernel.Cell // the running cell
+	src       *source     // its text
 	stuck     chan struct{}
 	stuckCell int
 	raceMark  *atomic.Int64
@@ -75,7 +78,7 @@ func New(v *Vocabulary, h Hooks) (*Session, error) {
 	}
 	s := &Session{
 		voc: v, hooks: h, base: b, scope: &scope{names: map[string]*live{}}, fset: token.NewFileSet(),
-		versions: map[string]int{}, typeNames: map[*types.TypeName]string{}, texts: map[int]string{}, cache: map[string]*unitOfWork{},
+		turn: newTurn(), versions: map[string]int{}, typeNames: map[*types.TypeName]string{}, texts: map[int]string{}, cache: map[string]*unitOfWork{},
 		marks: []mark{{}},
 	}
 	if s.machine, err = newMachine(v, s.helpers()); err != nil {
@@ -106,8 +109,8 @@ func (s *Session) Emit(o kernel.Output) {
 
 // Run runs a cell: parse, check, lower, compile, then run it. See [kernel.Engine].
 func (s *Session) Run(ctx context.Context, c kernel.Cell, out kernel.Sink) kernel.Outcome {
-	s.running.Lock()
-	defer s.running.Unlock()
+	s.takeTurn(ctx)
+	defer s.turn.give()
 	if s.stuck != nil {
 		select {
 		case <-s.stuck:
@@ -173,7 +176,9 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 	if err == nil {
 		u.low, u.text = low, strings.Join(low.imports, "\n")+"\n"+low.decls
 		s.texts[c.Number] = u.text
-		err = s.compile(u)
+		if !s.plain {
+			err = s.compile(u)
+		}
 	}
 	if err != nil {
 		return nil, []problem{{src: p.src, text: "this cell is not supported here (" + err.Error() + "); please report it with its text", name: "InternalError"}}
@@ -317,14 +322,15 @@ const patience = 2 * time.Second
 // execute runs a compiled cell in a goroutine of its own, so that a call that cannot be stopped does not hold up the
 // kernel for ever.
 func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) kernel.Outcome {
-	key := c.ID
-	if key == "" {
-		key = fmt.Sprintf("cell-%d", c.Number)
-	}
+	key := cellKey(c)
 	s.machine.clear()
 	s.raceMark.Store(0)
 	s.raceDepth.Store(0)
 	s.tooDeep.Store(false)
+	s.src = u.src
+	if s.hooks.Sink != nil {
+		s.hooks.Sink(*s.sink.Load())
+	}
 	if s.hooks.Context != nil {
 		s.hooks.Context(ctx)
 	}
@@ -362,6 +368,7 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 	if s.hooks.End != nil {
 		s.hooks.End(key, stopped != nil)
 	}
+	s.begin(u.src, stopped != nil)
 	return o
 }
 

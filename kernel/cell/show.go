@@ -1,16 +1,14 @@
 package cell
 
 import (
-	"fmt"
 	"go/types"
 	"maps"
 	"math"
 	"reflect"
-	"sort"
-	"strconv"
 	"strings"
 
 	"ampturn/kernel"
+	"ampturn/kernel/cell/nb"
 )
 
 // bundler is a value that shows itself. A nil bundle shows nothing.
@@ -91,171 +89,51 @@ func (s *Session) showHelp(name string) {
 	}
 }
 
-// number writes a real number with its unit.
-func (s *Session) number(x float64, unit string) string {
-	if unit == "?" {
-		return s.number(x, "") + "  (unit not traced)"
-	}
-	if s.voc.Format != nil {
-		return s.voc.Format(x, unit)
-	}
-	text := strconv.FormatFloat(x, 'g', 4, 64)
-	if unit != "" {
-		text += " " + unit
-	}
-	return text
-}
+// writer writes values as text.
+func (s *Session) writer() nb.Writer { return nb.Writer{Format: s.voc.Format} }
 
-const longest = 50 // elements of a list that are written out
-
-// text writes a value; its static type gives the names of fields and types as typed.
+// text writes a value of a static type.
 func (s *Session) text(v reflect.Value, t types.Type, unit string, top bool) string {
-	if !v.IsValid() {
-		return "nil"
-	}
-	if v.Kind() == reflect.Interface && !v.IsNil() {
-		v = v.Elem()
-	}
-	if own, ok := ownText(v); ok && !isCellType(t) {
-		return own
-	}
-	quiet := unit
-	if !top && unit == "?" {
-		quiet = ""
-	}
-	switch v.Kind() {
-	case reflect.Float32, reflect.Float64:
-		return s.number(v.Float(), quiet)
-	case reflect.String:
-		if top {
-			return v.String()
-		}
-		return strconv.Quote(v.String())
-	case reflect.Slice, reflect.Array:
-		if v.Kind() == reflect.Slice && v.IsNil() {
-			return "[]"
-		}
-		return s.list(v, elemOf(t), quiet)
-	case reflect.Map:
-		return s.mapText(v, t, quiet)
-	case reflect.Struct:
-		return s.structText(v, t, quiet)
-	case reflect.Pointer:
-		if v.IsNil() {
-			return "nil"
-		}
-		if v.Elem().Kind() == reflect.Struct {
-			return "&" + s.structText(v.Elem(), deref(t), quiet)
-		}
-		return "pointer to " + s.text(v.Elem(), deref(t), quiet, false)
-	case reflect.Func:
-		if v.IsNil() {
-			return "nil"
-		}
-		return shortType(t)
-	case reflect.Invalid:
-		return "nil"
-	}
-	if v.CanInterface() {
-		return fmt.Sprint(v.Interface())
-	}
-	return fmt.Sprint(v)
+	return s.writer().Text(v, static{t}, unit, top)
 }
 
-// ownText gives the text that a compiled value writes of itself.
-func ownText(v reflect.Value) (string, bool) {
-	if !v.CanInterface() || v.Kind() == reflect.Pointer && v.IsNil() {
-		return "", false
-	}
-	switch x := v.Interface().(type) {
-	case bundler:
-		if text, ok := x.MIMEBundle()["text/plain"].(string); ok {
-			return text, true
-		}
-	case error:
-		return x.Error(), true
-	case fmt.Stringer:
-		return x.String(), true
-	}
-	return "", false
+// static is the static type of a value for its text.
+type static struct{ t types.Type }
+
+func (s static) Name() string { return shortType(s.t) }
+
+func (s static) Named() bool {
+	_, ok := types.Unalias(s.t).(*types.Named)
+	return ok && !types.IsInterface(s.t)
 }
 
-func elemOf(t types.Type) types.Type {
-	switch u := t.Underlying().(type) {
+func (s static) Own() bool    { return isCellType(s.t) }
+func (s static) Struct() bool { return isStruct(s.t) }
+
+func (s static) Elem() nb.Type {
+	switch u := s.t.Underlying().(type) {
 	case *types.Slice:
-		return u.Elem()
+		return static{u.Elem()}
 	case *types.Array:
-		return u.Elem()
+		return static{u.Elem()}
 	case *types.Map:
-		return u.Elem()
+		return static{u.Elem()}
+	case *types.Pointer:
+		return static{u.Elem()}
 	}
-	return types.Universe.Lookup("any").Type()
+	return nb.Any
 }
 
-func (s *Session) list(v reflect.Value, elem types.Type, unit string) string {
-	var parts []string
-	for i := 0; i < v.Len() && i < longest; i++ {
-		parts = append(parts, s.text(v.Index(i), elem, unit, false))
+func (s static) Key() nb.Type {
+	if m, ok := s.t.Underlying().(*types.Map); ok {
+		return static{m.Key()}
 	}
-	more := ""
-	if v.Len() > longest {
-		more = fmt.Sprintf(", .. (%d values)", v.Len())
-	}
-	if isStruct(elem) && len(parts) > 1 {
-		return "[\n  " + strings.Join(parts, "\n  ") + more + "\n]"
-	}
-	return "[" + strings.Join(parts, ", ") + more + "]"
+	return nb.Any
 }
 
-func (s *Session) mapText(v reflect.Value, t types.Type, unit string) string {
-	if v.IsNil() {
-		return "map[]"
+func (s static) Field(i int) (string, nb.Type, bool) {
+	if st, ok := s.t.Underlying().(*types.Struct); ok && i < st.NumFields() {
+		return st.Field(i).Name(), static{st.Field(i).Type()}, true
 	}
-	var key types.Type = types.Universe.Lookup("any").Type()
-	if m, ok := t.Underlying().(*types.Map); ok {
-		key = m.Key()
-	}
-	keys := v.MapKeys()
-	sort.SliceStable(keys, func(i, j int) bool { return compare(keys[i], keys[j]) < 0 })
-	var parts []string
-	for i, k := range keys {
-		if i == longest {
-			parts = append(parts, fmt.Sprintf(".. (%d values)", len(keys)))
-			break
-		}
-		parts = append(parts, s.text(k, key, "", false)+": "+s.text(v.MapIndex(k), elemOf(t), unit, false))
-	}
-	return "map[" + strings.Join(parts, ", ") + "]"
-}
-
-func (s *Session) structText(v reflect.Value, t types.Type, unit string) string {
-	units := fieldUnits(unit)
-	st, _ := t.Underlying().(*types.Struct)
-	var parts []string
-	for i := 0; i < v.NumField(); i++ {
-		name, ft := v.Type().Field(i).Name, types.Universe.Lookup("any").Type()
-		if st != nil && i < st.NumFields() {
-			name, ft = st.Field(i).Name(), st.Field(i).Type()
-		}
-		parts = append(parts, name+": "+s.text(v.Field(i), ft, units[name], false))
-	}
-	name := ""
-	if _, ok := types.Unalias(t).(*types.Named); ok {
-		name = shortType(t)
-	}
-	return name + "{" + strings.Join(parts, ", ") + "}"
-}
-
-// fieldUnits reads the unit texts of a struct: "{Vin=V;Core=degC}".
-func fieldUnits(text string) map[string]string {
-	m := map[string]string{}
-	if !strings.HasPrefix(text, "{") {
-		return m
-	}
-	for _, p := range strings.Split(strings.Trim(text, "{}"), ";") {
-		if k, v, ok := strings.Cut(p, "="); ok {
-			m[k] = strings.TrimSuffix(v, "#")
-		}
-	}
-	return m
+	return "", nil, false
 }

@@ -6,6 +6,8 @@ import (
 	"reflect"
 	"sort"
 	"strings"
+
+	"ampturn/kernel/cell/nb"
 )
 
 // typed is a value of a cell's type on its way to fmt.
@@ -59,11 +61,21 @@ func plus(v reflect.Value, t types.Type, depth int) string {
 			break
 		}
 		keys := v.MapKeys()
-		sort.SliceStable(keys, func(i, j int) bool { return compare(keys[i], keys[j]) < 0 })
+		sort.SliceStable(keys, func(i, j int) bool { return nb.Compare(keys[i], keys[j]) < 0 })
 		for _, k := range keys {
 			parts = append(parts, plus(k, u.Key(), depth+1)+":"+plus(v.MapIndex(k), u.Elem(), depth+1))
 		}
 		return "map[" + strings.Join(parts, " ") + "]"
 	}
 	return fmt.Sprintf("%+v", v)
+}
+
+func elemOf(t types.Type) types.Type {
+	switch u := t.Underlying().(type) {
+	case *types.Slice:
+		return u.Elem()
+	case *types.Array:
+		return u.Elem()
+	}
+	return types.Universe.Lookup("any").Type()
 }
