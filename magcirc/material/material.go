@@ -158,6 +158,9 @@ func (m *Material) at(t float64) (Law, error) {
 		i++
 	}
 	cold, hot := m.states[i], m.states[i+1]
+	if law, ok, err := joined(cold.law, hot.law, (t-cold.t)/(hot.t-cold.t)); ok {
+		return law, err
+	}
 	l := &blend{cold.law, hot.law, (t - cold.t) / (hot.t - cold.t), cold.t, hot.t, t}
 	if l.w < 0 || l.w > 1 {
 		if h, ok := l.rises(); !ok {

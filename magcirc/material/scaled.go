@@ -31,6 +31,9 @@ func NewScaled(law Law, k float64) (Law, error) {
 	if k == 1 {
 		return law, nil
 	}
+	if l, ok := law.(stretching); ok {
+		return l.Stretch(k)
+	}
 	return scaled{law, k}, nil
 }
 
