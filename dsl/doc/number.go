@@ -36,7 +36,7 @@ func (t Table) column(k int, digit, point rune) (head string, texts []string, ri
 	if unit != "" && numbers > 0 {
 		head += " (" + unit + ")"
 	}
-	behind := 0
+	behind, powers := 0, false
 	for i, row := range t.Rows {
 		if k >= len(row) {
 			continue
@@ -44,10 +44,11 @@ func (t Table) column(k int, digit, point rune) (head string, texts []string, ri
 		texts[i] = row[k].print(c, factor)
 		if row[k].Number && !c.Mixed {
 			behind = max(behind, decimals(texts[i]))
+			powers = powers || strings.ContainsRune(texts[i], 'e')
 		}
 	}
 	for i, row := range t.Rows {
-		if k < len(row) && row[k].Number && !c.Mixed {
+		if k < len(row) && row[k].Number && !c.Mixed && !powers { // beside a power of ten, points say nothing
 			texts[i] = fill(texts[i], behind, digit, point)
 		}
 	}

@@ -104,3 +104,22 @@ func TestColumnInAPowerOfTen(t *testing.T) {
 		t.Errorf("the full value is lost:\n%s", got)
 	}
 }
+
+// TestPowersOfTenStandRight: beside a number with an exponent a plain one is not pushed to the left.
+func TestPowersOfTenStandRight(t *testing.T) {
+	residuals := doc.Table{Columns: []doc.Column{{Name: "what"}, {Name: "value"}}, Rows: [][]doc.Cell{
+		{doc.Text("sum"), doc.Num(0)}, {doc.Text("residual"), doc.Num(1.5616e-16)}, {doc.Text("iterations"), doc.Num(4)}}}
+	want := strings.Join([]string{
+		"what            value",
+		"----------  ---------",
+		"sum                 0",
+		"residual    1.562e-16",
+		"iterations      4.000",
+	}, "\n")
+	if got := residuals.Text(); got != want {
+		t.Errorf("got\n%s\nwant\n%s", got, want)
+	}
+	if page := residuals.HTML(); !strings.Contains(page, `data-value="0">0</td>`) {
+		t.Errorf("blanks behind the zero:\n%s", page)
+	}
+}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"strings"
 	"testing"
 	"time"
 
@@ -148,5 +149,31 @@ func TestBrowserSetsFormulas(t *testing.T) {
 	}
 	if len(w.List()) > 0 {
 		t.Errorf("the page did: %q", w.List())
+	}
+}
+
+// TestBrowserKeepsNumbersWithUnits measures, in a narrow table, that no line ends between a number and its unit, and that
+// on paper the folded rows of a table are open.
+func TestBrowserKeepsNumbersWithUnits(t *testing.T) {
+	ctx := browser.Start(t)
+	row := `<tr><td>at least 8 uH and at most 12 mm2 or 110 degC</td><td>margin 231.9 nH (2.9 %)</td></tr>`
+	open(t, ctx, shows(html(`<table class="at" style="width:9rem"><tbody>`+strings.Repeat(row, 3)+`</tbody></table><details><summary>2 more</summary><p id="folded">13 A</p></details>`)), page.Options{})
+	for _, width := range []int64{1200, 390, 200} {
+		browser.Run(t, ctx, chromedp.EmulateViewport(width, 1000))
+		torn := browser.Ask[[]string](t, ctx, `[...document.querySelectorAll("td")].flatMap(td => { const bad = [], n = td.firstChild, text = n.data;
+			for (const m of text.matchAll(/\d\u00a0\S+/g)) { const r = document.createRange(); r.setStart(n, m.index); r.setEnd(n, m.index + m[0].length);
+				if (new Set([...r.getClientRects()].map(b => Math.round(b.top))).size > 1) bad.push(m[0]) }
+			return /\d\u00a0/.test(text) ? bad : [text] })`)
+		if len(torn) > 0 {
+			t.Errorf("%d px: torn from their units: %q", width, torn)
+		}
+	}
+	const seen = `document.querySelector("details p").checkVisibility()`
+	if browser.Ask[bool](t, ctx, seen) {
+		t.Error("on the screen the folded rows are open")
+	}
+	browser.Run(t, ctx, browser.Media("print", "light"))
+	if !browser.Ask[bool](t, ctx, seen) {
+		t.Error("on paper the folded rows are hidden")
 	}
 }

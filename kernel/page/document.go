@@ -56,15 +56,20 @@ func (d *document) body() (string, error) {
 	b.WriteString("<a class=\"at-skip\" href=\"#at-main\">Skip to the text</a>\n<div class=\"at-page\">\n<main id=\"at-main\">\n")
 	if first < 0 {
 		fmt.Fprintf(&b, "<h1>%s</h1>\n", html.EscapeString(d.title))
-		d.contents(&b)
 	}
+	section := d.firstSection(first)
 	for i, c := range d.nb.Cells {
+		if i == section {
+			d.verdicts(&b)
+			d.contents(&b)
+		}
 		if err := d.cell(&b, c); err != nil {
 			return "", err
 		}
-		if i == first {
-			d.contents(&b)
-		}
+	}
+	if section >= len(d.nb.Cells) {
+		d.verdicts(&b)
+		d.contents(&b)
 	}
 	b.WriteString("</main>\n")
 	d.foot(&b)
@@ -93,6 +98,21 @@ func (d *document) findTitle() int {
 		d.title = "Notebook"
 	}
 	return -1
+}
+
+// firstSection gives the place of the first text behind the title that opens a section: what stands before it, such as
+// the verdicts, is read before the list of contents. Where sections begin in the text of the title itself, it is the cell
+// behind that.
+func (d *document) firstSection(title int) int {
+	if title >= 0 && len(d.texts[d.nb.Cells[title]].list) > 1 {
+		return title + 1
+	}
+	for i := title + 1; i < len(d.nb.Cells); i++ {
+		if t := d.texts[d.nb.Cells[i]]; t != nil && len(t.list) > 0 {
+			return i
+		}
+	}
+	return title + 1
 }
 
 // contents writes the list of headings, if there are enough to choose from.

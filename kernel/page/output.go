@@ -79,6 +79,9 @@ func (d *document) bundle(b *strings.Builder, c *notebook.Cell, data map[string]
 
 // figure writes a drawing with its number, its title and its twin in words.
 func (d *document) figure(b *strings.Builder, picture, title string, wide bool, plain string) {
+	if title != "" && inPicture(picture, title) {
+		title = "" // the picture says it itself
+	}
 	class := "at-figure"
 	if wide {
 		class = "at-figure at-wide"
@@ -89,6 +92,18 @@ func (d *document) figure(b *strings.Builder, picture, title string, wide bool, 
 		b.WriteString("<details class=\"at-twin\"><summary>in words</summary><pre>" + html.EscapeString(terminal(plain)) + "</pre></details>\n")
 	}
 	b.WriteString("</figure>\n")
+}
+
+var pictureText = regexp.MustCompile(`(?s)<text\b[^>]*>(.*?)</text>`)
+
+// inPicture tells whether a drawing carries its title as a text that readers see.
+func inPicture(picture, title string) bool {
+	for _, m := range pictureText.FindAllStringSubmatch(picture, -1) {
+		if clean.Text("<h>"+m[1]+"</h>", "h") == title {
+			return true
+		}
+	}
+	return false
 }
 
 func (d *document) bitmap(b *strings.Builder, kind, content, plain string) {

@@ -10,6 +10,9 @@
 // forms the first of these is shown: HTML, SVG, PNG, JPEG, LaTeX, Markdown, JSON, plain text. A picture's plain text
 // goes along as its twin in words.
 //
+// Results stand before derivations: the list of contents follows what comes before the first section. A notebook whose
+// record has verdicts, and that shows no table of them, gets one there.
+//
 // HTML outputs may use these classes: table.at with td.num for numbers and td.pass, .fail, .open, .waived for status
 // words; p.verdict with one of the same four; p.note, p.cite, p.revision; ul.assumptions; .at-verdict with data-status="PASS" and so on for a status word
 // in running text; .at-note and .at-caution for paragraphs that stand out.
@@ -116,5 +119,5 @@ func (d *document) foot(b *strings.Builder) {
 
 // safe cleans HTML of a cell; prefix keeps its ids apart from those of other cells.
 func (d *document) safe(src, prefix string, image func(string) (string, bool)) string {
-	return clean.HTML(src, clean.Options{Prefix: prefix, Image: image, Caption: d.number})
+	return bind(clean.HTML(src, clean.Options{Prefix: prefix, Image: image, Caption: d.number}))
 }
