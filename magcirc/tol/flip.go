@@ -1,6 +1,7 @@
 package tol
 
 import (
+	"cmp"
 	"context"
 	"math"
 	"slices"
@@ -22,22 +23,39 @@ type Move struct {
 // Inputs: margin, of a result: positive on one side of the bound, negative on the other.
 // Errors: as [Effects]; a move into values that f refuses ends the search of that input.
 func Flip(ctx context.Context, f Function, inputs []Input, margin func(y float64) float64) (Move, bool, error) {
-	y, err := value(f, nominal(inputs))
-	if err != nil {
+	all, err := moves(ctx, f, inputs, margin, tried)
+	if err != nil || len(all) == 0 {
 		return Move{}, false, err
 	}
+	return all[0], true, nil
+}
+
+// Explain gives for each input the move that by itself makes the result a wanted one, the shortest in units of the inputs'
+// Scale first; inputs that cannot within ten times their Scale are left out.
+//
+// Errors: as [Flip].
+func Explain(ctx context.Context, f Function, inputs []Input, want float64) ([]Move, error) {
+	return moves(ctx, f, inputs, func(y float64) float64 { return y - want }, len(inputs))
+}
+
+func moves(ctx context.Context, f Function, inputs []Input, margin func(y float64) float64, most int) ([]Move, error) {
+	y, err := value(f, nominal(inputs))
+	if err != nil {
+		return nil, err
+	}
 	s := &flip{ctx: ctx, f: f, inputs: inputs, margin: margin, nominal: margin(y)}
-	var best Move
-	found := false
-	for _, i := range s.ranked() {
-		if m, ok := s.seek(i); ok && (!found || math.Abs(m.Length) < math.Abs(best.Length)) {
-			best, found = m, true
+	var all []Move
+	order := s.ranked()
+	for _, i := range order[:min(len(order), most)] {
+		if m, ok := s.seek(i); ok {
+			all = append(all, m)
 		}
 		if err := ctx.Err(); err != nil {
-			return Move{}, false, err
+			return nil, err
 		}
 	}
-	return best, found, nil
+	slices.SortStableFunc(all, func(a, b Move) int { return cmp.Compare(math.Abs(a.Length), math.Abs(b.Length)) })
+	return all, nil
 }
 
 type flip struct {
@@ -97,19 +115,9 @@ func (s *flip) ranked() []int {
 		}
 	}
 	slices.SortStableFunc(order, func(a, b int) int {
-		return compare(math.Abs(s.guess[a])/s.inputs[a].scale(), math.Abs(s.guess[b])/s.inputs[b].scale())
+		return cmp.Compare(math.Abs(s.guess[a])/s.inputs[a].scale(), math.Abs(s.guess[b])/s.inputs[b].scale())
 	})
-	return order[:min(len(order), tried)]
-}
-
-func compare(a, b float64) int {
-	switch {
-	case a < b:
-		return -1
-	case a > b:
-		return 1
-	}
-	return 0
+	return order
 }
 
 // seek moves one input outwards until the margin changes its sign, then closes in on the place.

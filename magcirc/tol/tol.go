@@ -5,6 +5,7 @@
 //	[WorstCase]   smallest and largest result over the corners of all limits
 //	[MonteCarlo]  random draws: mean, deviation, quantiles, yield
 //	[Flip]        how far one input alone must move until a margin is used up
+//	[Explain]     the move of each input that by itself makes the result a measured one
 //	[Propagate]   the uncertainty of a result from those of its inputs
 //
 //	inputs := []tol.Input{{Name: "gap", Unit: "m", Nominal: 0.45e-3, Half: 0.02e-3}}

@@ -300,3 +300,21 @@ func TestHistogram(t *testing.T) {
 		t.Errorf("%d draws in %d bins from %g to %g", sum, len(counts), edges[0], edges[len(edges)-1])
 	}
 }
+
+// TestExplain: every input alone leads to the wanted result, the shortest move first.
+func TestExplain(t *testing.T) {
+	const want = 7.9e-6
+	moves, err := tol.Explain(ctx, gapped, inputs(), want)
+	if err != nil || len(moves) < 2 {
+		t.Fatal(moves, err)
+	}
+	for n, m := range moves {
+		x := []float64{0.45e-3, 2200, 62e-6}
+		x[m.Input] = m.To
+		y, _ := gapped(x)
+		near(t, inputs()[m.Input].Name, y, want, 1e-7)
+		if n > 0 && math.Abs(m.Length) < math.Abs(moves[n-1].Length) {
+			t.Errorf("move %d is shorter than the one before", n)
+		}
+	}
+}
