@@ -55,7 +55,7 @@ func (b *book) chapter(text string, names map[string]*name) error {
 			i = end
 		case strings.HasPrefix(line, "@names "):
 			flush()
-			b.cells = append(b.cells, cell{"markdown", "### What the names mean"})
+			b.cells = append(b.cells, cell{"markdown", "**The names of this chapter**"})
 			for _, key := range strings.Fields(line)[1:] {
 				n := names[key]
 				if n == nil {

@@ -206,7 +206,7 @@ func (n *name) one(b *strings.Builder, owner string) {
 		fmt.Fprintf(b, "**%s%s**\n\n```\n%s\n```\n\n%s\n\n", owner, n.name, n.sign, n.doc)
 		return
 	}
-	fmt.Fprintf(b, "**%s%s** &ensp; `%s`\n\n%s\n\n", owner, n.name, n.sign, n.doc)
+	fmt.Fprintf(b, "**%s%s** &ensp; `%s`\\\n%s\n\n", owner, n.name, n.sign, n.doc) // one paragraph, so that no sheet ends within it
 }
 
 // open lists the names that no chapter has taken.
