@@ -106,7 +106,7 @@ func (a *answer) again(inputs []input) tol.Function {
 	return func(x []float64) (value float64, err error) {
 		err = Try(func() {
 			c := a.op.circuit.with(inputs, x)
-			value = a.ask(c.solved(driven(a.op.drive, inputs, x)))
+			value = a.ask(a.op.solvedLike(c, driven(a.op.drive, inputs, x)))
 		})
 		return value, err
 	}

@@ -36,7 +36,11 @@ var inductanceBasis = basisRow{"inductances", "differentiation of the solved net
 
 func (op *OperatingPoint) basis() []basisRow {
 	op.given()
-	return append(append([]basisRow{solutionBasis, inductanceBasis}, op.model.gapBasis(&op.circuit)...), op.circuit.lawBasis()...)
+	first := []basisRow{solutionBasis, inductanceBasis}
+	if op.memories > 0 {
+		first[0] = historyBasis
+	}
+	return append(append(first, op.model.gapBasis(&op.circuit)...), op.circuit.lawBasis()...)
 }
 
 // gapBasis lists the gaps with their methods.

@@ -14,6 +14,7 @@ func TestNilDoors(t *testing.T) {
 		(*MagneticMaterial)(nil), (*MagneticCircuit)(nil), (*OperatingPoint)(nil), (*InductanceMatrix)(nil), (*EquivalentCircuit)(nil),
 		(*TeeCircuit)(nil), (*BiasCurve)(nil), (*GapComparison)(nil), (*LegState)(nil), (*Figure)(nil), (*TableView)(nil),
 		(*Verdict)(nil), (*Requirement)(nil), (*Point)(nil), (*Fragment)(nil),
+		(*Loop)(nil), (*CurveData)(nil), (*JAFit)(nil), (*PlayFit)(nil), (*History)(nil),
 	} {
 		v := reflect.ValueOf(nobody)
 		for i := range v.NumMethod() {

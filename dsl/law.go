@@ -5,8 +5,9 @@ import (
 	"ampturn/magcirc/material"
 )
 
-// Law is a magnetisation law: flux density over field strength. [Linear], [Froehlich], [Langevin], [Arctan], [Curve]
-// and [LawOf] make one; any value of your own with this method is one too. A law of your own is tabulated
+// Law is a magnetisation law: flux density over field strength. [Linear], [Froehlich], [Langevin], [Arctan], [Curve],
+// [LawOf], [JilesAtherton], [Play], [ReadCurve] and the fits make one; any value of your own with this method is one
+// too. A law of your own is tabulated
 // once, up to 100 kA/m, and checked: zero at zero field, odd, rising.
 type Law interface {
 	// FluxDensity is the flux density at a field strength.
@@ -96,6 +97,8 @@ func (l boundLaw) FluxDensity(field AmperePerMetre) Tesla {
 	return b
 }
 
+func (l boundLaw) below() material.Law { return l.law }
+
 // MIMEBundle shows the law in words.
 func (l boundLaw) MIMEBundle() map[string]any { return words(l.law.Describe()) }
 
@@ -104,8 +107,8 @@ func lawBelow(elem string, law Law) material.Law {
 	if law == nil {
 		refuse(magcirc.BadValue, elem, "there is no law", "give one: Linear(2200), Froehlich(2200, 0.49*tesla), Curve(H, B)")
 	}
-	if own, ok := law.(boundLaw); ok {
-		return own.law
+	if own, ok := law.(interface{ below() material.Law }); ok {
+		return own.below()
 	}
 	b, err := material.Tabulate(law.FluxDensity, tableEnd)
 	named(elem, err)

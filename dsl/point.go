@@ -20,6 +20,8 @@ type OperatingPoint struct {
 	model       *model
 	solution    *reluct.Solution
 	shown       *reluct.Solution // without what only rounding made
+	past        []reluct.Drive   // of a history: the drives before
+	memories    int              // of a history: legs that remember
 	incremental *InductanceMatrix
 	secant      *InductanceMatrix
 }
@@ -232,7 +234,11 @@ func (op *OperatingPoint) Notes() []Remark {
 // conditions says what this result holds for: circuit, temperature, currents.
 func (op *OperatingPoint) conditions() string {
 	op.given()
-	return op.circuit.state() + ", " + driveWords(&op.circuit, op.drive)
+	when := ""
+	if op.memories > 0 {
+		when = fmt.Sprintf(", state %d of a history", len(op.past)+1)
+	}
+	return op.circuit.state() + ", " + driveWords(&op.circuit, op.drive) + when
 }
 
 // MIMEBundle shows paths and windings as tables, conditions first.

@@ -6,6 +6,9 @@ import (
 	"ampturn/magcirc"
 )
 
+// InitialNote is the note of every result for which a law's memory was left out.
+const InitialNote = "single states follow its initial curve, from the demagnetised state; a history keeps its memory"
+
 // Curve is the single-valued curve of a law with memory, for all that asks for one: it is a material.Law.
 type Curve struct {
 	law   Law
@@ -50,5 +53,5 @@ func (c *Curve) Notes() []magcirc.Note {
 		notes = append(notes, n.Notes()...)
 	}
 	return append(notes, magcirc.Note{Kind: magcirc.Remark, Elem: c.Describe(),
-		Text: "single states follow its initial curve, from the demagnetised state; a history keeps its memory"})
+		Text: InitialNote})
 }

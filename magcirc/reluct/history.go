@@ -140,6 +140,7 @@ func (h *History) Trial(ctx context.Context, d Drive) (*Solution, error) {
 	if err != nil {
 		return nil, err
 	}
+	h.own(k)
 	var desc descent
 	k.loopForm(&desc)
 	defer desc.release()
@@ -155,6 +156,24 @@ func (h *History) Trial(ctx context.Context, d Drive) (*Solution, error) {
 		return nil, k.stalled(&desc, sol, k.worstOfLoop(&desc))
 	}
 	return sol, nil
+}
+
+// own adds to the size of the mmfs on a branch what its legs hold by themselves: a remanent ring has drops that cancel
+// and no winding's mmf beside which its residual is small.
+func (h *History) own(k *task) {
+	next := 0
+	for i := range h.net.branches {
+		for e := range h.net.branches[i].Elements {
+			el := &h.net.branches[i].Elements[e]
+			if _, ok := el.Law.(remembers); !ok || el.Kind != Leg {
+				continue
+			}
+			m := h.legs[next]
+			now, none := m.law.Now(&m.state), m.law.ByFluxDensity(&m.state, 0)
+			k.size[i] += el.Length * (math.Abs(now.H) + math.Abs(none.H))
+			next++
+		}
+	}
 }
 
 // TrialNodal gives the same state by [Network.SolveNodal], as a check.

@@ -1,0 +1,103 @@
+package dsl
+
+import (
+	"errors"
+	"io/fs"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"ampturn/magcirc"
+	"ampturn/magcirc/datafile"
+	"ampturn/magcirc/hyst"
+	"ampturn/magcirc/material"
+)
+
+// CurveData is a measured magnetisation curve, read from a file. It is a [Law].
+type CurveData struct {
+	bound  boundLaw
+	points *datafile.Points
+}
+
+// ReadCurve reads a magnetisation curve from a file beside the notebook. Its first line names columns and units, H in
+// A/m, kA/m or oersted, B in T, mT or gauss:
+//
+//	H (A/m), B (mT)
+//	50, 150
+//	100, 260
+//
+//	lot := NewMaterial("lot 12", ReadCurve("bh.csv"))
+func ReadCurve(file string) *CurveData {
+	p := readPoints(file)
+	return &CurveData{boundLaw{must(material.Points{Source: file, FirstRow: p.First, H: p.H, B: p.B}.Law())}, p}
+}
+
+// FieldStrengths are the field strengths of the points.
+func (c *CurveData) FieldStrengths() []AmperePerMetre {
+	c.given()
+	return append([]float64(nil), c.points.H...)
+}
+
+// FluxDensities are the flux densities of the points.
+func (c *CurveData) FluxDensities() []Tesla { c.given(); return append([]float64(nil), c.points.B...) }
+
+func (c *CurveData) below() material.Law { c.given(); return c.bound.law }
+
+func (c *CurveData) given() {
+	if c == nil || c.points == nil {
+		refuse(magcirc.BadValue, "curve", "there is none", `read it with ReadCurve("bh.csv")`)
+	}
+}
+
+// FluxDensity is the flux density at a field strength.
+func (c *CurveData) FluxDensity(field AmperePerMetre) Tesla {
+	c.given()
+	return c.bound.FluxDensity(field)
+}
+
+// MIMEBundle shows the curve in words.
+func (c *CurveData) MIMEBundle() map[string]any {
+	if c == nil || c.points == nil {
+		return nil
+	}
+	return c.bound.MIMEBundle()
+}
+
+// ReadLoop reads a measured loop from a file beside the notebook: one steady cycle, with columns as [ReadCurve] takes
+// them. A drift of B over the cycle is taken out and noted.
+func ReadLoop(file string) *Loop {
+	p := readPoints(file)
+	return &Loop{must(hyst.NewLoop(file, p.H, p.B)), file}
+}
+
+// readPoints reads a file of the notebook's folder.
+func readPoints(file string) *datafile.Points {
+	f := openBeside(file)
+	defer f.Close()
+	return must(datafile.ReadPoints(file, f))
+}
+
+// openBeside opens a file of the notebook's folder or below, and no other.
+func openBeside(file string) *os.File {
+	if strings.TrimSpace(file) == "" {
+		refuse(magcirc.BadValue, "file", "there is no name", `write ReadLoop("loop.csv")`)
+	}
+	if !filepath.IsLocal(file) {
+		refuse(magcirc.BadFile, file, "is outside the notebook's folder", "put the file beside the notebook")
+	}
+	root, err := os.OpenRoot(".")
+	check(err)
+	defer root.Close()
+	f, err := root.Open(filepath.Clean(file))
+	switch {
+	case errors.Is(err, fs.ErrNotExist):
+		refuse(magcirc.BadFile, file, "is not there", "put the file beside the notebook")
+	case err != nil:
+		refuse(magcirc.BadFile, file, "cannot be opened", "put a readable file beside the notebook")
+	}
+	if info, err := f.Stat(); err != nil || info.IsDir() {
+		f.Close()
+		refuse(magcirc.BadFile, file, "is no file", "name a file beside the notebook")
+	}
+	return f
+}
