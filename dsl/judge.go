@@ -158,6 +158,9 @@ func trace(v *review.Verdict, conditions []Condition) {
 	if a == nil {
 		return
 	}
+	if v.Unit == "?" && v.Rule.Unit == "?" {
+		v.Unit, v.Rule.Unit = a.unit, a.unit
+	}
 	v.Uncertainty = a.uncertainty()
 	v.Flip = func() string { return a.flip(v.Rule.Margin) }
 }
