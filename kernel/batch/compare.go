@@ -127,8 +127,15 @@ func summary(r diff.Revisions) string {
 	if r.None() {
 		return "Nothing moved."
 	}
-	return fmt.Sprintf("%d verdicts, %d values and %d inputs moved. What is not listed is the same within the tolerance of the comparison.",
-		len(r.Verdicts), len(r.Values), len(r.Inputs))
+	return fmt.Sprintf("Moved: %s, %s, %s. What is not listed is the same within the tolerance of the comparison.",
+		count(len(r.Verdicts), "verdict"), count(len(r.Values), "value"), count(len(r.Inputs), "input"))
+}
+
+func count(n int, what string) string {
+	if n == 1 {
+		return "1 " + what
+	}
+	return fmt.Sprintf("%d %ss", n, what)
 }
 
 // plain makes a text safe in Markdown.

@@ -15,6 +15,8 @@ type shownValue struct {
 	unit   string
 	number bool
 	text   string // of what is no number: its words
+
+	picture bool // the words are the twin of a picture
 }
 
 // shown compares what a cell shows in two revisions.
@@ -23,6 +25,7 @@ func (t Tolerance) shown(p pair, number, before map[*notebook.Cell]int, format F
 		return nil
 	}
 	cell := p.name(number, before)
+	named := func(v shownValue) string { return cell + ": " + shortened(v.name) }
 	old, now := valuesOf(p.old), valuesOf(p.now)
 	was := map[string]shownValue{}
 	for _, v := range old {
@@ -34,31 +37,50 @@ func (t Tolerance) shown(p pair, number, before map[*notebook.Cell]int, format F
 		is[v.name] = true
 		o, ok := was[v.name]
 		if !ok {
-			moved = append(moved, Moved{Name: cell + ": " + v.name, New: v.print(format)})
+			moved = append(moved, Moved{Name: named(v), New: v.print(format)})
 			continue
 		}
-		moved = append(moved, t.value(cell, o, v, format)...)
+		moved = append(moved, t.value(named(v), o, v, format)...)
 	}
 	for _, o := range old {
 		if !is[o.name] {
-			moved = append(moved, Moved{Name: cell + ": " + o.name, Old: o.print(format)})
+			moved = append(moved, Moved{Name: named(o), Old: o.print(format)})
 		}
 	}
 	return moved
 }
 
 // value compares one value.
-func (t Tolerance) value(cell string, o, v shownValue, format Format) []Moved {
+func (t Tolerance) value(name string, o, v shownValue, format Format) []Moved {
 	switch {
 	case o.number && v.number:
 		if o.unit == v.unit && t.same(o.value, v.value, fullNoise) {
 			return nil
 		}
-		return []Moved{{Name: cell + ": " + v.name, Old: o.print(format), New: v.print(format), Note: share(o.value, v.value)}}
+		return []Moved{{Name: name, Old: o.print(format), New: v.print(format), Note: share(o.value, v.value)}}
 	case o.number != v.number:
-		return []Moved{{Name: cell + ": " + v.name, Old: o.print(format), New: v.print(format)}}
+		return []Moved{{Name: name, Old: o.print(format), New: v.print(format)}}
 	}
-	return t.lines(cell+": "+v.name, o.text, v.text)
+	moved := t.lines(name, o.text, v.text)
+	if v.picture && len(moved) > 0 {
+		more := "picture"
+		if n := len(moved) - 1; n > 0 {
+			more = fmt.Sprintf("picture, with %d more of its lines", n)
+		}
+		moved[0].Note = more
+		return moved[:1]
+	}
+	return moved
+}
+
+// shortened cuts the middle of a long expression.
+func shortened(name string) string {
+	const most, end = 80, 25
+	r := []rune(name)
+	if len(r) <= most {
+		return name
+	}
+	return string(r[:most-end]) + " .. " + string(r[len(r)-end:])
 }
 
 // lines compares texts line by line.
@@ -128,7 +150,10 @@ func valuesOf(c *notebook.Cell) []shownValue {
 			name = "shown"
 		}
 		text, _ := o.Data["text/plain"].(string)
+		_, drawing := o.Data["image/svg+xml"]
+		_, bitmap := o.Data["image/png"]
 		for _, v := range inFull(name, meta, text) {
+			v.picture = drawing || bitmap
 			add(v)
 		}
 	}
