@@ -190,7 +190,11 @@ func conditionAnswer(value float64, conditions []Condition) *answer {
 func wantAnswer(elem string, value float64) *answer {
 	a := answerOf(value)
 	if a == nil {
-		refuse(magcirc.WrongUse, elem, phys.Format(value, "")+" did not come from an operating point as it is", `give the number itself: op.Inductance("N")`)
+		hint := "give the number itself: " + elem + `(op.Inductance("N"))`
+		if elem == "Basis" {
+			hint = "ask what it came from: Basis(op)"
+		}
+		refuse(magcirc.WrongUse, elem, phys.Format(value, "")+" did not come from an operating point as it is", hint)
 	}
 	return a
 }

@@ -260,3 +260,34 @@ func strongest(effects []tol.Effect, nominal float64) []tol.Effect {
 	})
 	return sorted
 }
+
+var cornerBasis = basisRow{"worst case", "every corner of the limits, and each tolerance alone", "definition", "results that rise or fall throughout with each tolerance"}
+
+var slopeBasis = basisRow{"worst case", "the corner that the slopes point to, improved one tolerance at a time", "definition", "more than 12 tolerances; results that rise or fall throughout with each of them"}
+
+var drawBasis = basisRow{"draws", "independent draws, uniform or normal between the limits; numbers from a mixing function of seed, draw and tolerance",
+	"G. L. Steele, D. Lea, C. H. Flood, OOPSLA 2014 (SplitMix)", "tolerances that are independent, or move together in named groups"}
+
+func (b *Band) basis() []basisRow {
+	b.given()
+	rows := []basisRow{drawBasis}
+	if b.worst != nil {
+		rows = []basisRow{slopeBasis}
+		if b.worst.Exhaustive {
+			rows = []basisRow{cornerBasis}
+		}
+	}
+	if b.from != nil {
+		rows = append(rows, b.from.op.basis()...)
+	}
+	return rows
+}
+
+// Notes lists what a reader must know about the result at nominal values.
+func (b *Band) Notes() []Remark {
+	b.given()
+	if b.from == nil {
+		return nil
+	}
+	return b.from.op.Notes()
+}

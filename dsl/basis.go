@@ -5,6 +5,8 @@ import (
 
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
+	"ampturn/magcirc/gap"
+	"ampturn/magcirc/phys"
 )
 
 // based is a result that knows its method, the method's published source and its validity.
@@ -15,18 +17,35 @@ type based interface {
 // basisRow is one method.
 type basisRow struct{ what, method, source, validity string }
 
-// Basis shows by which method a result was computed, where that is published and where it holds. A bare number does
-// not know: ask the operating point, the curve, the matrix, the gap comparison or the material it came from.
+// Basis shows by which method a result was computed, where that is published, where it holds, and the notes on it. A number is
+// known if an operating point gave it, as it gave it.
 func Basis(result any) *TableView {
-	b, ok := result.(based)
-	if !ok {
-		refuse(magcirc.WrongUse, "Basis", fmt.Sprintf("%T does not carry its method", result), "ask what it came from: Basis(op)")
-	}
-	t := doc.Table{Columns: []doc.Column{{Name: "what"}, {Name: "method"}, {Name: "source"}, {Name: "valid for"}}}
+	b, caption := basisOf(result)
+	t := doc.Table{Caption: caption, Columns: []doc.Column{{Name: "what"}, {Name: "method"}, {Name: "source"}, {Name: "valid for"}}}
 	for _, r := range b.basis() {
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.what), doc.Text(r.method), doc.Text(r.source), doc.Text(r.validity)})
 	}
+	if n, ok := b.(interface{ Notes() []Remark }); ok {
+		t.Notes = noteLines(n.Notes())
+	}
 	return &TableView{table: t}
+}
+
+// basisOf finds what knows the method behind a result.
+func basisOf(result any) (b based, caption string) {
+	switch r := result.(type) {
+	case based:
+		return r, ""
+	case float64:
+		a := wantAnswer("Basis", r)
+		return a.op, a.what + ": " + a.op.conditions()
+	case *Verdict:
+		r.given()
+		a := wantAnswer("Basis", r.kept.Value)
+		return a.op, r.kept.What + ", " + a.what + ": " + a.op.conditions()
+	}
+	refuse(magcirc.WrongUse, "Basis", fmt.Sprintf("%T does not carry its method", result), "ask what it came from: Basis(op)")
+	return nil, ""
 }
 
 var solutionBasis = basisRow{"fluxes", "loop fluxes of least energy by Newton's method with a line search",
@@ -49,7 +68,7 @@ func (m *model) gapBasis(c *MagneticCircuit) []basisRow {
 	for i := range c.paths {
 		for k := range c.paths[i].parts {
 			if r, ok := m.gaps[place{i, k}]; ok {
-				rows = append(rows, basisRow{c.paths[i].full(c.name, k), r.Method.String(), r.Source, r.Validity})
+				rows = append(rows, basisRow{c.paths[i].full(c.name, k), methodWords(r), r.Source, r.Validity})
 			}
 		}
 	}
@@ -111,4 +130,9 @@ func (m *InductanceMatrix) basis() []basisRow {
 func (e *EquivalentCircuit) basis() []basisRow {
 	e.given()
 	return append(e.matrix.basis(), equivalentBasis)
+}
+
+// methodWords is the method of a gap with what it leaves open.
+func methodWords(r gap.Result) string {
+	return r.Method.String() + ", uncertain by " + phys.FormatDigits(r.Uncertainty, "percent", 2)
 }
