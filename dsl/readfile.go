@@ -1,12 +1,14 @@
 package dsl
 
 import (
+	"bytes"
 	"errors"
 	"io/fs"
-	"os"
 	"path/filepath"
 	"strings"
+	"syscall"
 
+	"ampturn/dsl/session"
 	"ampturn/magcirc"
 	"ampturn/magcirc/datafile"
 	"ampturn/magcirc/hyst"
@@ -72,32 +74,25 @@ func ReadLoop(file string) *Loop {
 
 // readPoints reads a file of the notebook's folder.
 func readPoints(file string) *datafile.Points {
-	f := openBeside(file)
-	defer f.Close()
-	return must(datafile.ReadPoints(file, f))
+	return must(datafile.ReadPoints(file, bytes.NewReader(readBeside(file))))
 }
 
-// openBeside opens a file of the notebook's folder or below, and no other.
-func openBeside(file string) *os.File {
+// readBeside reads a file of the notebook's folder or below, and no other. The notebook's provenance names it.
+func readBeside(file string) []byte {
 	if strings.TrimSpace(file) == "" {
 		refuse(magcirc.BadValue, "file", "there is no name", `write ReadLoop("loop.csv")`)
 	}
 	if !filepath.IsLocal(file) {
 		refuse(magcirc.BadFile, file, "is outside the notebook's folder", "put the file beside the notebook")
 	}
-	root, err := os.OpenRoot(".")
-	check(err)
-	defer root.Close()
-	f, err := root.Open(filepath.Clean(file))
+	data, err := session.ReadFile(file)
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
 		refuse(magcirc.BadFile, file, "is not there", "put the file beside the notebook")
-	case err != nil:
-		refuse(magcirc.BadFile, file, "cannot be opened", "put a readable file beside the notebook")
-	}
-	if info, err := f.Stat(); err != nil || info.IsDir() {
-		f.Close()
+	case errors.Is(err, syscall.EISDIR):
 		refuse(magcirc.BadFile, file, "is no file", "name a file beside the notebook")
+	case err != nil:
+		refuse(magcirc.BadFile, file, "cannot be read", "put a readable file beside the notebook")
 	}
-	return f
+	return data
 }
