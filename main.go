@@ -25,22 +25,30 @@ import (
 	"ampturn/magcirc/phys"
 )
 
-// joined is the cell engine whose cells send what the vocabulary shows to their own sink.
-type joined struct{ *cell.Session }
-
-func (j joined) Run(ctx context.Context, c kernel.Cell, out kernel.Sink) kernel.Outcome {
-	session.Attach(pass(out))
-	return j.Session.Run(ctx, c, out)
-}
-
 // newEngine joins the cell language and the vocabulary for a fresh notebook.
 func newEngine() (kernel.Engine, error) {
 	session.Reset()
 	s, err := cell.New(vocabulary(), cell.Hooks{
 		Begin: session.BeginCell, End: func(_ string, failed bool) { session.EndCell(failed) },
-		Context: session.SetContext, Pass: session.EndPass,
+		Context: session.SetContext, Pass: session.EndPass, Hold: session.Hold,
+		Sink: func(out kernel.Sink) { session.Attach(pass(out)) },
 	})
-	return joined{s}, err
+	if err != nil {
+		return nil, err
+	}
+	session.Serve(session.Runner{Ask: s.Ask, Later: s.Later, Aside: s.Aside, Names: names(s), Help: s.Help})
+	return s, nil
+}
+
+// names lists the names of a notebook for the vocabulary.
+func names(s *cell.Session) func() []session.Name {
+	return func() []session.Name {
+		var list []session.Name
+		for _, n := range s.Names() {
+			list = append(list, session.Name(n))
+		}
+		return list
+	}
 }
 
 // pass hands what the vocabulary shows to a sink.
@@ -48,6 +56,8 @@ func pass(out kernel.Sink) func(session.Output) {
 	return func(o session.Output) {
 		kind := kernel.Display
 		switch {
+		case o.Page:
+			kind = kernel.Page
 		case o.Clear:
 			kind = kernel.Clear
 		case o.Stream != "":

@@ -145,7 +145,7 @@ func WorstCase(same func(s *Sample) Value) *Band { return WorstCaseWithUnits(nil
 func WorstCaseWithUnits(units []string, same func(s *Sample) Value) *Band {
 	b, f := survey("WorstCase", unitOf(unitAt(units, 0)), same)
 	defer sampling.Add(-1)
-	w := must(tol.WorstCase(session.Context(), f, below(b.inputs)))
+	w := must(tol.WorstCase(session.Context(), watched("WorstCase", 0, f), below(b.inputs)))
 	b.worst, b.nominal, b.min, b.max, b.atMin, b.atMax, b.effects = w, w.Nominal, w.Min, w.Max, w.AtMin, w.AtMax, w.Effects
 	return b
 }
@@ -176,7 +176,7 @@ func MonteCarloWithUnits(units []string, count, seed Count, same func(s *Sample)
 	if compiled(same) {
 		d.Workers = runtime.GOMAXPROCS(0)
 	}
-	r := must(tol.MonteCarlo(session.Context(), f, below(b.inputs), d))
+	r := must(tol.MonteCarlo(session.Context(), watched("MonteCarlo", count, f), below(b.inputs), d))
 	b.drawn, b.seed = r, uint64(seed)
 	b.nominal, b.min, b.max, b.atMin, b.atMax, b.effects = r.Nominal, r.Min, r.Max, r.AtMin, r.AtMax, r.Effects
 	b.assume()

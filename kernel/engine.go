@@ -103,3 +103,12 @@ type Closer interface {
 	// Close is called once, after the last cell has ended or was left behind.
 	Close() error
 }
+
+// Background is an [Engine] whose cells may leave work that runs after them, between other cells. What it shows goes to
+// the sink of the cell that left it.
+type Background interface {
+	// Interrupt ends such work. It is called when no cell runs.
+	Interrupt()
+	// Settle waits until none is left; when ctx ends it interrupts what is.
+	Settle(ctx context.Context)
+}

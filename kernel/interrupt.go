@@ -12,12 +12,16 @@ func (k *Kernel) interrupt(_ context.Context, r *request) {
 	})
 }
 
-// Interrupt interrupts the running cell, if there is one.
+// Interrupt interrupts the running cell; if there is none, the work that earlier cells left behind.
 func (k *Kernel) Interrupt() {
 	k.mu.Lock()
 	defer k.mu.Unlock()
 	if k.running != nil {
 		k.running()
+		return
+	}
+	if b, ok := k.engine.(Background); ok {
+		b.Interrupt()
 	}
 }
 

@@ -21,6 +21,7 @@ type Output struct {
 	Data     map[string]any // MIME bundle of a display or an update
 	Metadata map[string]any // beside it
 	ID       string         // identity of a display that may be updated later; "" for none
+	Page     bool           // to be read beside the notebook
 	Update   bool           // replaces the data of the display with this ID
 	Stream   string         // "stdout" or "stderr": Text belongs to that stream
 	Text     string

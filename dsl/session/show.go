@@ -35,6 +35,19 @@ func Place(id string, data map[string]any) { send(Output{Data: data, ID: id}) }
 // Update replaces what stands at a place.
 func Update(id string, data map[string]any) { send(Output{Data: data, ID: id, Update: true}) }
 
+// PlaceWith is [Place] with metadata beside the bundle.
+func PlaceWith(id string, data, metadata map[string]any) {
+	send(Output{Data: data, Metadata: metadata, ID: id})
+}
+
+// UpdateWith is [Update] with metadata beside the bundle.
+func UpdateWith(id string, data, metadata map[string]any) {
+	send(Output{Data: data, Metadata: metadata, ID: id, Update: true})
+}
+
+// Page shows a MIME bundle beside the notebook, where the front end has a place for it.
+func Page(data map[string]any) { send(Output{Data: data, Page: true}) }
+
 // Write sends text to a stream, "stdout" or "stderr".
 func Write(stream, text string) { send(Output{Stream: stream, Text: text}) }
 

@@ -198,6 +198,7 @@ func (c *checking) declarations() (bad []problem) {
 
 // helps takes types and packages that stand alone out of the statements: their help is shown.
 func (c *checking) helps() {
+	c.quoteHelp()
 	for i, s := range c.p.stmts {
 		e, ok := s.(*ast.ExprStmt)
 		if !ok {

@@ -203,7 +203,7 @@ func (l *lowering) vocabularyCall(e *ast.CallExpr, o types.Object, sig *types.Si
 	case path == l.s.voc.Open && o.Name() == "Show" && !method && !e.Ellipsis.IsValid() && alone:
 		for _, a := range e.Args {
 			l.flush()
-			l.showValue(a)
+			l.showValue(a, false)
 		}
 		return "", true
 	}
@@ -253,6 +253,9 @@ func (l *lowering) unitTexts(e *ast.CallExpr) []string {
 
 func (l *lowering) conversion(e *ast.CallExpr, to types.Type) string {
 	x := e.Args[0]
+	if o := l.converted(e); o != nil && l.floats[o] != "" {
+		return l.floats[o]
+	}
 	if compiledInterface(to) {
 		return l.convert(x, to)
 	}

@@ -20,9 +20,8 @@ func (s *Session) addMark(m mark) int {
 	return len(s.marks) - 1
 }
 
-// showValue writes the call that shows a value.
-func (l *lowering) showValue(x ast.Expr) {
-	top := l.fn.top
+// showValue writes the call that shows a value; top tells that it is that of an expression statement of the cell.
+func (l *lowering) showValue(x ast.Expr, top bool) {
 	if t, ok := l.info.TypeOf(x).(*types.Tuple); ok {
 		names := l.tuple(x)
 		l.flush()

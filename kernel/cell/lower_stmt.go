@@ -136,7 +136,7 @@ func (l *lowering) exprStmt(s *ast.ExprStmt) {
 			return
 		}
 		if t := l.info.TypeOf(s.X); t != nil && !l.info.Types[s.X].IsVoid() && !l.prints(s.X) {
-			l.showValue(s.X)
+			l.showValue(s.X, l.fn.top)
 			return
 		}
 	}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"reflect"
 
+	"ampturn/kernel"
 	"ampturn/kernel/cell/unit"
 )
 
@@ -48,4 +49,6 @@ type Hooks struct {
 	End     func(key string, failed bool)
 	Context func(context.Context) // the context that ends when the running cell is interrupted
 	Pass    func()                // after each pass of a loop at the top level of a cell
+	Sink    func(kernel.Sink)     // where what is shown goes, before a cell runs
+	Hold    func() (back func())  // back makes the state of the vocabulary again what it is now
 }

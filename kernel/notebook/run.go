@@ -117,6 +117,9 @@ func runCell(ctx context.Context, c *Cell, report *CellReport, engine kernel.Eng
 	sink := shown.sink(c)
 	start := time.Now()
 	outcome := engine.Run(ctx, kernel.Cell{ID: c.ID, Number: report.Number, Source: c.Source}, sink)
+	if b, ok := engine.(kernel.Background); ok {
+		b.Settle(ctx) // what the cell left for later is shown before the next one runs
+	}
 	report.Seconds = time.Since(start).Seconds()
 	report.Fault = outcome.Fault
 	switch {
