@@ -283,6 +283,9 @@ func off(got, want float64) string {
 
 // Statement says in a sentence how far the law can follow what was measured.
 func Statement(rms float64, records []Fitted) string {
+	if rms < 1e-6 {
+		return "follows the records to their last digits"
+	}
 	s := "follows the records within " + percent(rms) + " rms of their largest B"
 	switch {
 	case rms < 0.01:
