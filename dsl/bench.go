@@ -77,31 +77,47 @@ func (b *BenchReading) explain() {
 	}
 }
 
-// countTurns asks the model with a turn less and a turn more.
+// mostTurnsOff is how many turns a winding may be off in an explanation.
+const mostTurnsOff = 200
+
+// countTurns asks the model with a turn less, two less, or more, until it passes the measured value, and keeps the nearer of
+// the last two.
 func (b *BenchReading) countTurns(winding string) {
 	c := &b.from.op.circuit
 	name := c.windings()[c.windingOf(winding)]
-	for _, step := range []float64{-1, 1} {
-		turns := 0.0
-		next := c.changed(func(paths []path) {
-			for i := range paths {
-				for k, part := range paths[i].parts {
-					if w, ok := part.(WindingPart); ok && paths[i].names[k] == name && turns == 0 {
-						turns = w.turns + step
-						w.turns = turns
-						paths[i].parts[k] = w
-					}
+	own := c.turnsOn(name)
+	step := math.Copysign(1, b.measured-b.model)
+	best := turnCase{own, b.model}
+	for n := 1.0; n <= mostTurnsOff && own+step*n >= 1; n++ {
+		next := c.changed(moreTurns(name, step*n))
+		next.drawn = true
+		value := 0.0
+		if err := Try(func() { value = b.from.ask(next.solved(b.from.op.drive)) }); err != nil {
+			return
+		}
+		if math.Abs(value-b.measured) < math.Abs(best.value-b.measured) {
+			best = turnCase{own + step*n, value}
+		}
+		if (value-b.measured)*step > 0 {
+			break
+		}
+	}
+	if best.turns != own {
+		b.turns = []turnCase{best}
+	}
+}
+
+// moreTurns adds turns to the first part of a winding.
+func moreTurns(winding string, more float64) func(paths []path) {
+	return func(paths []path) {
+		for i := range paths {
+			for k, part := range paths[i].parts {
+				if w, ok := part.(WindingPart); ok && paths[i].names[k] == winding {
+					w.turns += more
+					paths[i].parts[k] = w
+					return
 				}
 			}
-		})
-		if turns < 1 {
-			continue
-		}
-		next.drawn = true
-		if err := Try(func() {
-			b.turns = append(b.turns, turnCase{turns, b.from.ask(next.solved(b.from.op.drive))})
-		}); err != nil {
-			continue
 		}
 	}
 }
@@ -149,9 +165,7 @@ func (b *BenchReading) table() doc.Table {
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(in.Name), doc.Text(signed(m.By, unit)), doc.Text(phys.Format(m.To, in.Unit)), doc.Text(in.fits(m))})
 	}
 	for _, c := range b.turns {
-		if math.Abs(c.value-b.measured) < math.Abs(b.model-b.measured) {
-			t.Rows = append(t.Rows, []doc.Cell{doc.Text("turns"), doc.Text(""), doc.Text(phys.Format(c.turns, "")), doc.Text("model then " + phys.Format(c.value, b.unit))})
-		}
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text("turns"), doc.Text(""), doc.Text(phys.Format(c.turns, "")), doc.Text("model then " + phys.Format(c.value, b.unit))})
 	}
 	t.Notes = b.notes()
 	return t

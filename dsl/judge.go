@@ -148,7 +148,7 @@ func judged(what string, value float64, unit string, bound Bound, conditions []C
 func trace(v *review.Verdict, conditions []Condition) {
 	for _, c := range conditions {
 		if b, ok := c.(*Band); ok {
-			if b.from != nil {
+			if b.from != nil && v.Value >= b.min && v.Value <= b.max && (v.Unit == b.unit || v.Unit == "?") { // not a Cpk or a yield
 				v.Uncertainty = b.from.uncertainty()
 			}
 			return

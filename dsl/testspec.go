@@ -190,6 +190,9 @@ func (t *TestSheet) rowOf(item testItem) ([]doc.Cell, bool) {
 	source := "forecast of the tolerances"
 	if b, ok := t.demands[item.what]; ok {
 		low, high, source = b.rule.Low, b.rule.High, "asked: "+b.rule.String()
+		if nominal < low || nominal > high {
+			source += "; the model's nominal value lies outside"
+		}
 	}
 	meter := t.meter
 	if meter == "" {
@@ -261,13 +264,17 @@ func (t *TestSheet) table() doc.Table {
 	d := doc.Table{Caption: "test specification of " + t.circuit.state() + ", meter uncertain by " + phys.Format(t.gauge, "percent"),
 		Columns: []doc.Column{{Name: "item"}, {Name: "connection"}, {Name: "frequency, level, bias, temperature"}, {Name: "nominal", Mixed: true}, {Name: "low", Mixed: true}, {Name: "high", Mixed: true},
 			{Name: "guard band", Mixed: true}, {Name: "limits from"}}}
+	var none []string
 	for _, item := range t.items() {
 		row, ok := t.rowOf(item)
 		if !ok {
-			d.Notes = append(d.Notes, item.what+": none in the model, which has no path for it; add a Permeance path or measure samples")
+			none = append(none, item.what)
 			continue
 		}
 		d.Rows = append(d.Rows, row)
+	}
+	if len(none) > 0 {
+		d.Notes = append(d.Notes, "not in the model, for its windings share one path: "+strings.Join(none, "; ")+". Add Permeance paths between them, or measure samples")
 	}
 	d.Rows = append(d.Rows, t.ratios()...)
 	for _, open := range []string{"resistance of each winding", "insulation resistance and dielectric withstand"} {

@@ -167,7 +167,7 @@ func TestWorking(t *testing.T) {
 	contains(t, text(t, Working(v)), "incremental inductance of T1.main")
 	contains(t, refused(t, func() { Working(2 * op.Inductance("main")) }).Error(), "did not come from an operating point as it is")
 	contains(t, refused(t, func() { Working("x") }).Error(), "is not one number")
-	contains(t, refused(t, func() { Working(op.Energy()) }).Error(), "has no lines for a energy")
+	contains(t, refused(t, func() { Working(op.Energy()) }).Error(), "has no lines for energy")
 }
 
 func TestBench(t *testing.T) {

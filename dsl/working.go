@@ -66,7 +66,7 @@ func (a *answer) working() working.Working {
 		}
 		return working.Leakage(l1, l2, mutual, a.value)
 	}
-	refuse(magcirc.WrongUse, "Working", "has no lines for a "+string(a.kind), "ask for an inductance, a flux density, a flux, an mmf, a linkage, a coupling or a leakage; Basis(op) names the method")
+	refuse(magcirc.WrongUse, "Working", "has no lines for "+string(a.kind), "ask for an inductance, a flux density, a flux, an mmf, a linkage, a coupling or a leakage; Basis(op) names the method")
 	return working.Working{}
 }
 

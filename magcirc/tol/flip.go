@@ -23,7 +23,7 @@ type Move struct {
 // Inputs: margin, of a result: positive on one side of the bound, negative on the other.
 // Errors: as [Effects]; a move into values that f refuses ends the search of that input.
 func Flip(ctx context.Context, f Function, inputs []Input, margin func(y float64) float64) (Move, bool, error) {
-	all, err := moves(ctx, f, inputs, margin, tried)
+	all, err := moves(ctx, f, inputs, margin, tried, reach)
 	if err != nil || len(all) == 0 {
 		return Move{}, false, err
 	}
@@ -31,19 +31,19 @@ func Flip(ctx context.Context, f Function, inputs []Input, margin func(y float64
 }
 
 // Explain gives for each input the move that by itself makes the result a wanted one, the shortest in units of the inputs'
-// Scale first; inputs that cannot within ten times their Scale are left out.
+// Scale first; inputs that cannot within fifty times their Scale are left out.
 //
 // Errors: as [Flip].
 func Explain(ctx context.Context, f Function, inputs []Input, want float64) ([]Move, error) {
-	return moves(ctx, f, inputs, func(y float64) float64 { return y - want }, len(inputs))
+	return moves(ctx, f, inputs, func(y float64) float64 { return y - want }, len(inputs), 5*reach)
 }
 
-func moves(ctx context.Context, f Function, inputs []Input, margin func(y float64) float64, most int) ([]Move, error) {
+func moves(ctx context.Context, f Function, inputs []Input, margin func(y float64) float64, most int, far float64) ([]Move, error) {
 	y, err := value(f, nominal(inputs))
 	if err != nil {
 		return nil, err
 	}
-	s := &flip{ctx: ctx, f: f, inputs: inputs, margin: margin, nominal: margin(y)}
+	s := &flip{ctx: ctx, f: f, inputs: inputs, margin: margin, nominal: margin(y), reach: far}
 	var all []Move
 	order := s.ranked()
 	for _, i := range order[:min(len(order), most)] {
@@ -65,9 +65,10 @@ type flip struct {
 	margin  func(y float64) float64
 	nominal float64
 	guess   []float64 // by input: the move that a straight line would need
+	reach   float64   // how far an input is moved, in units of its scale
 }
 
-// reach is how far an input is moved, in units of its scale.
+// reach is how far an input is moved to turn a verdict, in units of its scale.
 const reach = 10
 
 // tried is how many inputs are moved by the function itself.
@@ -110,7 +111,7 @@ func (s *flip) ranked() []int {
 			continue
 		}
 		s.guess[i] = -s.nominal / slope
-		if math.Abs(s.guess[i]) < 5*reach*scale {
+		if math.Abs(s.guess[i]) < 5*s.reach*scale {
 			order = append(order, i)
 		}
 	}
@@ -124,7 +125,7 @@ func (s *flip) ranked() []int {
 func (s *flip) seek(i int) (Move, bool) {
 	in := s.inputs[i]
 	side := math.Copysign(1, s.guess[i])
-	most := reach * in.scale()
+	most := s.reach * in.scale()
 	near, far := 0.0, math.Min(math.Max(math.Abs(s.guess[i]), 1e-6*in.scale()), most)
 	mNear := s.nominal
 	if mNear == 0 {
