@@ -25,6 +25,7 @@ type commands struct {
 	Compare compareCommand `cmd:"" help:"Tell what moved between two run notebooks: verdicts, values, inputs."`
 	New     newCommand     `cmd:"" help:"Write a notebook to start from."`
 	Manual  manualCommand  `cmd:"" help:"Write the manual as a notebook and a page; all of its examples run meanwhile."`
+	Export  exportCommand  `cmd:"" help:"Write a notebook as one Go program, which go run accepts in a clone of the source."`
 	Install installCommand `cmd:"" help:"Register the kernel with Jupyter."`
 	Remove  removeCommand  `cmd:"" help:"Take the kernel's entry out of Jupyter again."`
 	Kernel  kernelCommand  `cmd:"" help:"Serve a Jupyter front end; Jupyter calls this."`
@@ -137,6 +138,7 @@ func (c *kernelCommand) Run(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
+	session.SetLive(true)
 	return kernel.Serve(context.WithoutCancel(ctx), c.Connection, engine, nil)
 }
 
