@@ -164,7 +164,7 @@ func TestRefusedSamples(t *testing.T) {
 		"there is no function":             func() { WorstCase(nil) },
 		"is not below the upper one":       func() { WorstCase(func(s *Sample) Value { return s.Between("a", 2, 1) }) },
 		"is not below the nominal value":   func() { Gap(0.45 * mm).PlusMinus(2 * mm) },
-		"tolerance 2 is outside 0..0.99":       func() { Gap(0.45 * mm).Tolerance(2) },
+		"tolerance 2 is outside 0..0.99":   func() { Gap(0.45 * mm).Tolerance(2) },
 		"result at nominal values":         func() { WorstCase(func(s *Sample) Value { return math.NaN() }) },
 	} {
 		calls = 0

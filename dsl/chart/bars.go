@@ -85,13 +85,25 @@ func (b *Bars) SVG() string {
 		begin := x(b.from(i) * r.factor)
 		x0, x1 := math.Min(begin, x(v)), math.Max(begin, x(v))
 		fmt.Fprintf(&cv.body, `<rect x="%s" y="%s" width="%s" height="%d" fill="%s"/>`+"\n", num(x0), num(y), num(math.Max(x1-x0, 1)), barHeight, hex(strokes[0].paint))
-		cv.words(left-8, y+barHeight-4, 0, "end", fontSize, inkHex, n)
+		cv.words(left-8, y+barHeight-4, 0, "end", fontSize, inkHex, shorten(n, left-24))
 		cv.words(x1+5, y+barHeight-4, 0, "start", fontSize, inkHex, phys.Format(b.Values[i], b.Axis.Unit))
 		if b.From != nil {
 			cv.words(x0-5, y+barHeight-4, 0, "end", fontSize, inkHex, phys.Format(b.From[i], b.Axis.Unit))
 		}
 	}
 	return cv.svg(b.Title, b.describe())
+}
+
+// shorten cuts a name that has no room; the text twin has it in full.
+func shorten(name string, room float64) string {
+	letters := []rune(name)
+	if extent(name) <= room {
+		return name
+	}
+	for len(letters) > 1 && extent(string(letters)+"...") > room {
+		letters = letters[:len(letters)-1]
+	}
+	return string(letters) + "..."
 }
 
 // ruler spans zero, all bars and the finite ends of the limits.

@@ -41,6 +41,39 @@ func samples() map[string]interface{ SVG() string } {
 		"bars": &chart.Bars{Title: "Reluctance of one gap by five methods", Axis: chart.Axis{Label: "reluctance", Unit: "1/H"},
 			Names: []string{"no fringing", "add the gap", "logarithmic rule", "conformal map", "field solution"}, Values: []float64{5.77e6, 5.2e6, 4.7e6, 4.62e6, 4.6e6},
 			Bands: []chart.Band{{Low: math.Inf(-1), High: 4.4e6, Text: "at least 4.4e6"}}},
+		"tornado": &chart.Bars{Title: "Each tolerance alone", Axis: chart.Axis{Label: "inductance", Unit: "H"}, Middle: 8.2e-6, Names: []string{"length of gap L1.core.gap", "permeability"},
+			From: []float64{7.8e-6, 8.0e-6}, Values: []float64{8.5e-6, 8.3e-6}},
+		"histogram": histogram(),
+	}
+}
+
+// histogram is one of seven draws in three bins.
+func histogram() *chart.Chart {
+	h := chart.Histogram("Seven draws", chart.Axis{Label: "inductance", Unit: "H"}, []float64{7e-6, 8e-6, 9e-6, 10e-6}, []int{1, 4, 2})
+	h.Bands = []chart.Band{{Low: math.Inf(-1), High: 7.5e-6, Text: "at least 7.5 uH", OnX: true}}
+	return h
+}
+
+func TestHistogramSaysItsBins(t *testing.T) {
+	h := histogram()
+	for _, want := range []string{"7 draws from 7 uH to 10 uH in 3 bins", "most of them (4) between 8 uH and 9 uH", "limit: at least 7.5 uH"} {
+		if !strings.Contains(h.Text(), want) {
+			t.Errorf("%q is missing in %s", want, h.Text())
+		}
+	}
+	if chart.Histogram("wrong", chart.Axis{}, []float64{1, 2}, []int{1, 2}).Check() == nil {
+		t.Error("edges and counts that do not fit pass")
+	}
+}
+
+func TestTornadoSaysBothEnds(t *testing.T) {
+	b := samples()["tornado"].(*chart.Bars)
+	if !strings.Contains(b.Text(), "length of gap L1.core.gap: 7.8 uH .. 8.5 uH") {
+		t.Error(b.Text())
+	}
+	b.From = b.From[:1]
+	if b.Check() == nil {
+		t.Error("a missing beginning passes")
 	}
 }
 

@@ -176,6 +176,9 @@ func TestThinMargin(t *testing.T) {
 	if want := "PASS - margin below uncertainty"; v.StatusWords() != want || !strings.HasSuffix(v.Line(), want) {
 		t.Errorf("got %q", v.Line())
 	}
+	if want := `limit "Lp": 584 uH is within 4 uH of the bound 580 uH..680 uH, less than its uncertainty (17.5 uH): PASS - margin below uncertainty`; v.Line() != want {
+		t.Errorf("got %s", v.Line())
+	}
 	v.Uncertainty = 0.005
 	if v.StatusWords() != "PASS" {
 		t.Errorf("uncertainty below the margin: %q", v.StatusWords())
