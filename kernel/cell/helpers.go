@@ -31,7 +31,7 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"Panic":     reflect.ValueOf(func(v any) { panic(userPanic{v}) }),
 		"At":        reflect.ValueOf(func(k int) { at.Store(int64(k)) }),
 		"Poll": reflect.ValueOf(func() {
-			if atomic.LoadInt32(s.machine.stop) != 0 {
+			if s.machine.poll.Load() {
 				panic(interrupted{})
 			}
 		}),

@@ -46,6 +46,7 @@ type lowering struct {
 	src     *source
 	fn      *frame
 	locals  map[types.Object]string
+	floats  map[types.Object]string // float64 that goes along with a loop variable
 	taken   map[string]int
 	imports map[string]bool
 	newImp  []string
@@ -77,7 +78,7 @@ type loop struct {
 // lower writes a checked cell as text.
 func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 	l := &lowering{
-		s: s, r: r, info: r.info, unit: unit, src: r.src, locals: map[types.Object]string{}, taken: map[string]int{},
+		s: s, r: r, info: r.info, unit: unit, src: r.src, locals: map[types.Object]string{}, floats: map[types.Object]string{}, taken: map[string]int{},
 		imports: map[string]bool{}, pending: map[*live]bool{},
 	}
 	for _, t := range r.types {
@@ -326,7 +327,7 @@ func (l *lowering) stopCheck() {
 		l.line("%s()", l.nb("Poll"))
 		return
 	}
-	l.line("if nb__stop != 0 { %s() }", l.nb("Interrupt"))
+	l.line("if nb__stop { %s() }", l.nb("Interrupt"))
 }
 
 // enter and leave count the depth of calls in functions that may call themselves.

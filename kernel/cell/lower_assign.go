@@ -18,11 +18,16 @@ func (l *lowering) assign(s *ast.AssignStmt) {
 	y := l.expr(s.Rhs[0])
 	l.flush()
 	if _, ok := ast.Unparen(s.Lhs[0]).(*ast.Ident); ok {
+		if v := l.info.Types[s.Rhs[0]].Value; v != nil && steady(operators[op]) {
+			y = l.bare(v, l.info.TypeOf(s.Lhs[0]), y)
+		}
 		l.line("%s %s= %s", x, op, y) // the fastest form
 		return
 	}
 	l.line("%s = %s %s %s", x, x, op, l.wrap(s.Rhs[0], y))
 }
+
+var operators = map[string]token.Token{"+": token.ADD, "-": token.SUB, "*": token.MUL, "/": token.QUO}
 
 // target is where a value goes.
 type target struct {

@@ -266,6 +266,9 @@ func (l *lowering) binary(e *ast.BinaryExpr) string {
 	} else {
 		texts = l.list([]ast.Expr{x, y}, []types.Type{l.info.TypeOf(x), l.info.TypeOf(y)})
 	}
+	if steady(e.Op) {
+		texts[0], texts[1] = l.beside(x, y, texts[0]), l.beside(y, x, texts[1])
+	}
 	return l.wrap(x, texts[0]) + " " + e.Op.String() + " " + l.wrap(y, texts[1])
 }
 

@@ -62,7 +62,7 @@ func (l *lowering) held(objs map[types.Object]bool, n ast.Node) (held, set bool)
 
 // loopBody writes the body of a loop between its stop check and what is due before the next pass.
 func (l *lowering) loopBody(label string, first, next []string, body []ast.Stmt) {
-	if l.fn.top && len(l.fn.loops) == 0 && l.s.hooks.Pass != nil {
+	if l.fn.top && len(l.fn.loops) == 0 && l.s.hooks.Pass != nil && l.passes(body) {
 		next = append(next, l.nb("Pass")+"()")
 	}
 	l.fn.loops = append(l.fn.loops, &loop{label: label, next: next})
@@ -115,13 +115,15 @@ func (l *lowering) forStmt(s *ast.ForStmt, label string) {
 			post = l.postText(s.Post)
 		}
 		l.flush()
+		c := l.countFor(s)
 		l.label(label)
 		if post == "" {
 			l.line("for %s {", cond)
 		} else {
 			l.line("for ; %s; %s {", cond, post)
 		}
-		l.loopBody(label, nil, nil, s.Body.List)
+		l.loopBody(label, nil, c.step(), s.Body.List)
+		l.done(c)
 		return
 	}
 	begun := l.name("begun")
@@ -251,6 +253,7 @@ func (l *lowering) bind(e ast.Expr, tok token.Token, body ast.Node) (name string
 func (l *lowering) rangeList(s *ast.RangeStmt, label, x string) {
 	k, first := l.bind(s.Key, s.Tok, s.Body)
 	v, more := l.bind(s.Value, s.Tok, s.Body)
+	c := l.countKey(s)
 	l.label(label)
 	switch {
 	case k == "_" && v == "_":
@@ -261,7 +264,22 @@ func (l *lowering) rangeList(s *ast.RangeStmt, label, x string) {
 	default:
 		l.line("for %s, %s := range %s {", k, v, x)
 	}
-	l.loopBody(label, append(first, more...), nil, s.Body.List)
+	l.loopBody(label, append(first, more...), c.step(), s.Body.List)
+	l.done(c)
+}
+
+// countKey prepares the float64 of a loop over whole numbers or a list.
+func (l *lowering) countKey(s *ast.RangeStmt) *counter {
+	id, ok := s.Key.(*ast.Ident)
+	if !ok || s.Tok != token.DEFINE || id.Name == "_" || l.info.Defs[id] == nil || isText(l.info.TypeOf(s.X)) {
+		return nil
+	}
+	return l.count(l.info.Defs[id], "0", s.Body)
+}
+
+func isText(t types.Type) bool {
+	b, ok := t.Underlying().(*types.Basic)
+	return ok && b.Info()&types.IsString != 0
 }
 
 func (l *lowering) rangeInt(s *ast.RangeStmt, label string) {
@@ -277,7 +295,7 @@ func (l *lowering) rangeInt(s *ast.RangeStmt, label string) {
 	typ := l.typ(t)
 	end := ""
 	if v := l.info.Types[s.X].Value; v != nil {
-		end = l.literal(v, types.Default(t))
+		end = l.bare(v, types.Default(t), l.literal(v, types.Default(t)))
 	} else {
 		end = l.hold(l.expr(s.X))
 	}
@@ -286,9 +304,11 @@ func (l *lowering) rangeInt(s *ast.RangeStmt, label string) {
 		k = l.name("k")
 	}
 	l.flush()
+	c := l.countKey(s)
 	l.label(label)
 	l.line("for %s := %s(0); %s < %s; %s++ {", k, typ, k, end, k)
-	l.loopBody(label, first, nil, s.Body.List)
+	l.loopBody(label, first, c.step(), s.Body.List)
+	l.done(c)
 }
 
 func (l *lowering) rangeMap(s *ast.RangeStmt, label string, m *types.Map) {

