@@ -13,11 +13,15 @@
 //	BiasCurve GapFor CurrentFor TurnsFor              inductance over current; the number that meets a demand
 //	At, With(Length(...))                             the circuit hot; a variant
 //	FromReadings                                      coupling and leakage from meter readings
+//	PlusMinus, Tolerance, Normal, Together            tolerances of parts and materials
+//	WorstCase MonteCarlo: s.Part, s.Of, s.Between     a result over tolerances: Min, Max, Cpk, Plot, Tornado
 //	Limit Require AtMost AtLeast Within Tolerance     verdicts
 //	  Corner OpenPoint Waive Verdicts Assumptions
 //	Plot Series Line Bars TableOf Span                pictures and tables
 //	Show Note Cite Warn Revision SVG HTML Clear       what stands in the document
-//	Try Basis                                         the failure as a value; method, source and validity of a result
+//	Working Basis                                     the lines of a result; its method, source and validity
+//	Bench SideBySide TestSpec SignOff                 the model against a reading; two circuits; limits for the supplier
+//	Try                                               the failure as a value
 //
 // Six lines:
 //
