@@ -3,6 +3,8 @@ package main
 import (
 	"bytes"
 	"context"
+	"io"
+	"path/filepath"
 	"regexp"
 	"strings"
 	"testing"
@@ -78,4 +80,25 @@ func runText(t *testing.T, name string, text []byte) (*notebook.Notebook, string
 		t.Fatal(err)
 	}
 	return out, said.String()
+}
+
+// TestPagesInBrowser looks, as at the examples, at the manual, the starting notebooks and a page of what moved.
+func TestPagesInBrowser(t *testing.T) {
+	out := t.TempDir()
+	s := settings()
+	s.Out, s.Report, s.Trouble = out, io.Discard, io.Discard
+	ctx := context.Background()
+	batch.RunText(ctx, manual.Name, manual.Notebook, s)
+	t.Run("manual", func(t *testing.T) { look(t, filepath.Join(out, "manual.html"), 60) })
+	for _, kind := range start.Kinds() {
+		text, _ := start.Like(kind)
+		batch.RunText(ctx, kind+".ipynb", text, s)
+		t.Run(kind, func(t *testing.T) { look(t, filepath.Join(out, kind+".html"), 12) })
+	}
+	text, _ := start.Like("flyback")
+	batch.RunText(ctx, "revised.ipynb", bytes.ReplaceAll(text, []byte("Gap(1.4*mm)"), []byte("Gap(1.3*mm)")), s)
+	if code := batch.Compare(filepath.Join(out, "flyback.ipynb"), filepath.Join(out, "revised.ipynb"), s); code != batch.Differ {
+		t.Fatalf("a gap that was changed moves nothing: %d", code)
+	}
+	t.Run("moved", func(t *testing.T) { look(t, filepath.Join(out, "flyback-revised.html"), 6) })
 }
