@@ -11,15 +11,15 @@ import (
 
 // Settings of computed loops; the zero value of a field, or nil for all of them, means its default.
 type Settings struct {
-	Points int // points of a branch, default 200
+	Points int // points of a branch, default 300
 	Cycles int // most cycles until a loop must be closed, default 20000
 }
 
 func (s *Settings) points() int {
 	if s == nil || s.Points <= 0 {
-		return 200
+		return 300
 	}
-	return max(s.Points, 8)
+	return max(s.Points, 12)
 }
 
 func (s *Settings) cycles() int {
@@ -144,21 +144,28 @@ func (l *Loop) add(p Point) {
 	l.dh, l.db = append(l.dh, p.DH), append(l.db, p.DB)
 }
 
-// branch goes from the state to its trial end: half the points lie by equal angles of H, half of B, denser at the
-// tips; H = 0 and B = 0 are among them.
+// branch goes from the state to its trial end. A third of the points lies by equal angles of B, a third by equal angles
+// of H, both denser at the tips, and a third by equal steps of asinh(H/Hc), denser about zero; H = 0 and B = 0 are
+// among them.
 func (l *Loop) branch(law Law, s *State, end Point, n int) {
 	from := law.Now(s)
 	points := make([]Point, 0, n+3)
+	scale := (math.Abs(from.H) + math.Abs(end.H)) / 50
 	if from.H*end.H < 0 {
 		points = append(points, law.ByField(s, 0))
 	}
 	if from.B*end.B < 0 {
-		points = append(points, law.ByFluxDensity(s, 0))
+		zero := law.ByFluxDensity(s, 0)
+		points = append(points, zero)
+		scale = math.Max(math.Abs(zero.H), 1e-3*scale)
 	}
-	half := n / 2
-	for k := 1; k < half; k++ {
-		w := (1 - math.Cos(math.Pi*float64(k)/float64(half))) / 2
-		points = append(points, law.ByField(s, from.H+w*(end.H-from.H)), law.ByFluxDensity(s, from.B+w*(end.B-from.B)))
+	third := n / 3
+	u0, u1 := math.Asinh(from.H/scale), math.Asinh(end.H/scale)
+	for k := 1; k < third; k++ {
+		even := float64(k) / float64(third)
+		w := (1 - math.Cos(math.Pi*even)) / 2
+		points = append(points, law.ByField(s, from.H+w*(end.H-from.H)), law.ByFluxDensity(s, from.B+w*(end.B-from.B)),
+			law.ByField(s, scale*math.Sinh(u0+even*(u1-u0))))
 	}
 	d := end.X - from.X
 	sort.SliceStable(points, func(a, b int) bool { return (points[a].X-points[b].X)*d < 0 })
