@@ -7,7 +7,6 @@ import (
 	"ampturn/dsl/doc"
 	"ampturn/dsl/session"
 	"ampturn/magcirc"
-	"ampturn/magcirc/gap"
 	"ampturn/magcirc/phys"
 )
 
@@ -22,8 +21,8 @@ type MagneticCircuit struct {
 	asked       bool     // the temperature was asked for
 	changes     []string // what With changed, in words
 	variant     bool
-	tables      map[place]*gap.Surface
-	drawn       bool // a draw of a sample or a trial: nothing of it enters the document
+	of          *drawnPart // of a sample: what is known of the circuit
+	drawn       bool       // a draw of a sample or a trial: nothing of it enters the document
 }
 
 // path is one branch: where it runs, and its parts in order.
@@ -147,7 +146,7 @@ func (p *path) nameParts(circuit string) {
 
 // full is a part as messages name it: "gap T1.centre.gap".
 func (p *path) full(circuit string, i int) string {
-	return fmt.Sprintf("%s %s.%s.%s", p.parts[i].part(), circuit, p.name, p.names[i])
+	return string(p.parts[i].part()) + " " + circuit + "." + p.name + "." + p.names[i]
 }
 
 // checkPart refuses parts that do not fit their neighbours.

@@ -7,8 +7,55 @@ import (
 
 // drawnPart is a circuit as a sampled function asks for it: its tolerances and its gaps.
 type drawnPart struct {
+	roster *roster
 	inputs []input
+	varies []place // the parts that differ from draw to draw, path by path
 	tables map[place]*gap.Surface
+	bases  map[float64]*model // the nominal model at the temperatures that the function asks for
+}
+
+// base is the nominal model that a draw differs from in some parts; nil where there is none.
+func (d *drawnPart) base(c *MagneticCircuit) *model {
+	if d == nil || !c.drawn {
+		return nil
+	}
+	return d.bases[c.temperature]
+}
+
+// learn keeps a nominal model. Only the first call of the function fills the list; afterwards several goroutines may read it.
+func (d *drawnPart) learn(c *MagneticCircuit, m *model) {
+	if d != nil && !c.drawn && !d.roster.closed {
+		d.bases[c.temperature] = m
+	}
+}
+
+// varying lists the parts that inputs change: of a section also the gaps of its path, which may take theirs from it.
+func (c *MagneticCircuit) varying() []place {
+	var all []place
+	for i := range c.paths {
+		section := false
+		for _, part := range c.paths[i].parts {
+			leg, ok := part.(LegPart)
+			section = section || ok && leg.across.half > 0
+		}
+		for k, part := range c.paths[i].parts {
+			varies := false
+			switch p := part.(type) {
+			case LegPart:
+				varies = p.along.half > 0 || p.across.half > 0 || p.material.below.Spread() > 0
+			case GapPart:
+				varies = section || p.spread.half > 0
+			case PermeancePart:
+				varies = p.spread.half > 0
+			case MagnetPart:
+				varies = p.spread.half > 0
+			}
+			if varies {
+				all = append(all, place{i, k})
+			}
+		}
+	}
+	return all
 }
 
 // part finds what is known of a circuit. Variants at other temperatures share their paths, by which they are known.
@@ -20,7 +67,7 @@ func (of *roster) part(c *MagneticCircuit) *drawnPart {
 	if p, ok := of.parts[key]; ok {
 		return p
 	}
-	p := &drawnPart{inputs: c.spreads()}
+	p := &drawnPart{roster: of, inputs: c.spreads(), varies: c.varying(), bases: map[float64]*model{}}
 	if !of.closed { // afterwards several goroutines may ask
 		of.parts[key], of.circuits = p, append(of.circuits, c)
 	}
@@ -69,6 +116,14 @@ func (c *MagneticCircuit) surface(at place, g GapPart) *gap.Surface {
 	return t
 }
 
+// table is the table of a gap, nil where there is none.
+func (d *drawnPart) table(at place) *gap.Surface {
+	if d == nil {
+		return nil
+	}
+	return d.tables[at]
+}
+
 // reach is how far draws go from nominal: to the limits, or five standard deviations.
 func (s spread) reach(nominal float64) float64 {
 	if s.shape == tol.Normal {
@@ -79,7 +134,7 @@ func (s spread) reach(nominal float64) float64 {
 
 // permeance is the gap by its table where there is one, else by its method.
 func (c *MagneticCircuit) permeance(at place, s gap.Spec, g GapPart, beside *LegPart) (gap.Result, error) {
-	if t := c.tables[at]; t != nil {
+	if t := c.of.table(at); t != nil {
 		area := 1.0
 		if beside != nil && g.faces == nil {
 			area += beside.stretch

@@ -24,11 +24,43 @@ func (c *MagneticCircuit) model() *model {
 	if len(c.paths) == 0 {
 		refuse(magcirc.WrongUse, "circuit "+c.name, "has no path", fmt.Sprintf("add one: %s.Ring(...) or %s.Path(...)", c.name, c.name))
 	}
+	if base := c.of.base(c); base != nil {
+		return base.varied(c)
+	}
 	m := &model{net: reluct.New(c.name), gaps: map[place]gap.Result{}}
 	for i := range c.paths {
 		m.path(c, i)
 	}
+	c.of.learn(c, m)
 	return m
+}
+
+// varied is the model of a draw: of the nominal model all but the parts that vary.
+func (m *model) varied(c *MagneticCircuit) *model {
+	next := &model{element: m.element, gaps: m.gaps, notes: m.notes}
+	branches := m.net.Branches()
+	elements := make([][]reluct.Element, len(branches))
+	for i := range branches {
+		elements[i] = branches[i].Elements
+	}
+	gaps := map[place]gap.Result{}
+	scratch := &model{gaps: gaps}
+	for n, at := range c.of.varies {
+		if n == 0 || c.of.varies[n-1].path != at.path {
+			elements[at.path] = append([]reluct.Element(nil), elements[at.path]...)
+		}
+		elements[at.path][m.element[at.path][at.part]] = scratch.part(c, at)
+	}
+	if len(gaps) > 0 {
+		next.gaps = gaps
+		for at, r := range m.gaps {
+			if _, ok := gaps[at]; !ok {
+				gaps[at] = r
+			}
+		}
+	}
+	next.net = m.net.Varied(elements)
+	return next
 }
 
 // path adds path i as a branch.

@@ -45,11 +45,13 @@ func (s *Sample) Part(circuit *MagneticCircuit) *MagneticCircuit {
 	for i := range part.inputs {
 		x[i] = s.take(part.inputs[i])
 	}
-	if !s.of.closed {
-		return circuit // nominal: what it assumes enters the document
+	if !s.of.closed { // nominal: what it assumes enters the document
+		next := *circuit
+		next.of, next.variant = part, true
+		return &next
 	}
 	next := circuit.with(part.inputs, x)
-	next.tables = part.tables
+	next.of = part
 	return next
 }
 
@@ -230,9 +232,15 @@ func compiled(f any) bool {
 //
 // and called by all cores at once.
 func (c *MagneticCircuit) InductanceAt(winding string, drives ...Drive) func(s *Sample) Henry {
-	c.windingOf(winding)
 	d := c.driveOf(drives)
-	return func(s *Sample) float64 { return s.state(c, d).Inductance(winding) }
+	w := c.windingOf(winding)
+	return func(s *Sample) float64 {
+		op := s.state(c, d)
+		if !op.circuit.drawn {
+			return op.Inductance(winding)
+		}
+		return must(op.solution.Incremental()).At(w, w)
+	}
 }
 
 // FluxDensityAt gives, for [WorstCase] and [MonteCarlo], the flux density in a leg or a path under a drive.

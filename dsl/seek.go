@@ -82,7 +82,7 @@ func (c *MagneticCircuit) zeroBias(w int) (inductance float64, err error) {
 // changed is a copy of the circuit with a change to its parts, unchecked.
 func (c *MagneticCircuit) changed(change func(paths []path)) *MagneticCircuit {
 	next := *c
-	next.variant = true
+	next.variant, next.of = true, nil
 	next.paths = slices.Clone(c.paths)
 	for i := range next.paths {
 		next.paths[i].parts = slices.Clone(c.paths[i].parts)

@@ -111,6 +111,24 @@ func (n *Network) Branch(b Branch) int {
 	return i
 }
 
+// Varied gives a network that differs from n in its elements only: elements[i] stands for those of branch i, as many and of
+// the same names. It is quick to make, for draws by the thousand; n stays as it is.
+//
+// Errors of the elements are reported by the solvers, as those of any network.
+func (n *Network) Varied(elements [][]Element) *Network {
+	next := *n
+	next.branches = append([]Branch(nil), n.branches...)
+	for i := range next.branches {
+		next.branches[i].Elements = elements[i]
+		for k := range elements[i] {
+			if next.err == nil {
+				next.err = next.checkElement(i, k)
+			}
+		}
+	}
+	return &next
+}
+
 // Find gives the index of the branch of that name.
 func (n *Network) Find(name string) (branch int, ok bool) {
 	branch, ok = n.branchOf[name]
