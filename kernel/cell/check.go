@@ -67,7 +67,7 @@ func newInfo() *types.Info {
 
 func (c *checking) config() *types.Config {
 	return &types.Config{
-		GoVersion: "go1.22", Sizes: types.SizesFor("gc", "amd64"),
+		GoVersion: "go1.23", Sizes: sizes,
 		Error: func(err error) {
 			if e, ok := err.(types.Error); ok {
 				c.errs = append(c.errs, e)
@@ -75,6 +75,8 @@ func (c *checking) config() *types.Config {
 		},
 	}
 }
+
+var sizes = types.SizesFor("gc", "amd64")
 
 // check type-checks a cell against the live names. The cell's syntax tree may be changed: conversions of whole
 // numbers are written into it.

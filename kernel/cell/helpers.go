@@ -55,8 +55,14 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"Print":      reflect.ValueOf(func(v ...any) (int, error) { return s.print(fmt.Sprint(v...)) }),
 		"Println":    reflect.ValueOf(func(v ...any) (int, error) { return s.print(fmt.Sprintln(v...)) }),
 		"Printf":     reflect.ValueOf(func(format string, v ...any) (int, error) { return s.print(fmt.Sprintf(format, v...)) }),
-		"Worded":     reflect.ValueOf(nb.Worded),
-		"Typed":      reflect.ValueOf(func(k int, v any) any { return typed{v, s.shownAt(k).typ} }),
+		"Worded":     reflect.ValueOf(func(k int, v any) any { return worded{v, s.ableAt(k)} }),
+		"Fault":      reflect.ValueOf(func(k int, v any) error { return worded{v, s.ableAt(k)} }),
+		"Bare":       reflect.ValueOf(bare),
+		"Text":       reflect.ValueOf(func(k int, zero any, f func(any) string) { s.able(k, zero).text = f }),
+		"Unwrap":     reflect.ValueOf(func(k int, zero any, f func(any) error) { s.able(k, zero).unwrap = f }),
+		"Is":         reflect.ValueOf(func(k int, zero any, f func(any, error) bool) { s.able(k, zero).is = f }),
+		"Typed":      reflect.ValueOf(s.typedAt),
+		"Size":       reflect.ValueOf(size),
 		"Sort":       reflect.ValueOf(nb.Sort),
 		"MinFloat":   reflect.ValueOf(nb.MinFloat),
 		"MaxFloat":   reflect.ValueOf(nb.MaxFloat),
@@ -67,6 +73,17 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"MinString":  reflect.ValueOf(nb.MinString),
 		"MaxString":  reflect.ValueOf(nb.MaxString),
 	}
+}
+
+// mostBytes is how much a cell may ask for with one make.
+const mostBytes = 4 << 30
+
+// size lets a size through that one can have.
+func size(n, each int) int {
+	if n > mostBytes/each {
+		panic(userPanic{fmt.Sprintf("make: %d elements of %d bytes are more than the 4 GB that a cell may have at a time", n, each)})
+	}
+	return n
 }
 
 // deep ends the goroutine of the cell, which unwinds in linear time where a panic would not. In other goroutines, which

@@ -27,7 +27,7 @@ func tokenSlips(src *source, all []tok) (bad []problem) {
 		switch {
 		case number(i) && is(i+1, token.IDENT, ""):
 			say(i, i+1, "a unit is multiplied: "+t.lit+"*"+all[i+1].lit)
-		case t.tok == token.MUL && is(i+1, token.MUL, "") && all[i+1].off == t.off+1 && i > 0:
+		case t.tok == token.MUL && is(i+1, token.MUL, "") && all[i+1].off == t.off+1 && isPower(all, i):
 			base, exp := all[i-1].lit, "n"
 			if i+2 < len(all) && all[i+2].lit != "" {
 				exp = all[i+2].lit
@@ -55,6 +55,20 @@ func tokenSlips(src *source, all []tok) (bad []problem) {
 		}
 	}
 	return bad
+}
+
+// isPower tells whether two stars stand between operands, as for a power, and not before a pointer to a pointer.
+func isPower(all []tok, i int) bool {
+	if i == 0 || i+2 >= len(all) {
+		return false
+	}
+	left := all[i-1]
+	switch left.tok {
+	case token.IDENT, token.INT, token.FLOAT, token.RPAREN, token.RBRACK:
+	default:
+		return false
+	}
+	return left.off+max(len(left.lit), 1) == all[i].off || all[i+2].off > all[i+1].off+1
 }
 
 var illegalRune = regexp.MustCompile(`illegal rune literal|more than one character in rune literal`)

@@ -88,6 +88,9 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 	for _, t := range r.types {
 		l.typeDecl(t.obj.(*types.TypeName), t.lowered)
 	}
+	for _, t := range r.types {
+		l.abilities(t.obj.(*types.TypeName), t.lowered)
+	}
 	for _, v := range r.fresh {
 		v.lowered = s.version(v.name, false)
 		l.globals = append(l.globals, "var "+v.lowered+" "+l.typ(v.obj.Type()))

@@ -181,7 +181,7 @@ func (l *lowering) commaOK(e ast.Expr) []string {
 		m := l.info.TypeOf(e.X).Underlying().(*types.Map)
 		text = l.operand(e.X) + "[" + l.convert(e.Index, m.Key()) + "]"
 	case *ast.TypeAssertExpr:
-		text = l.operand(e.X) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
+		text = l.asserted(e.X, l.info.TypeOf(e.Type), l.operand(e.X)) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
 	}
 	v, ok := l.name("v"), l.name("ok")
 	l.before("%s, %s := %s", v, ok, text)

@@ -3,6 +3,7 @@ package cell
 import (
 	"fmt"
 	"go/ast"
+	"go/constant"
 	"go/types"
 	"strconv"
 	"strings"
@@ -147,19 +148,8 @@ func (l *lowering) worded(e ast.Expr, to types.Type, text string) string {
 	if l.s.plain || from == nil || !isAny(to) || !isCellType(from) || types.IsInterface(from) {
 		return text
 	}
-	for _, m := range []string{"Error", "String"} {
-		o, _, _ := types.LookupFieldOrMethod(from, false, nil, m)
-		f, ok := o.(*types.Func)
-		if !ok {
-			continue
-		}
-		sig := f.Type().(*types.Signature)
-		if sig.Params().Len() == 0 && sig.Results().Len() == 1 && types.Identical(sig.Results().At(0).Type(), types.Typ[types.String]) {
-			x := l.hold(text)
-			w := l.name("f")
-			l.before("%s := func() string { return %s.%s() }", w, x, m)
-			return fmt.Sprintf("%s(%s, %s)", l.nb("Worded"), x, w)
-		}
+	if k, ok := l.s.ableIndex[abilityOf(from)]; ok && (has(from, "Error", "string") || has(from, "String", "string")) {
+		return fmt.Sprintf("%s(%d, %s)", l.nb("Worded"), k, text)
 	}
 	return text
 }
@@ -167,7 +157,7 @@ func (l *lowering) worded(e ast.Expr, to types.Type, text string) string {
 // typed gives fmt a value together with its static type, which alone knows the names of types and fields as typed.
 func (l *lowering) typed(e ast.Expr, text string) string {
 	t := l.info.TypeOf(e)
-	if l.s.plain || t == nil || types.IsInterface(t) || !mentionsCell(t, 0) {
+	if l.s.plain || t == nil || l.info.Types[e].Value != nil || !mentionsCell(t, 0) {
 		return text
 	}
 	l.s.shows = append(l.s.shows, shown{typ: t})
@@ -176,7 +166,7 @@ func (l *lowering) typed(e ast.Expr, text string) string {
 
 // mentionsCell tells whether a type of a cell occurs in a type.
 func mentionsCell(t types.Type, depth int) bool {
-	if isCellType(t) {
+	if isCellType(t) || isAny(t) {
 		return true
 	}
 	switch t := types.Unalias(t).(type) {
@@ -292,7 +282,7 @@ func (l *lowering) builtin(e *ast.CallExpr, fun ast.Expr) string {
 	case "make":
 		text := "make(" + l.typ(l.info.TypeOf(e.Args[0]))
 		for _, a := range e.Args[1:] {
-			text += ", " + l.expr(a)
+			text += ", " + l.sized(a, l.info.TypeOf(e.Args[0]))
 		}
 		return text + ")"
 	case "min", "max":
@@ -313,6 +303,22 @@ func (l *lowering) builtin(e *ast.CallExpr, fun ast.Expr) string {
 		to[1] = to[0].Underlying().(*types.Map).Key()
 	}
 	return name + "(" + strings.Join(l.list(e.Args, to), ", ") + ")"
+}
+
+// sized lowers a size given to make. More memory than there is would end the kernel, not the cell.
+func (l *lowering) sized(a ast.Expr, t types.Type) string {
+	text := l.expr(a)
+	if v := l.info.Types[a].Value; v != nil && constant.BitLen(constant.ToInt(v)) < 20 || l.s.plain {
+		return text
+	}
+	each := int64(8)
+	switch u := t.Underlying().(type) {
+	case *types.Slice:
+		each = max(1, sizes.Sizeof(u.Elem()))
+	case *types.Map:
+		each = 16
+	}
+	return fmt.Sprintf("%s(int(%s), %d)", l.nb("Size"), text, each)
 }
 
 func (l *lowering) append(e *ast.CallExpr) string {

@@ -41,7 +41,7 @@ func (l *lowering) expr(e ast.Expr) string {
 		l.before("%s := %s", f, text)
 		return f
 	case *ast.TypeAssertExpr:
-		return l.operand(e.X) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
+		return l.asserted(e.X, l.info.TypeOf(e.Type), l.operand(e.X)) + ".(" + l.typ(l.info.TypeOf(e.Type)) + ")"
 	}
 	if l.info.Types[e].IsType() {
 		return l.typ(l.info.TypeOf(e))
@@ -427,6 +427,9 @@ func (l *lowering) convert(e ast.Expr, to types.Type) string {
 	}
 	if types.IsInterface(from) && !isCellType(from) {
 		return text
+	}
+	if isError(to) && !l.s.plain {
+		return l.fault(from, text)
 	}
 	t := l.name("i")
 	l.before("var %s %s = %s", t, l.typ(to), text)

@@ -93,7 +93,7 @@ func (l *lowering) typeSwitch(s *ast.TypeSwitchStmt, label string) {
 			}
 			ok := l.name("ok")
 			l.line("if %s == 0 && %s != nil {", sel, v)
-			l.line("\t_, %s := %s.(%s)", ok, v, l.typ(l.info.TypeOf(e)))
+			l.line("\t_, %s := %s.(%s)", ok, l.asserted(x, l.info.TypeOf(e), v), l.typ(l.info.TypeOf(e)))
 			l.line("\tif %s { %s = %d }", ok, sel, i+1)
 			l.line("}")
 		}
@@ -112,7 +112,7 @@ func (l *lowering) typeSwitch(s *ast.TypeSwitchStmt, label string) {
 			l.locals[o] = v
 			if len(cl.List) == 1 && !isNil(cl.List[0]) {
 				l.locals[o] = l.name(bound)
-				l.line("%s := %s.(%s)", l.locals[o], v, l.typ(o.Type()))
+				l.line("%s := %s.(%s)", l.locals[o], l.asserted(x, o.Type(), v), l.typ(o.Type()))
 			}
 		}
 		l.block(cl.Body)

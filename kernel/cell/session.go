@@ -6,6 +6,7 @@ import (
 	"go/ast"
 	"go/token"
 	"go/types"
+	"reflect"
 	"strings"
 	"sync"
 	"sync/atomic"
@@ -35,14 +36,18 @@ type Session struct {
 	typeNames      map[*types.TypeName]string
 	marks          []mark
 	shows          []shown
+	abilities      []*abilities // methods of cell types that compiled code asks for
+	byType         map[reflect.Type]*abilities
+	ableIndex      map[ability]int
 	texts          map[int]string
 	cache          map[string]*unitOfWork
 	plain          bool     // lowers to a plain program, which is not run
 	late           []string // notes on names that the cell took over
 
 	sink      atomic.Pointer[kernel.Sink]
-	now       kernel.Cell // the running cell
-	src       *source     // its text
+	now       kernel.Cell                    // the running cell
+	src       *source                        // its text
+	words     map[string]map[string][]string // by name of the notebook: what texts about it can be
 	stuck     chan struct{}
 	stuckCell int
 	raceMark  *atomic.Int64
@@ -79,7 +84,7 @@ func New(v *Vocabulary, h Hooks) (*Session, error) {
 	s := &Session{
 		voc: v, hooks: h, base: b, scope: &scope{names: map[string]*live{}}, fset: token.NewFileSet(),
 		turn: newTurn(), versions: map[string]int{}, typeNames: map[*types.TypeName]string{}, texts: map[int]string{}, cache: map[string]*unitOfWork{},
-		marks: []mark{{}},
+		marks: []mark{{}}, byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
 	}
 	if s.machine, err = newMachine(v, s.helpers()); err != nil {
 		return nil, err
@@ -367,6 +372,9 @@ func (s *Session) execute(ctx context.Context, c kernel.Cell, u *unitOfWork) ker
 	}
 	if s.hooks.End != nil {
 		s.hooks.End(key, stopped != nil)
+	}
+	if s.stuck == nil {
+		s.learn()
 	}
 	s.begin(u.src, stopped != nil)
 	return o

@@ -145,7 +145,7 @@ func (w *subsetWalk) assertion(at ast.Node, x, typ ast.Expr) {
 		return
 	}
 	if isCellType(to) && !types.IsInterface(to) {
-		if compiledInterface(from) {
+		if compiledInterface(from) && !(isError(from) && isStruct(to)) {
 			w.refuse(at, "a value that the vocabulary holds cannot be turned back into a type of a cell; keep it in a variable of its own")
 			return
 		}
@@ -206,7 +206,7 @@ func (w *subsetWalk) typeVerb(n *ast.CallExpr) {
 		case tv.Value != nil && tv.Value.Kind() == constant.String:
 			format = format || strings.Contains(constant.StringVal(tv.Value), "%T")
 		case tv.Type != nil:
-			held = held || mentionsCell(tv.Type, 0)
+			held = held || mentionsCell(tv.Type, 0) && !isAny(tv.Type)
 		}
 	}
 	if format && held {
