@@ -49,3 +49,43 @@ func BenchmarkNewJilesAtherton(b *testing.B) {
 		sink += law.Knee()
 	}
 }
+
+// BenchmarkPlay is a trial of ten play cells.
+func BenchmarkPlay(b *testing.B) {
+	l := play10(b)
+	s := l.Start()
+	l.Commit(&s, l.ByField(&s, 200))
+	l.Commit(&s, l.ByField(&s, -200))
+	turned := s.Clone()
+	l.Commit(&s, l.ByField(&s, 150)) // all cells move
+	now, first := l.Now(&s), l.Now(&turned)
+	for _, c := range []struct {
+		name string
+		call func(k float64) hyst.Point
+	}{
+		{"all cells move", func(k float64) hyst.Point { return l.ByField(&s, 151+k) }},
+		{"a turn, two cells move", func(k float64) hyst.Point { return l.ByField(&turned, -190+k) }},
+		{"by flux density", func(k float64) hyst.Point { return l.ByFluxDensity(&s, now.B+1e-4+k) }},
+		{"swing by flux density", func(k float64) hyst.Point { return l.ByFluxDensity(&turned, -first.B+k) }},
+	} {
+		b.Run(c.name, func(b *testing.B) {
+			for n := range b.N {
+				sink += c.call(1e-12 * float64(n&15)).B
+			}
+		})
+	}
+}
+
+// BenchmarkFit fits 200 points with noise.
+func BenchmarkFit(b *testing.B) {
+	for n := range b.N {
+		b.StopTimer()
+		_, rec := synthetic(b, int64(n%50))
+		b.StartTimer()
+		fit, err := hyst.FitJilesAtherton([]hyst.Record{rec}, nil)
+		if err != nil {
+			b.Fatal(err)
+		}
+		sink += fit.RMS
+	}
+}

@@ -257,7 +257,7 @@ func TestPlayHeatIsLoopArea(t *testing.T) {
 	}
 }
 
-// integral gives the integral of H dB from the state to a field, with panels that end where cells of a steady loop begin
+// integral gives the integral of H dB from the state to a field, with panels (short beside the places of the table of L) that end where cells of a steady loop begin
 // to move: 2 kappa behind the tip.
 func integral(l hyst.Law, s *hyst.State, end float64, cells []hyst.PlayCell) float64 {
 	from := l.Now(s).H
@@ -271,7 +271,7 @@ func integral(l hyst.Law, s *hyst.State, end float64, cells []hyst.PlayCell) flo
 	sortBy(ends, d)
 	sum := 0.0
 	for i := 1; i < len(ends); i++ {
-		const panels = 12
+		const panels = 200
 		for k := range panels {
 			a := ends[i-1] + (ends[i]-ends[i-1])*float64(k)/panels
 			b := ends[i-1] + (ends[i]-ends[i-1])*float64(k+1)/panels

@@ -127,7 +127,7 @@ func (p *Play) Knee() float64 {
 func (p *Play) Anhysteretic(h float64) float64 {
 	m := 0.0
 	for i := range p.cell {
-		l, _ := num.Langevin(h / p.cell[i].A)
+		l, _ := fine(h / p.cell[i].A)
 		m += p.cell[i].Ms * l
 	}
 	return phys.Mu0 * (h + m)
@@ -145,7 +145,7 @@ func (p *Play) Now(s *State) Point {
 	chi := 0.0
 	for i := range p.cell {
 		if c := &p.cell[i]; c.Kappa == 0 {
-			_, a := num.Langevin(s.hr[i] / c.A)
+			_, a := fine(s.hr[i] / c.A)
 			chi += c.Ms / c.A * a
 		} else {
 			break
@@ -177,7 +177,7 @@ func (p *Play) ByField(s *State, h float64) Point {
 		if (hr-s.hr[i])*d <= 0 {
 			break
 		}
-		l, a := num.Langevin(hr / c.A)
+		l, a := fine(hr / c.A)
 		m += c.Ms * l
 		chi += c.Ms / c.A * a
 	}
@@ -294,7 +294,7 @@ func (p *Play) move(s *State, h float64, see func(i int, hr, m float64)) {
 		if (hr-s.hr[i])*d <= 0 {
 			break
 		}
-		l, _ := num.Langevin(hr / c.A)
+		l, _ := fine(hr / c.A)
 		see(i, hr, c.Ms*l)
 	}
 }

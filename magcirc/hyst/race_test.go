@@ -1,0 +1,5 @@
+//go:build race
+
+package hyst_test
+
+const raceDetector = true
