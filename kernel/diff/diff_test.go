@@ -17,7 +17,11 @@ func display(data map[string]any, meta map[string]any) *notebook.Output {
 func plain(s string) *notebook.Output { return display(map[string]any{"text/plain": s}, nil) }
 
 func full(s string, value float64) *notebook.Output {
-	return display(map[string]any{"text/plain": s}, map[string]any{"ampturn": map[string]any{"value": value}})
+	return display(map[string]any{"text/plain": s}, map[string]any{"ampturn": map[string]any{"value": value, "unit": ""}})
+}
+
+func residual(value float64, unit string) *notebook.Output {
+	return display(map[string]any{}, map[string]any{"ampturn": map[string]any{"columns": []any{"what", "value" + unit}, "rows": []any{[]any{"sum", value}}}})
 }
 
 // TestOutputs: an empty want is the same; else the first change in words.
@@ -36,7 +40,11 @@ func TestOutputs(t *testing.T) {
 		{"sign", plain("x -3"), plain("x 3"), "x: saved -3, now 3"},
 		{"range of words", plain("1-3"), plain("1-3"), ""},
 		{"what rounding leaves of zero", plain("sum 1.562e-16"), plain("sum 0"), ""},
-		{"a small number in full", full("1 pF", 1e-12), full("1 pF", 1.1e-12), "value in full: saved 1e-12, now 1.1e-12"},
+		{"a small quantity in full", display(map[string]any{}, map[string]any{"ampturn": map[string]any{"value": 1e-13, "unit": "F"}}),
+			display(map[string]any{}, map[string]any{"ampturn": map[string]any{"value": 1.1e-13, "unit": "F"}}), "value in full: saved 1e-13, now 1.1e-13"},
+		{"a residual in full", full("4e-13", 4e-13), full("2e-13", 2e-13), ""},
+		{"a residual in a table", residual(4e-13, ""), residual(2e-13, ""), ""},
+		{"a small quantity in a table", residual(4e-13, " F"), residual(2e-13, " F"), "row 1, value F in full: saved 4e-13, now 2e-13"},
 		{"last place hides nothing", full("9.953 uH", 9.9531e-6), full("9.954 uH", 9.9531e-6), "saved 9.953, now 9.954"},
 		{"between two prints", full("9.953 uH", 9.9535e-6), full("9.954 uH", 9.95350000001e-6), ""},
 		{"between two prints of the row", display(map[string]any{"text/html": `<td data-value="2.4995e-06">2.499</td>`, "text/plain": "2.499"}, nil),

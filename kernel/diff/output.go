@@ -126,17 +126,61 @@ func (t Tolerance) behind(a, b *notebook.Output) compared {
 		return compared{}
 	}
 	var c compared
-	t.values(&c, "", plainValue(x), plainValue(y))
+	t.values(&c, "", plainValue(x), plainValue(y), fullNoise)
 	return c
 }
 
-// values compares two JSON values.
-func (t Tolerance) values(c *compared, place string, a, b any) {
+// noiseOf is the magnitude that counts as zero for a number in full: of one without a unit more, for it is of the order
+// of one or a residual.
+func noiseOf(unit string) float64 {
+	if unit == "" || unit == "percent" {
+		return printedNoise
+	}
+	return fullNoise
+}
+
+// rows compares the rows of two tables of equal size, each number by the unit of its column. It tells whether they are
+// such tables.
+func (t Tolerance) rows(c *compared, a, b map[string]any) bool {
+	heads, ok := a["columns"].([]any)
+	old, ok2 := a["rows"].([]any)
+	now, ok3 := b["rows"].([]any)
+	if !ok || !ok2 || !ok3 || len(old) != len(now) {
+		return false
+	}
+	for i := range old {
+		x, _ := old[i].([]any)
+		y, _ := now[i].([]any)
+		if len(x) != len(y) || len(x) > len(heads) {
+			return false
+		}
+	}
+	for i := range old {
+		x, _ := old[i].([]any)
+		y, _ := now[i].([]any)
+		for k := range x {
+			head, _ := heads[k].(string)
+			_, unit := cutUnit(head)
+			t.values(c, fmt.Sprintf("row %d, %s", i+1, head), x[k], y[k], noiseOf(unit))
+		}
+	}
+	return true
+}
+
+// values compares two JSON values; noise is the magnitude that counts as zero.
+func (t Tolerance) values(c *compared, place string, a, b any, noise float64) {
 	switch x := a.(type) {
 	case map[string]any:
 		y, _ := b.(map[string]any)
+		unit, ok := x["unit"].(string)
 		for _, key := range slices.Sorted(maps.Keys(x)) {
-			t.values(c, strings.TrimPrefix(place+" "+key, " "), x[key], y[key])
+			if key == "value" && ok {
+				noise = noiseOf(unit)
+			}
+			if key == "rows" && t.rows(c, x, y) {
+				continue
+			}
+			t.values(c, strings.TrimPrefix(place+" "+key, " "), x[key], y[key], noise)
 		}
 	case []any:
 		y, _ := b.([]any)
@@ -145,11 +189,11 @@ func (t Tolerance) values(c *compared, place string, a, b any) {
 			return
 		}
 		for i := range x {
-			t.values(c, place, x[i], y[i])
+			t.values(c, place, x[i], y[i], noise)
 		}
 	case float64:
 		c.numbers++
-		if y, ok := b.(float64); !ok || !t.same(x, y, fullNoise) {
+		if y, ok := b.(float64); !ok || !t.same(x, y, noise) {
 			c.changes = append(c.changes, Change{Place: place + " in full", Old: fmt.Sprint(a), New: fmt.Sprint(b)})
 			return
 		}
