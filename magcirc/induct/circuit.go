@@ -62,7 +62,7 @@ func (m *Matrix) EquivalentCircuit(p, s int) (Circuit, error) {
 //	First = Lp - ratio M    Magnetising = ratio M    Second = Ls - M/ratio
 //
 // Valid: any ratio but 0; an inductance that comes out negative is right as a part of the circuit, though no coil
-// is like that.
+// is like that. A difference below the rounding of the matrix is given as 0.
 func (m *Matrix) TForm(p, s int, ratio float64) (TForm, error) {
 	if err := m.pair(p, s); err != nil {
 		return TForm{}, err
@@ -71,7 +71,15 @@ func (m *Matrix) TForm(p, s int, ratio float64) (TForm, error) {
 		return TForm{}, &magcirc.Error{Code: magcirc.BadValue, Elem: "equivalent circuit", Quantity: "ratio", Got: ratio, Msg: fmt.Sprintf("ratio %v is none", ratio)}
 	}
 	mutual := m.Mutual(p, s)
-	return TForm{First: m.Self(p) - ratio*mutual, Magnetising: ratio * mutual, Second: m.Self(s) - mutual/ratio, Ratio: ratio}, nil
+	return TForm{First: m.less(m.Self(p), ratio*mutual), Magnetising: ratio * mutual, Second: m.less(m.Self(s), mutual/ratio), Ratio: ratio}, nil
+}
+
+// less gives a - b, 0 where that is only rounding of the matrix.
+func (m *Matrix) less(a, b float64) float64 {
+	if d := a - b; math.Abs(d) > m.rounding(a) {
+		return d
+	}
+	return 0
 }
 
 // pair refuses windings without an equivalent circuit.

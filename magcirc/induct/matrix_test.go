@@ -184,6 +184,24 @@ func TestLeakageAgainstDenseInverse(t *testing.T) {
 	})
 }
 
+// Windings of 50 and 7 turns on one path have no leakage: what rounding leaves of 1/R 7^2 - 1/R 50 7 7/50 is no inductance.
+func TestIdealCircuitHasNoLeakage(t *testing.T) {
+	for _, p := range []float64{8.2247e-7, 3.1e-7, 1.7e-6} {
+		l := mat.NewSymDense(2, []float64{2500 * p, -350 * p, -350 * p, 49 * p})
+		m, err := induct.NewMatrix([]string{"N", "Z"}, l)
+		if err != nil {
+			t.Fatal(err)
+		}
+		c, err := m.EquivalentCircuit(0, 1)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if c.Series != 0 || c.T.First != 0 || c.T.Second != 0 {
+			t.Errorf("permeance %g H: series %g, T form %g and %g H", p, c.Series, c.T.First, c.T.Second)
+		}
+	}
+}
+
 // Both forms of the circuit are the matrix.
 func TestEquivalentCircuits(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {

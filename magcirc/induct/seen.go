@@ -58,14 +58,13 @@ func (m *Matrix) seen(series []term, shorted []int) (l float64, current []float6
 	for k, s := range shorted {
 		current[s] -= x.AtVec(k)
 	}
-	l = open - mat.Dot(rhs, x)
-	if math.Abs(l) <= 16*float64(m.Len())*epsilon*open {
-		l = 0
-	}
-	return l, current, nil
+	return m.less(open, mat.Dot(rhs, x)), current, nil
 }
 
 const epsilon = 0x1p-52
+
+// rounding is what an inductance l in H, made of entries of the matrix, may owe to rounding.
+func (m *Matrix) rounding(l float64) float64 { return 16 * float64(m.Len()) * epsilon * math.Abs(l) }
 
 // Within this share of the largest eigenvalue of the matrix scaled to unit diagonal an eigenvalue counts as zero: a
 // network solved to 1e-9 knows no better.
