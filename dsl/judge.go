@@ -170,6 +170,9 @@ func trace(v *review.Verdict, conditions []Condition) {
 func (v *Verdict) Uncertain(share Ratio) *Verdict {
 	v.given()
 	wantRange("limit \""+v.kept.What+"\"", "uncertainty", share, 0, 10, "")
+	if v.kept.Rule.Unit == "degC" {
+		refuse(magcirc.WrongUse, "limit \""+v.kept.What+"\"", "judges a temperature, and a share of one means nothing", "take the uncertainty off the bound: AtMost(95*degC)")
+	}
 	v.kept.Uncertainty = share
 	return v
 }

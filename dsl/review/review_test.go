@@ -66,12 +66,22 @@ func TestRefusedRules(t *testing.T) {
 		{review.AtLeast, math.NaN(), 0, "not a number"},
 		{review.Within, 0.2, -0.2, "not below the upper one"},
 		{review.Tolerance, 1, 0, "outside 0..1000 %"},
+		{review.Tolerance, 0, 0.1, "a share of zero"},
+		{review.AtMost, math.Inf(1), 0, "not a number"},
+		{review.Within, math.Inf(-1), 0.2, "not a number"},
 	} {
 		_, err := review.NewRule(c.kind, "T", c.first, c.second)
 		var e *magcirc.Error
 		if !errors.As(err, &e) || e.Code != magcirc.BadValue || !strings.Contains(err.Error(), c.says) {
 			t.Errorf("kind %d, %g, %g: %v; want %q", c.kind, c.first, c.second, err, c.says)
 		}
+	}
+}
+
+// TestShareOfTemperature: 10 percent of 25 degC depends on where the scale has its zero.
+func TestShareOfTemperature(t *testing.T) {
+	if _, err := review.NewRule(review.Tolerance, "degC", 25, 0.1); err == nil || !strings.Contains(err.Error(), "no range of temperature") {
+		t.Errorf("got %v", err)
 	}
 }
 

@@ -39,14 +39,15 @@ type Rule struct {
 
 // NewRule makes a rule. AtMost and AtLeast take a bound, Within takes two, Tolerance a nominal value and a share.
 //
-// Errors: [magcirc.BadValue] for bounds that are no numbers or that nothing could meet.
+// Errors: [magcirc.BadValue] for bounds that are no numbers or that nothing could miss or meet, and for a share of a
+// temperature, whose zero means nothing.
 func NewRule(kind Kind, unit string, first, second float64) (Rule, error) {
 	r := Rule{Kind: kind, Unit: unit, Low: math.Inf(-1), High: math.Inf(1)}
 	elem := [...]string{"AtMost", "AtLeast", "Within", "Tolerance"}[kind]
 	refuse := func(msg, hint string) (Rule, error) {
 		return Rule{}, &magcirc.Error{Code: magcirc.BadValue, Elem: elem, Msg: msg, Hint: hint, Quantity: "limit", Got: first}
 	}
-	if math.IsNaN(first) || math.IsNaN(second) {
+	if math.IsNaN(first-first) || math.IsNaN(second-second) { // infinite too
 		return refuse("limit is not a number", "look where it was computed")
 	}
 	switch kind {
@@ -63,6 +64,12 @@ func NewRule(kind Kind, unit string, first, second float64) (Rule, error) {
 		}
 		r.Low, r.High = first, second
 	case Tolerance:
+		switch {
+		case unit == celsius:
+			return refuse("a share of "+phys.Format(first, unit)+" is no range of temperature", "write Within(low, high)")
+		case first == 0:
+			return refuse("a share of zero is no range", "write Within(low, high)")
+		}
 		if second <= 0 || second >= 10 {
 			return refuse("the tolerance "+phys.Format(second, "percent")+" is outside 0..1000 %", "write Tolerance(630*uH, 8*percent)")
 		}
