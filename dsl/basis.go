@@ -53,9 +53,15 @@ var solutionBasis = basisRow{"fluxes", "loop fluxes of least energy by Newton's 
 
 var inductanceBasis = basisRow{"inductances", "differentiation of the solved network", "derivative of the loop equations at the solution", "small signals about this point, without eddy currents"}
 
+// magnetEnergy is how the energies of a circuit with magnets are counted.
+var magnetEnergy = basisRow{"energies", "a magnet counts as its recoil reluctance, with its remanence as a source outside", "definition", "differences of energy at one magnetisation"}
+
 func (op *OperatingPoint) basis() []basisRow {
 	op.given()
 	first := []basisRow{solutionBasis, inductanceBasis}
+	if op.circuit.magnets() > 0 {
+		first = append(first, magnetEnergy)
+	}
 	if op.memories > 0 {
 		first[0] = historyBasis
 	}

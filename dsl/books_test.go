@@ -52,15 +52,15 @@ func ExampleFromReadings() {
 
 // A. R. Hambley, Electrical Engineering, 5th ed., Pearson 2011, example 15.5 p. 670: a square path of 6 cm sides with a gap
 // of 0.5 cm, section 2 cm x 3 cm, mu_r 6000, 500 turns, the gap's length added to each side of its faces. For 0.25 T in the
-// gap the book has 4.547e6 1/H for the gap and 2.01 A.
+// gap the book has 4.547e6 1/H for the gap and 2.01 A. The flux density of the gap is that between its faces.
 func ExampleGapPart_Fringe() {
 	core := Magnetic("core")
 	core.Ring("path", Leg(NewMaterial("iron", Linear(6000)), 23.5*cm, Rect(2*cm, 3*cm)), Gap(0.5*cm).Fringe(AddTheGap), Winding("N", 500*turn))
 	flux := 0.25 * 2.5 * cm * 3.5 * cm
 	op := core.Solve(Linkages{"N": 500 * flux})
-	fmt.Printf("%.3fe6 1/H, %.2f A\n", core.Reluctance("path.gap")/1e6, op.Current("N"))
+	fmt.Printf("%.3fe6 1/H, %.2f A, %.4f T\n", core.Reluctance("path.gap")/1e6, op.Current("N"), op.FluxDensity("path.gap"))
 	// Output:
-	// 4.547e6 1/H, 2.01 A
+	// 4.547e6 1/H, 2.01 A, 0.2500 T
 }
 
 // P. C. Sen, Principles of Electric Machines and Power Electronics, example 1.8 p. 31: a magnet 6.06 cm long of 2.105 cm2 is

@@ -265,7 +265,7 @@ func (c *MagneticCircuit) partsTable() doc.Table {
 	return t
 }
 
-// state says the conditions that the circuit itself carries: "T1 at 25 degC (nobody chose a temperature)".
+// state says the conditions that the circuit itself carries: "T1 at 25 degC (the default)".
 func (c *MagneticCircuit) state() string {
 	s := c.name + " at " + phys.Format(c.temperature, "degC")
 	if !c.asked {

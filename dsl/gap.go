@@ -87,7 +87,7 @@ type GapPart struct {
 }
 
 // Gap is an air gap. It takes the section of the leg beside it, or of .Faces(section), and counts the flux around it
-// by [ConformalMap] unless .Fringe(method) says otherwise.
+// by [ConformalMap] unless .Fringe(method) says otherwise; by [FieldSolve] where only the area of its faces is known.
 //
 // How far that flux reaches up the sides of the poles follows from the height of the winding window, as in
 // .Fringe(ConformalMap.Window(21*mm)). Not given, it is the square root of the area of the faces, or half the leg beside

@@ -42,11 +42,21 @@ func (op *OperatingPoint) LoadLine(magnet string) *LoadLine {
 		})
 		return h, b, err
 	}
-	l := &LoadLine{elem: elem, caption: op.conditions(), remarks: op.Notes(), fromOrigin: len(op.drive.Current)+len(op.drive.Linkage) == 0 && c.magnets() == 1}
+	l := &LoadLine{elem: elem, caption: op.conditions(), remarks: op.Notes(), fromOrigin: op.undriven() && c.magnets() == 1}
 	line, err := design.Load(session.Context(), elem, work, m.br, m.mur, loadPoints)
 	named(elem, err)
 	l.line = line
 	return l
+}
+
+// undriven says whether no winding carries current or has a linkage of its own.
+func (op *OperatingPoint) undriven() bool {
+	for _, i := range op.drive.Current {
+		if i != 0 {
+			return false
+		}
+	}
+	return len(op.drive.Linkage) == 0
 }
 
 // magnets counts the magnets of the circuit.

@@ -89,13 +89,14 @@ func (m *InductanceMatrix) Leakage(seen string, shorted ...string) Henry {
 	return m.keep(leakageKind, "H", func(m *InductanceMatrix) float64 { return must(m.matrix.Leakage(i[0], i[1:])) }, append([]string{seen}, shorted...)...)
 }
 
-// PerPhase is the inductance per phase of windings with balanced currents, whose sum is zero.
+// PerPhase is the inductance per phase of windings with balanced currents, whose sum is zero; the mean over the phases
+// where these differ.
 func (m *InductanceMatrix) PerPhase(windings ...string) Henry {
 	i := m.indices(windings)
 	return m.keep(perPhaseKind, "H", func(m *InductanceMatrix) float64 { return must(m.matrix.PerPhase(i...)) }, windings...)
 }
 
-// InPhase is the inductance per winding of windings with equal currents.
+// InPhase is the inductance per winding of windings with equal currents; the mean over the windings where these differ.
 func (m *InductanceMatrix) InPhase(windings ...string) Henry {
 	i := m.indices(windings)
 	return m.keep(inPhaseKind, "H", func(m *InductanceMatrix) float64 { return must(m.matrix.InPhase(i...)) }, windings...)

@@ -55,12 +55,13 @@ func (op *OperatingPoint) Flux(path string) Weber {
 }
 
 // FluxDensity is the flux density in a leg, or the largest magnitude among the legs of a path (its gaps never), with
-// the sign of the path's arrow. Which leg it was stands in the table that the operating point shows.
+// the sign of the path's arrow. Which leg it was stands in the table that the operating point shows. In a gap it is the flux
+// density between the faces; the flux beside them is not in it.
 func (op *OperatingPoint) FluxDensity(path string) Tesla {
 	return op.keep(densityKind, "T", op.leg(path).B, func(op *OperatingPoint) float64 { return op.leg(path).B }, path)
 }
 
-// FieldStrength is the field strength in a leg, or in that leg of a path whose flux density is largest.
+// FieldStrength is the field strength in a leg, a gap or a magnet, or in that leg of a path whose flux density is largest.
 func (op *OperatingPoint) FieldStrength(path string) AmperePerMetre {
 	return op.keep(fieldKind, "A/m", op.leg(path).H, func(op *OperatingPoint) float64 { return op.leg(path).H }, path)
 }
@@ -142,14 +143,16 @@ func (op *OperatingPoint) Linkage(winding string) Weber {
 	return op.keep(linkageKind, "Wb", op.shown.Linkage[w], func(op *OperatingPoint) float64 { return op.shown.Linkage[w] }, winding)
 }
 
-// Energy is the magnetic energy of the circuit.
+// Energy is the magnetic energy of the circuit: the integral of H dB over its volume. A magnet counts as its recoil
+// reluctance, with its remanence as a source outside, so that a circuit with a magnet has energy without current.
 func (op *OperatingPoint) Energy() Joule {
 	op.given()
 	ask := func(op *OperatingPoint) float64 { return op.solution.Energy() }
 	return op.keep(energyKind, "J", ask(op), ask)
 }
 
-// Coenergy is the magnetic co-energy of the circuit.
+// Coenergy is the magnetic co-energy of the circuit: the integral of B dH over its volume; magnets as for
+// [OperatingPoint.Energy].
 func (op *OperatingPoint) Coenergy() Joule {
 	op.given()
 	ask := func(op *OperatingPoint) float64 { return op.solution.Coenergy() }
@@ -178,12 +181,13 @@ func (op *OperatingPoint) Leakage(seen string, shorted ...string) Henry {
 	return op.Matrix().Leakage(seen, shorted...)
 }
 
-// PerPhase is the inductance per phase of windings with balanced currents, whose sum is zero.
+// PerPhase is the inductance per phase of windings with balanced currents, whose sum is zero; the mean over the phases
+// where these differ.
 func (op *OperatingPoint) PerPhase(windings ...string) Henry {
 	return op.Matrix().PerPhase(windings...)
 }
 
-// InPhase is the inductance per winding of windings with equal currents.
+// InPhase is the inductance per winding of windings with equal currents; the mean over the windings where these differ.
 func (op *OperatingPoint) InPhase(windings ...string) Henry { return op.Matrix().InPhase(windings...) }
 
 // EquivalentCircuit is the circuit of two windings: series, magnetising and ratio, and the T form.
@@ -287,6 +291,9 @@ func (op *OperatingPoint) windingTable() doc.Table {
 		{Name: "linkage", Unit: "Wb"}, {Name: "inductance, incremental", Unit: "H"}}}
 	for w, name := range op.circuit.windings() {
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(name), doc.Num(op.shown.Current[w]), doc.Num(op.shown.Linkage[w]), doc.Num(op.Inductance(name))})
+	}
+	if op.circuit.magnets() > 0 {
+		t.Notes = append(t.Notes, "energies: "+magnetEnergy.method)
 	}
 	return t
 }

@@ -33,7 +33,8 @@ func Annulus(outer, inner Metre) Section {
 	return Section{geom.Annulus(outer, inner)}
 }
 
-// Area is a section of which only the area is known. A gap with such faces has no fringing that could be computed.
+// Area is a section of which only the area is known. A gap with such faces counts as a round one of that area, for no
+// shape has less flux beside it.
 func Area(area SquareMetre) Section {
 	wantPositive("Area", "area", area, "m2")
 	return Section{geom.Area(area)}

@@ -27,7 +27,16 @@ func (c *MagneticCircuit) GapFor(part, winding string, inductance Henry) Metre {
 		most = beside.length
 	}
 	seek := func(length float64) (float64, error) { return c.changed(lengthOf(at, length)).zeroBias(w) }
-	return must(design.Gap(session.Context(), elem, seek, inductance, p.parts[at.part].(GapPart).length, leastGap, most))
+	length := must(design.Gap(session.Context(), elem, seek, inductance, p.parts[at.part].(GapPart).length, leastGap, most))
+	c.keepAnswer(c.changed(lengthOf(at, length)), reluct.Drive{})
+	return length
+}
+
+// keepAnswer enters what a length, current or number of turns that was found rests on: the notes of the state that it leads to.
+func (c *MagneticCircuit) keepAnswer(found *MagneticCircuit, d reluct.Drive) {
+	if !c.drawn {
+		c.keepAssumptions(found.solved(d).Notes())
+	}
 }
 
 // CurrentFor is the current of a winding at which the first leg of the circuit reaches a flux density; the other
@@ -51,20 +60,43 @@ func (c *MagneticCircuit) CurrentFor(winding string, fluxDensity Tesla) Ampere {
 		}
 		return most, nil
 	}
-	return must(design.Current(session.Context(), elem, seek, fluxDensity, mostCurrent))
+	i := must(design.Current(session.Context(), elem, seek, fluxDensity, mostCurrent))
+	c.keepAnswer(c, reluct.Drive{Current: map[int]float64{w: i}})
+	return i
 }
 
 // mostCurrent ends the search for a current, A.
 const mostCurrent = 1e7
 
-// TurnsFor is the smallest whole number of turns of a winding that gives at least an inductance without current. A
-// winding that lies on several paths keeps its one number for all of them.
+// TurnsFor is the smallest whole number of turns of a winding that gives at least an inductance without current. Of a
+// winding that lies on several paths it is the number on each of them; one with different numbers is refused.
 func (c *MagneticCircuit) TurnsFor(winding string, inductance Henry) Turns {
 	w := c.windingOf(winding)
 	elem := "winding " + c.name + "." + c.windings()[w]
 	wantPositive(elem, "wanted inductance", inductance, "H")
+	c.wantEven(elem, c.windings()[w])
 	seek := func(turns float64) (float64, error) { return c.changed(turnsOf(c.windings()[w], turns)).zeroBias(w) }
-	return must(design.Turns(session.Context(), elem, seek, inductance, mostTurns))
+	turns := must(design.Turns(session.Context(), elem, seek, inductance, mostTurns))
+	c.keepAnswer(c.changed(turnsOf(c.windings()[w], turns)), reluct.Drive{})
+	return turns
+}
+
+// wantEven refuses a winding with different turns on its paths: one number says nothing of how they divide.
+func (c *MagneticCircuit) wantEven(elem, winding string) {
+	turns := 0.0
+	for i := range c.paths {
+		for k, part := range c.paths[i].parts {
+			w, ok := part.(WindingPart)
+			if !ok || c.paths[i].names[k] != winding {
+				continue
+			}
+			if turns != 0 && w.turns != turns {
+				refuse(magcirc.WrongUse, elem, fmt.Sprintf("has %s turns on one path and %s on another, and TurnsFor seeks one number for all",
+					phys.Format(turns, ""), phys.Format(w.turns, "")), "try turns in a loop, or name the coils apart")
+			}
+			turns = w.turns
+		}
+	}
 }
 
 // mostTurns ends the search for a number of turns.

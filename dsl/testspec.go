@@ -151,8 +151,8 @@ func connection(at string, shorted, all []string) string {
 	return s
 }
 
-// forecast is the range of an item over the tolerances, widened by what the methods leave open; equal ends where nothing is
-// known of its spread.
+// forecast is the range of an item over the tolerances, widened by what the methods leave open; equal ends where no tolerance
+// is stated.
 func (t *TestSheet) forecast(item testItem) (nominal, low, high float64) {
 	c := &t.circuit
 	d := c.driveOf(nil)
@@ -161,13 +161,13 @@ func (t *TestSheet) forecast(item testItem) (nominal, low, high float64) {
 	}
 	op := c.solved(d)
 	a := &answer{op: op, value: item.value(op), ask: item.value}
-	nominal, low, high = a.value, a.value, a.value
-	if spreads := c.spreads(); len(spreads) > 0 {
-		w := must(tol.WorstCase(session.Context(), a.again(spreads), below(spreads)))
-		low, high = w.Min, w.Max
+	spreads := c.spreads()
+	if len(spreads) == 0 {
+		return a.value, a.value, a.value
 	}
-	u := a.uncertainty() * math.Abs(nominal)
-	return nominal, low - u, high + u
+	w := must(tol.WorstCase(session.Context(), a.again(spreads), below(spreads)))
+	u := a.uncertainty() * math.Abs(a.value)
+	return a.value, w.Min - u, w.Max + u
 }
 
 // guarded takes the guard band off limits, and refuses what is left if that is less than a third.
@@ -215,17 +215,33 @@ func (t *TestSheet) rowOf(item testItem) ([]doc.Cell, bool) {
 	return append(row, doc.Quantity(guard, item.unit), doc.Text(source)), true
 }
 
-// ratios are the lines of the ratios of turns: limits at half a turn of the larger winding tell every turn.
+// ratios are the lines of the ratios of voltage that the model gives. Where two windings share their flux they are those of
+// turns, and limits at half a turn of the larger winding tell every turn; elsewhere the tolerances of the part widen them.
+// Windings without coupling have none.
 func (t *TestSheet) ratios() [][]doc.Cell {
 	all := t.circuit.windings()
+	op := t.circuit.solved(t.circuit.driveOf(nil))
 	var rows [][]doc.Cell
 	for i, w := range all {
 		for _, other := range all[i+1:] {
+			if op.Mutual(w, other) == 0 {
+				continue
+			}
 			n1, n2 := t.circuit.turnsOn(w), t.circuit.turnsOn(other)
-			larger := math.Max(n1, n2)
-			ratio := n1 / n2
-			rows = append(rows, []doc.Cell{doc.Text("ratio of turns " + w + " : " + other + ", polarity"), doc.Text("voltage at " + w + "; leave all others open; dots in phase"), doc.Text("ratio meter"),
-				doc.Quantity(ratio, ""), doc.Quantity(ratio*(1-0.5/larger), ""), doc.Quantity(ratio*(1+0.5/larger), ""), doc.Text(""), doc.Text("half a turn of the larger winding")})
+			what, dots, source := "ratio of turns ", "in phase", "half a turn of the larger winding"
+			if op.Mutual(w, other) < 0 {
+				dots = "opposed"
+			}
+			of := func(op *OperatingPoint) float64 { return math.Abs(1 / op.EquivalentCircuit(other, w).Ratio()) }
+			ratio := of(op)
+			low, high := ratio, ratio
+			if math.Abs(ratio*n2/n1-1) > 1e-6 {
+				what, source = "ratio of voltages ", "forecast of the tolerances and "+source
+				_, low, high = t.forecast(testItem{value: of})
+			}
+			half := 0.5 / math.Max(n1, n2)
+			rows = append(rows, []doc.Cell{doc.Text(what + w + " : " + other + ", polarity"), doc.Text("voltage at " + w + "; leave all others open; dots " + dots), doc.Text("ratio meter"),
+				doc.Quantity(ratio, ""), doc.Quantity(low*(1-half), ""), doc.Quantity(high*(1+half), ""), doc.Text(""), doc.Text(source)})
 		}
 	}
 	return rows

@@ -217,7 +217,7 @@ func TestTestSpec(t *testing.T) {
 	c.Path("centre", "top -> bottom", Leg(fer(), 20*mm, Rect(12*mm, 12*mm)), Gap(0.5*mm), Winding("C", 8))
 	sheet := c.TestSpec().Gauge(0.5*percent).Meter(10e3, 0.1).Bias("A", 5*amp)
 	s := text(t, sheet)
-	for _, want := range []string{"inductance of A", "meter at A; leave open B, C", "meter at A; short B; leave open C", "10 kHz, 100 mV; bias 5 A in A; 25 degC", "ratio of turns A : C, polarity",
+	for _, want := range []string{"inductance of A", "meter at A; leave open B, C", "meter at A; short B; leave open C", "10 kHz, 100 mV; bias 5 A in A; 25 degC", "ratio of voltages A : C, polarity",
 		"windings lie on 3 limbs", "OPEN", "guard band"} {
 		contains(t, s, want)
 	}

@@ -23,7 +23,7 @@ type Settings struct {
 // ElementState is the state of one element.
 type ElementState struct {
 	H   float64 // field strength in A/m (gap, stray path: drop over the element's length, where it has one)
-	B   float64 // flux density in T (gap, stray path: flux over the element's area, where it has one); of a leg, in its metal
+	B   float64 // flux density in T; of a leg, in its metal; of a gap of known length, mu0 H between its faces, without the flux beside them; of a stray path, flux over area, where it has one
 	MMF float64 // drop U of magnetic potential From -> To in A; of a magnet usually against its flux
 }
 
@@ -94,6 +94,8 @@ func (e *Element) under(u, phi float64) ElementState {
 	switch {
 	case e.Kind == Leg:
 		s.B, _ = e.Law.At(s.H)
+	case e.Kind == Gap && e.Length > 0:
+		s.B = phys.Mu0 * s.H
 	case e.Area > 0:
 		s.B = phi / e.Area
 	}

@@ -95,13 +95,21 @@ func (w *Working) seen(branches []reluct.Branch, whole []Line, own int) (Line, b
 
 // FluxDensity writes the flux density in a leg, and the balance of mmf around the loop that its flux closes.
 //
-//	B = Phi / A,   sum N i = sum U
+//	B = Phi / A,   in a gap  B = mu0 U / l,   sum N i = sum U
 //
-// Valid: where no air beside the metal carries flux; with it the line says what the air takes.
+// Valid: in a leg beside which air carries flux the line says what the air takes. In a gap it is the flux density between the
+// faces; the flux beside them is not in it.
 func FluxDensity(n *reluct.Network, s *reluct.Solution, branch, element int, of Describe) Working {
 	b := &n.Branches()[branch]
 	e, state := &b.Elements[element], s.State[branch][element]
 	w := balance(n, s, branch, of)
+	if e.Kind == reluct.Gap && e.Length > 0 {
+		value := phys.Mu0 * state.MMF / e.Length
+		w.Lines = append(w.Lines, Line{What: "flux density in " + of(branch, element).Elem, Symbol: Formula{"B", "B"}, Rule: fraction(product(symMu0, name("U", "U", e.Name)), symLength),
+			Numbers: fraction(product(numMu0, number(state.MMF, "A")), number(e.Length, "m")), Value: value, Unit: "T"})
+		w.Value, w.Solved, w.Hand = value, state.B, true
+		return w
+	}
 	phi, numbers := Formula{"Phi", `\Phi`}, number(s.Flux[branch], "Wb")
 	value := s.Flux[branch] / e.Area
 	if e.Air > 0 {

@@ -90,6 +90,10 @@ func TestLinesLeadToTheSolution(t *testing.T) {
 			if math.Abs(b.Value-b.Solved) > 1e-9*math.Abs(b.Solved) {
 				t.Errorf("%s at %g A: lines come to %g T, solver to %g T", name, i, b.Value, b.Solved)
 			}
+			air := working.FluxDensity(n, s, 0, 1, names) // B = mu0 H in the gap, whatever runs beside its faces
+			if want := 4e-7 * math.Pi * s.State[0][1].H; math.Abs(air.Value-want) > 1e-12*math.Abs(want) || math.Abs(air.Solved-want) > 1e-12*math.Abs(want) {
+				t.Errorf("%s at %g A: gap %g T by lines, %g T by the solver, mu0 H %g T", name, i, air.Value, air.Solved, want)
+			}
 			l := working.Linkage(n, s, 0)
 			if math.Abs(l.Value-l.Solved) > 1e-9*math.Abs(l.Solved) {
 				t.Errorf("%s at %g A: lines come to %g Wb, solver to %g Wb", name, i, l.Value, l.Solved)
