@@ -8,7 +8,9 @@
 //	gap        permeance of an air gap with fringing, method by method, each with its validity
 //	field      plane and axisymmetric field solution of a gap (finite volumes)
 //	induct     inductance matrices: coupling, leakage, equivalent circuits, readings
-//	reluct     networks of any topology: solution, energies, incremental inductances
+//	hyst       laws with a memory: loops, remanence, losses, fits to measured loops
+//	reluct     networks of any topology: solution, energies, incremental inductances, histories
+//	datafile   measured points from files whose header names columns and units
 //
 // Every quantity is a float64 in coherent SI; temperatures are in degrees Celsius. Computing functions return
 // *[Error] for what they refuse and []*[Note] for what a reader must know about a result that they do deliver.

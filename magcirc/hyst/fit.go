@@ -287,13 +287,6 @@ func Statement(rms float64, records []Fitted) string {
 		return "follows the records to their last digits"
 	}
 	s := "follows the records within " + percent(rms) + " rms of their largest B"
-	switch {
-	case rms < 0.01:
-	case rms < 0.03:
-		s += ": good for flux and losses of the same kind of loop"
-	default:
-		s += ": the law cannot follow this core closely"
-	}
 	worst, at := 0.0, -1
 	for i := range records {
 		if f := &records[i]; f.Loop && math.Abs(f.LawArea/f.Area-1) > worst {
@@ -302,6 +295,12 @@ func Statement(rms float64, records []Fitted) string {
 	}
 	if at >= 0 {
 		s += fmt.Sprintf("; the loop area is %s off at worst (%s)", off(records[at].LawArea, records[at].Area), records[at].Name)
+	}
+	switch {
+	case rms >= 0.03:
+		s += ": the law cannot follow this core closely"
+	case worst > 0.1:
+		s += ": good for flux, not for losses"
 	}
 	return s
 }

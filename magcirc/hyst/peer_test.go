@@ -45,7 +45,7 @@ func (c *peerCase) parameters() hyst.Parameters {
 // peerCases are minor loops under bias, arbitrary histories, and the same driven by flux density.
 func peerCases() []peerCase {
 	var list []peerCase
-	for _, p := range []hyst.Parameters{steel86, steel92, silicon, sadowski, ferrite, mnznHP} {
+	for _, p := range []hyst.Parameters{steel86, steel92, silicon, sadowski, tape, ferrite, mnznHP} {
 		k := 4 * (p.A + p.K)
 		minor := []float64{k, -k, k, 0.1 * k}
 		for range 5 {

@@ -174,11 +174,8 @@ func TestLossIdentity(t *testing.T) {
 	}
 	c := steel92.C
 	m := loop.B[0]/phys.Mu0 - loop.H[0]
-	man := (l.Anhysteretic(loop.H[0]) / phys.Mu0) - loop.H[0]
-	// Man at the tip's effective field, not at its H.
-	z := (loop.H[0] + steel92.Alpha*m) / steel92.A
-	v, _ := num.Langevin(z)
-	man = steel92.Ms * v
+	v, _ := num.Langevin((loop.H[0] + steel92.Alpha*m) / steel92.A) // at the tip's effective field
+	man := steel92.Ms * v
 	bound := 4 * phys.Mu0 * steel92.K * (m - c*man)
 	near(t, "4 mu0 k (1-c) Mirr", bound, 2209.654, 1e-6)
 	near(t, "area", loop.Area(), bound*(1-0.0023), 1e-4)
