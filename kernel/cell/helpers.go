@@ -63,15 +63,19 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"Is":         reflect.ValueOf(func(k int, zero any, f func(any, error) bool) { s.able(k, zero).is = f }),
 		"Typed":      reflect.ValueOf(s.typedAt),
 		"Size":       reflect.ValueOf(size),
-		"Sort":       reflect.ValueOf(nb.Sort),
-		"MinFloat":   reflect.ValueOf(nb.MinFloat),
-		"MaxFloat":   reflect.ValueOf(nb.MaxFloat),
-		"MinInt":     reflect.ValueOf(nb.MinInt),
-		"MaxInt":     reflect.ValueOf(nb.MaxInt),
-		"MinUint":    reflect.ValueOf(nb.MinUint),
-		"MaxUint":    reflect.ValueOf(nb.MaxUint),
-		"MinString":  reflect.ValueOf(nb.MinString),
-		"MaxString":  reflect.ValueOf(nb.MaxString),
+
+		"SortList":     reflect.ValueOf(nb.SortList),
+		"SortBy":       reflect.ValueOf(nb.SortBy),
+		"SortStableBy": reflect.ValueOf(nb.SortStableBy),
+		"Sort":         reflect.ValueOf(nb.Sort),
+		"MinFloat":     reflect.ValueOf(nb.MinFloat),
+		"MaxFloat":     reflect.ValueOf(nb.MaxFloat),
+		"MinInt":       reflect.ValueOf(nb.MinInt),
+		"MaxInt":       reflect.ValueOf(nb.MaxInt),
+		"MinUint":      reflect.ValueOf(nb.MinUint),
+		"MaxUint":      reflect.ValueOf(nb.MaxUint),
+		"MinString":    reflect.ValueOf(nb.MinString),
+		"MaxString":    reflect.ValueOf(nb.MaxString),
 	}
 }
 

@@ -5,6 +5,7 @@ import (
 	"go/constant"
 	"go/token"
 	"go/types"
+	"maps"
 	"path"
 	"strings"
 	"sync"
@@ -22,6 +23,7 @@ type live struct {
 
 	captured bool      // a variable that functions or pointers may hold on to
 	fn       *function // of a function
+	offers   offers    // of a variable: what texts about its value can be
 	indirect string    // of a function: the variable through which values that outlive a cell call it
 }
 
@@ -48,7 +50,7 @@ func (s *scope) clone() *scope {
 // base is what is in scope before the first cell: the vocabulary.
 type base struct {
 	voc      *Vocabulary
-	packages map[string]*types.Package // by import path
+	packages map[string]*types.Package // by import path, those of the generic functions included
 	byName   map[string]*types.Package // by the last element of the import path, those that cells may name
 	open     *types.Package
 	objects  map[string]types.Object // constants, hand-check functions
@@ -92,6 +94,17 @@ func newBase(v *Vocabulary) (*base, error) {
 	for _, p := range v.Packages {
 		if all[p] != nil {
 			b.byName[path.Base(p)] = all[p]
+		}
+	}
+	lib, err := lists()
+	if err != nil {
+		return nil, err
+	}
+	b.packages = maps.Clone(all)
+	for name, p := range lib.packages {
+		b.packages[name] = p
+		if b.byName[name] == nil && name != "iter" {
+			b.byName[name] = p
 		}
 	}
 	units := types.NewPackage("units", "units")

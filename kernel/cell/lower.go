@@ -46,6 +46,7 @@ type lowering struct {
 	src     *source
 	fn      *frame
 	locals  map[types.Object]string
+	generic map[string]string       // names of generic functions with their types filled in
 	floats  map[types.Object]string // float64 that goes along with a loop variable
 	taken   map[string]int
 	imports map[string]bool
@@ -78,7 +79,7 @@ type loop struct {
 // lower writes a checked cell as text.
 func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 	l := &lowering{
-		s: s, r: r, info: r.info, unit: unit, src: r.src, locals: map[types.Object]string{}, floats: map[types.Object]string{}, taken: map[string]int{},
+		s: s, r: r, info: r.info, unit: unit, src: r.src, locals: map[types.Object]string{}, floats: map[types.Object]string{}, generic: map[string]string{}, taken: map[string]int{},
 		imports: map[string]bool{}, pending: map[*live]bool{},
 	}
 	for _, t := range r.types {

@@ -185,6 +185,9 @@ func mentionsCell(t types.Type, depth int) bool {
 // vocabularyCall lowers calls of compiled functions that the notebook treats in its own way.
 func (l *lowering) vocabularyCall(e *ast.CallExpr, o types.Object, sig *types.Signature, alone bool) (string, bool) {
 	path := o.Pkg().Path()
+	if collects(o) {
+		return l.collected(e, o), true
+	}
 	own, _ := o.Type().(*types.Signature) // the type of a selector has no receiver
 	method := own != nil && own.Recv() != nil
 	switch {

@@ -131,6 +131,9 @@ func (l *lowering) selector(e *ast.SelectorExpr) string {
 	sel := l.info.Selections[e]
 	if sel == nil { // a name of a package
 		o := l.info.Uses[e.Sel]
+		if isList(o) {
+			return l.listFunc(o, l.info.Instances[e.Sel].TypeArgs)
+		}
 		if t, ok := o.(*types.TypeName); ok {
 			return l.typ(t.Type())
 		}

@@ -10,7 +10,7 @@ import (
 
 // subset refuses what Go has and cells have not, each with what to write instead.
 func (c *checking) subset(r *checked) []problem {
-	w := &subsetWalk{c: c, r: r}
+	w := &subsetWalk{c: c, r: r, collected: map[*ast.SelectorExpr]bool{}}
 	for _, im := range c.p.imports {
 		w.importSpec(im)
 	}
@@ -38,6 +38,8 @@ type subsetWalk struct {
 	r   *checked
 	bad []problem
 	top bool
+
+	collected map[*ast.SelectorExpr]bool // sequences within slices.Sorted and slices.Collect
 }
 
 func (w *subsetWalk) refuse(n ast.Node, text string) {
@@ -54,14 +56,14 @@ func (w *subsetWalk) refuse(n ast.Node, text string) {
 
 func (w *subsetWalk) importSpec(im *ast.ImportSpec) {
 	path := strings.Trim(im.Path.Value, "\"`")
-	offered := false
+	offered := path == "slices" || path == "maps" || path == "cmp"
 	for _, p := range w.c.s.voc.Packages {
 		offered = offered || p == path
 	}
 	switch {
 	case path == w.c.s.voc.Open:
 	case !offered:
-		w.refuse(im.Path, "package "+path+" is not offered to cells; there are "+strings.Join(w.c.s.voc.Packages, " "))
+		w.refuse(im.Path, "package "+path+" is not offered to cells; there are "+strings.Join(w.c.s.voc.Packages, " ")+" slices maps cmp")
 	case im.Name != nil && im.Name.Name == ".":
 		w.refuse(im, "import without a dot: the names are written "+w.c.s.base.packages[path].Name()+".Name")
 	}
@@ -80,6 +82,10 @@ func (w *subsetWalk) visit(n ast.Node) bool {
 		w.refuse(n, "a cell has no defer; write the line where it is due, and Try(func() { .. }) where a failure is expected")
 	case *ast.GoStmt:
 		w.refuse(n, "a cell has no goroutines; Sweep runs many circuits at a time")
+	case *ast.SelectorExpr:
+		if o := w.c.info.Uses[n.Sel]; isSequence(o) && !w.collected[n] {
+			w.refuse(n, "a cell reads the "+strings.ToLower(o.Name())+" of a map with slices.Sorted(maps."+o.Name()+"(m)), or ranges over the map itself, in the order of its keys")
+		}
 	case *ast.SelectStmt, *ast.ChanType, *ast.SendStmt:
 		w.refuse(n, "a cell has no channels; use a slice")
 	case *ast.UnaryExpr:
@@ -185,6 +191,9 @@ func (w *subsetWalk) call(n *ast.CallExpr) {
 		}
 	case *ast.SelectorExpr:
 		o := w.c.info.Uses[f.Sel]
+		if collects(o) {
+			w.collects(n, o)
+		}
 		if o != nil && o.Pkg() != nil && o.Pkg().Path() == "fmt" {
 			w.typeVerb(n)
 		}
@@ -195,6 +204,19 @@ func (w *subsetWalk) call(n *ast.CallExpr) {
 			}
 		}
 	}
+}
+
+// collects lets slices.Sorted and slices.Collect read the keys or values of a map.
+func (w *subsetWalk) collects(n *ast.CallExpr, o types.Object) {
+	if len(n.Args) == 1 {
+		if inner, ok := ast.Unparen(n.Args[0]).(*ast.CallExpr); ok {
+			if s, ok := ast.Unparen(inner.Fun).(*ast.SelectorExpr); ok && isSequence(w.c.info.Uses[s.Sel]) {
+				w.collected[s] = true
+				return
+			}
+		}
+	}
+	w.refuse(n, "slices."+o.Name()+" takes maps.Keys(m) or maps.Values(m) here")
 }
 
 // typeVerb refuses %T for what holds types of a cell: at run time they have no name.
