@@ -221,3 +221,18 @@ func TestLawsAtExtremes(t *testing.T) {
 		}
 	}
 }
+
+// TestTabulateMagnitude follows a function written with the magnitude of h, whose second derivative jumps at zero: the
+// Froehlich-Kennelly form B = Bs h/(|h| + h0), against itself between the table's points.
+func TestTabulateMagnitude(t *testing.T) {
+	f := func(h float64) float64 { return 0.45*h/(math.Abs(h)+120) + 4e-7*math.Pi*h }
+	law, err := material.Tabulate(f, 50000)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for h := 1e-6; h < 50000; h *= 1.37 {
+		if b, _ := law.At(h); math.Abs(b-f(h)) > 2e-7*f(h) {
+			t.Errorf("at %g A/m: %g, want %g", h, b, f(h))
+		}
+	}
+}

@@ -61,7 +61,7 @@ func (t *table) sample(hmax float64) error {
 		return err
 	}
 	t.h, t.b = []float64{0}, []float64{0}
-	t.slope = []float64{t.difference(0, hmax*1e-9)}
+	t.slope = []float64{t.difference(0, hmax*1e-12)} // a thousandth of the first interval: f may hold |h|, which bends at 0
 	for k := -144; k <= 0; k++ {
 		if err := t.refine(hmax*math.Pow(10, float64(k)/16), 0); err != nil {
 			return err
