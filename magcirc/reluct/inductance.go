@@ -30,9 +30,19 @@ func (s *Solution) Incremental() (*mat.SymDense, error) {
 // reluctance U/phi at the solution (frozen permeability). For a single winding without magnets L = lambda/i.
 //
 // Valid: as a description of this one state; with magnets the linkages are L i plus what the magnets contribute.
-// Errors: as Incremental.
+// Errors: as Incremental; [magcirc.NoSolution] where flux remains in a leg that the field strength there does not drive, so
+// that U/phi is no reluctance.
 // Source: frozen permeability: J. A. Walker et al., IEEE Trans. Magn. 41 (2005) 3946-3948 (from memory).
 func (s *Solution) Secant() (*mat.SymDense, error) {
+	for i := range s.State {
+		for k, x := range s.State[i] {
+			if s.net.branches[i].Elements[k].Kind == Leg && remains(x) {
+				return nil, &magcirc.Error{Code: magcirc.NoSolution, Elem: s.net.part(i, k), Quantity: "field strength", Unit: "A/m", Got: x.H,
+					Msg:  "has no secant permeability: " + show(x.B, "T") + " remain in it at " + show(x.H, "A/m"),
+					Hint: "ask for the incremental inductance"}
+			}
+		}
+	}
 	return s.inductance((*series).secant)
 }
 

@@ -3,16 +3,25 @@ package reluct
 import (
 	"math"
 	"slices"
+
+	"ampturn/magcirc/phys"
 )
 
 // rounding is the share of the largest flux below which a flux is taken for what rounding leaves: no law and no length
 // is known to nine digits.
 const rounding = 1e-9
 
+// fieldless is the field strength in A/m per T below which there is none: a permeability of 1e12.
+const fieldless = 1e-12 / phys.Mu0
+
+// remains says whether the flux density of a leg is not driven by the field strength there: remanence.
+func remains(x ElementState) bool { return x.B != 0 && x.H*x.B <= fieldless*x.B*x.B }
+
 // Rounded returns the solution for showing: a flux below 1e-9 of the largest of the network, or below the solution's
 // Floor if that is more, is set to zero, and with it the state of legs, gaps and stray paths that carry it and the flux
 // density of magnets; so is a linkage or a current that is as small beside what the windings could link or the mmf that
-// there is. The solution itself stays as it is.
+// there is, and the field strength of a leg whose flux no material carries at so little: what stays in a closed ring without
+// current. The solution itself stays as it is.
 func (s *Solution) Rounded() *Solution {
 	t := *s
 	t.Flux, t.Linkage, t.Current = slices.Clone(s.Flux), slices.Clone(s.Linkage), slices.Clone(s.Current)
@@ -26,6 +35,11 @@ func (s *Solution) Rounded() *Solution {
 		for _, w := range b.Turns {
 			link[w.Winding] += math.Abs(w.Turns) * flux
 			turns[w.Winding] += math.Abs(w.Turns)
+		}
+		for k := range t.State[i] {
+			if x := t.State[i][k]; b.Elements[k].Kind == Leg && math.Abs(x.H) < fieldless*math.Abs(x.B) {
+				t.State[i][k].H, t.State[i][k].MMF = 0, 0
+			}
 		}
 		if s.Flux[i] == 0 || math.Abs(s.Flux[i]) >= share*flux {
 			continue

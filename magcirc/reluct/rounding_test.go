@@ -1,8 +1,12 @@
 package reluct_test
 
 import (
+	"context"
+	"errors"
 	"testing"
 
+	"ampturn/magcirc"
+	"ampturn/magcirc/hyst"
 	"ampturn/magcirc/phys"
 	"ampturn/magcirc/reluct"
 )
@@ -33,6 +37,26 @@ func TestRounded(t *testing.T) {
 	uneven := solve(t, build(), reluct.Drive{Current: map[int]float64{0: 1.3, 1: 1.3 * (1 - 1e-6)}})
 	if u := uneven.Rounded(); u.Flux[2] != uneven.Flux[2] || u.Flux[2] == 0 {
 		t.Errorf("a flux of %g beside %g is real, shown as %g", uneven.Flux[2], uneven.Flux[0], u.Flux[2])
+	}
+	p, err := hyst.NewJilesAtherton(hyst.Parameters{Ms: 3.8e5, A: 27, K: 30, Alpha: 5e-5, C: 0.55})
+	if err != nil {
+		t.Fatal(err)
+	}
+	h, err := ring(10, reluct.Element{Name: "leg", Law: hyst.Initial(p), Length: 60 * mm, Area: 1 * cm2}).History(nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, i := range []float64{30, 0} {
+		if s, err = h.Step(context.Background(), reluct.Drive{Current: map[int]float64{0: i}}); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if r := s.Rounded().State[0][0]; r.H != 0 || r.MMF != 0 || r.B < 0.05 { // Ampere's law: H l = N i = 0
+		t.Errorf("remanence of a closed ring: %+v, want no field strength", r)
+	}
+	var e *magcirc.Error
+	if _, err := s.Secant(); !errors.As(err, &e) || e.Code != magcirc.NoSolution {
+		t.Errorf("secant inductance at remanence: %v", err)
 	}
 	magnet := reluct.Element{Name: "magnet", Kind: reluct.Magnet, Length: 5 * mm, Area: 1 * cm2, Mur: 1.05, Br: 1.2}
 	held := ring(100, magnet, airGap("gap", 1*mm, 1*cm2))
