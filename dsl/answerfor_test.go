@@ -1,6 +1,7 @@
 package dsl_test
 
 import (
+	"math"
 	"regexp"
 	"testing"
 
@@ -95,4 +96,20 @@ func TestShareOfTemperature(t *testing.T) {
 	contains(t, refused(t, func() { ToleranceWithUnits(degrees, 25, 0.1) }).Error(), "no range of temperature")
 	v := LimitWithUnits([]string{"", "degC"}, "core", 90, AtMostWithUnits(degrees, 100))
 	contains(t, refused(t, func() { v.Uncertain(5 * percent) }).Error(), "judges a temperature")
+}
+
+// TestHistoryKeepsNotesOfItsPeak: the leg is saturated at the peak current; the last state, without current, is not.
+func TestHistoryKeepsNotesOfItsPeak(t *testing.T) {
+	c := Magnetic("R")
+	c.Ring("core", Leg(NewMaterial("core 7", JilesAtherton(steel)), 100*mm, Area(100*mm2)), Winding("N", 100*turn))
+	h := c.History(Currents{"N": 60 * amp}, Currents{"N": 0})
+	contains(t, text(t, h), "saturated: ")
+	last := h.Last()
+	if s, b := last.Worst().Saturation(), last.FluxDensity("core"); b < 0.5 || math.Abs(s-b/(4e-7*math.Pi*1.6e6)) > 0.01 {
+		t.Errorf("remanence %g T is %g of saturation, want J/Js with Js = mu0 Ms", b, s)
+	}
+	if got := last.FieldStrength("core"); got != 0 {
+		t.Errorf("field strength of a closed ring without current: %g A/m", got)
+	}
+	contains(t, refused(t, func() { last.Secant("N") }).Error(), "does not drive its 0.6239 T; ask for the incremental inductance")
 }

@@ -128,6 +128,27 @@ func (h *History) At(number Count) *OperatingPoint {
 // Last is the last state.
 func (h *History) Last() *OperatingPoint { h.given(); return h.points[len(h.points)-1] }
 
+// Notes lists what a reader must know about the states: of each kind on each part the first, for the figures in them differ
+// from state to state.
+func (h *History) Notes() []Remark {
+	h.given()
+	all := append([]magcirc.Note(nil), h.points[0].model.notes...)
+	type about struct {
+		kind magcirc.NoteKind
+		elem string
+	}
+	seen := map[about]bool{}
+	for _, op := range h.points {
+		for _, n := range append(op.legNotes(), op.solution.Notes...) {
+			if key := (about{n.Kind, n.Elem}); !seen[key] {
+				seen[key] = true
+				all = append(all, n)
+			}
+		}
+	}
+	return all
+}
+
 // Flux is the flux of a path in each state.
 func (h *History) Flux(path string) []Weber {
 	return h.each(func(op *OperatingPoint) float64 { return op.Flux(path) })
@@ -177,7 +198,7 @@ func (h *History) MIMEMetadata() map[string]any {
 }
 
 func (h *History) table() doc.Table {
-	t := doc.Table{Caption: "history of " + h.circuit.state(), Columns: []doc.Column{{Name: "state"}, {Name: "drive"}}, Notes: noteLines(h.Last().Notes())}
+	t := doc.Table{Caption: "history of " + h.circuit.state(), Columns: []doc.Column{{Name: "state"}, {Name: "drive"}}, Notes: noteLines(h.Notes())}
 	for i := range h.circuit.paths {
 		if h.points[0].fullest(i) >= 0 {
 			t.Columns = append(t.Columns, doc.Column{Name: h.circuit.paths[i].name + ": B", Unit: "T"}, doc.Column{Name: "H", Unit: "A/m"})

@@ -144,7 +144,8 @@ func (op *OperatingPoint) Linkage(winding string) Weber {
 }
 
 // Energy is the magnetic energy of the circuit: the integral of H dB over its volume. A magnet counts as its recoil
-// reluctance, with its remanence as a source outside, so that a circuit with a magnet has energy without current.
+// reluctance, with its remanence as a source outside, so that a circuit with a magnet has energy without current. After a
+// [MagneticCircuit.History] it is the work since the demagnetised state, of which a part is heat by then.
 func (op *OperatingPoint) Energy() Joule {
 	op.given()
 	ask := func(op *OperatingPoint) float64 { return op.solution.Energy() }

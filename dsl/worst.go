@@ -26,7 +26,7 @@ func (op *OperatingPoint) worst() *LegState {
 				continue
 			}
 			s := op.state(place{i, k})
-			share := design.Nearness(leg.material.law(op.circuit.temperature), s.H)
+			share := design.Nearness(leg.material.law(op.circuit.temperature), s.H, s.B)
 			if worst == nil || share > worst.share*(1+1e-6) { // of equal legs the first
 				worst = &LegState{name: p.full(op.circuit.name, k), conditions: op.conditions(), b: s.B, h: s.H, share: share}
 			}
@@ -51,7 +51,7 @@ func (op *OperatingPoint) legNotes() []magcirc.Note {
 					Text: phys.Format(s.B, "T") + " is more than any material carries (2.5 T): look at currents, turns and units"})
 				continue
 			}
-			if share := design.Nearness(leg.material.law(op.circuit.temperature), s.H); share > saturatedShare {
+			if share := design.Nearness(leg.material.law(op.circuit.temperature), s.H, s.B); share > saturatedShare {
 				notes = append(notes, magcirc.Note{Kind: magcirc.Remark, Elem: elem,
 					Text: "saturated: " + phys.Format(s.B, "T") + ", " + phys.FormatDigits(share, "percent", 3) + " of its saturation polarisation"})
 			}

@@ -149,11 +149,15 @@ func TestNearness(t *testing.T) {
 	law, _ := material.NewFroehlich(2200, 0.49)
 	// J = Bs/2 where (mu_i - 1) mu0 H = Bs.
 	half := 0.49 / (2199 * phys.Mu0)
-	if got := design.Nearness(law, half); math.Abs(got-0.5) > 1e-4 {
+	b, _ := law.At(half)
+	if got := design.Nearness(law, half, b); math.Abs(got-0.5) > 1e-4 {
 		t.Errorf("half way: %g", got)
 	}
+	if got := design.Nearness(law, 0, -0.1); math.Abs(got-0.1/0.49) > 1e-4 { // remanence: what the leg carries counts
+		t.Errorf("remanence: %g", got)
+	}
 	linear, _ := material.NewLinear(1000)
-	if got := design.Nearness(linear, 1000); got > 1e-3 {
+	if got := design.Nearness(linear, 1000, 1000*1000*phys.Mu0); got > 1e-3 {
 		t.Errorf("a linear law is near saturation: %g", got)
 	}
 }

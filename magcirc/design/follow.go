@@ -103,18 +103,25 @@ func outwards(current []float64) []int {
 	return order
 }
 
-// Nearness gives how far a law is driven towards saturation at field strength h in A/m: the share of its saturation
-// polarisation that is reached,
+// Nearness gives how far a material is driven towards saturation at field strength h in A/m and flux density b in T: the
+// share of the saturation polarisation of its law that is reached,
 //
-//	s = |J(h)| / Js,  J = B - mu0 H,  Js = J at 10 MA/m
+//	s = |b - mu0 h| / Js,  Js = B(H) - mu0 H at 10 MA/m
 //
-// Valid: for laws that saturate. A law of constant permeability never does: s is then next to nothing, as it should be.
-func Nearness(law material.Law, h float64) float64 {
+// Valid: for laws that saturate. A law of constant permeability never does: s is then next to nothing, as it should be. A
+// leg that remembers need not lie on the law.
+func Nearness(law material.Law, h, b float64) float64 {
 	js := polarisation(law, saturated)
 	if js <= 0 {
 		return 0
 	}
-	return math.Abs(polarisation(law, h)) / js
+	return math.Abs(b-phys.Mu0*h) / js
+}
+
+// along is the nearness on the law itself.
+func along(law material.Law, h float64) float64 {
+	b, _ := law.At(h)
+	return Nearness(law, h, b)
 }
 
 // saturated is a field strength at which every soft material is saturated, A/m.
@@ -128,13 +135,13 @@ func polarisation(law material.Law, h float64) float64 {
 // Knee gives a field strength in A/m up to which a drawing of the law shows what is worth seeing: where 90 % of the
 // saturation polarisation is reached, and 1 kA/m for a law that does not saturate.
 func Knee(law material.Law) float64 {
-	if Nearness(law, 1e6) < 0.9 {
+	if along(law, 1e6) < 0.9 {
 		return 1e3
 	}
 	low, high := 0.0, 1e6
 	for range 60 {
 		mid := (low + high) / 2
-		if Nearness(law, mid) < 0.9 {
+		if along(law, mid) < 0.9 {
 			low = mid
 		} else {
 			high = mid

@@ -38,7 +38,7 @@ func (s *Solution) Secant() (*mat.SymDense, error) {
 		for k, x := range s.State[i] {
 			if s.net.branches[i].Elements[k].Kind == Leg && remains(x) {
 				return nil, &magcirc.Error{Code: magcirc.NoSolution, Elem: s.net.part(i, k), Quantity: "field strength", Unit: "A/m", Got: x.H,
-					Msg:  "has no secant permeability: " + show(x.B, "T") + " remain in it at " + show(x.H, "A/m"),
+					Msg:  "has no secant permeability: its field strength does not drive its " + show(x.B, "T"),
 					Hint: "ask for the incremental inductance"}
 			}
 		}
