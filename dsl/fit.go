@@ -12,9 +12,10 @@ import (
 // JAFit is a Jiles-Atherton law fitted to measured loops: the law, how well it follows each loop, and how far its
 // parameters are known. It is a [Law].
 type JAFit struct {
-	bound boundLaw
-	fit   *hyst.JAFit
-	loops []*Loop
+	bound   boundLaw
+	fit     *hyst.JAFit
+	loops   []*Loop
+	initial *CurveData
 }
 
 // FitJilesAtherton finds the Jiles-Atherton law that follows measured loops best, in Form1992; [JAFit.In] fits the other
@@ -23,11 +24,15 @@ type JAFit struct {
 //
 //	fit := FitJilesAtherton(ReadLoop("small.csv"), ReadLoop("large.csv"))
 //	core := NewMaterial("core 7", fit)
-func FitJilesAtherton(loops ...*Loop) *JAFit { return fitJA(Form1992, loops) }
+func FitJilesAtherton(loops ...*Loop) *JAFit { return fitJA(Form1992, loops, nil) }
 
-func fitJA(form JAForm, loops []*Loop) *JAFit {
-	fit := must(hyst.FitJilesAtherton(records(loops), &hyst.FitSettings{Form: hyst.Form(form)}))
-	return &JAFit{boundLaw{hyst.Initial(fit.Law)}, fit, loops}
+func fitJA(form JAForm, loops []*Loop, initial *CurveData) *JAFit {
+	list := records(loops)
+	if initial != nil {
+		list = append(list, hyst.Record{Name: initial.points.Name, H: initial.points.H, B: initial.points.B})
+	}
+	fit := must(hyst.FitJilesAtherton(list, &hyst.FitSettings{Form: hyst.Form(form)}))
+	return &JAFit{boundLaw{hyst.Initial(fit.Law)}, fit, loops, initial}
 }
 
 // records gives loops as the fits take them.
@@ -36,7 +41,7 @@ func records(loops []*Loop) []hyst.Record {
 	for i, l := range loops {
 		l.given()
 		list[i] = l.loop.Record()
-		list[i].Name = l.name
+		list[i].Name, list[i].Weight = l.name, l.weight
 	}
 	return list
 }
@@ -50,7 +55,15 @@ func (f *JAFit) given() {
 func (f *JAFit) below() material.Law { f.given(); return f.bound.law }
 
 // In fits the same loops in another form.
-func (f *JAFit) In(form JAForm) *JAFit { f.given(); return fitJA(form, f.loops) }
+func (f *JAFit) In(form JAForm) *JAFit { f.given(); return fitJA(form, f.loops, f.initial) }
+
+// WithInitial fits the same loops together with a measured initial curve, from the demagnetised state: what one loop
+// leaves open it determines.
+func (f *JAFit) WithInitial(curve *CurveData) *JAFit {
+	f.given()
+	curve.given()
+	return fitJA(JAForm(f.fit.Law.Parameters().Form), f.loops, curve)
+}
 
 // Parameters are the fitted parameters.
 func (f *JAFit) Parameters() JA {
@@ -122,8 +135,15 @@ func followTable(list []hyst.Fitted, notes []magcirc.Note) doc.Table {
 		{Name: "area", Unit: "J/m3"}, {Name: "law", Unit: "J/m3"}}, Notes: noteLines(notes)}
 	for i := range list {
 		f := &list[i]
-		t.Rows = append(t.Rows, []doc.Cell{doc.Text(f.Name), doc.Num(f.RMS), doc.Num(f.Worst), doc.Num(f.Br), doc.Num(f.LawBr),
-			doc.Num(f.Hc), doc.Num(f.LawHc), doc.Num(f.Area), doc.Num(f.LawArea)})
+		row := []doc.Cell{doc.Text(f.Name), doc.Num(f.RMS), doc.Num(f.Worst)}
+		for _, x := range []float64{f.Br, f.LawBr, f.Hc, f.LawHc, f.Area, f.LawArea} {
+			cell := doc.Text("") // an initial curve has none
+			if f.Loop {
+				cell = doc.Num(x)
+			}
+			row = append(row, cell)
+		}
+		t.Rows = append(t.Rows, row)
 	}
 	return t
 }

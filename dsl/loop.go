@@ -13,8 +13,9 @@ import (
 // Loop is a closed loop of flux density over field strength: computed by [MagneticMaterial.Loop] or measured
 // ([ReadLoop]).
 type Loop struct {
-	loop *hyst.Loop
-	name string
+	loop   *hyst.Loop
+	name   string
+	weight float64 // in a fit; 0: 1
 }
 
 // memory gives the law with memory of a material at a temperature.
@@ -36,13 +37,13 @@ func (m *MagneticMaterial) memory(temperature []Celsius) hyst.Law {
 //	core.Loop(200).Area()
 func (m *MagneticMaterial) Loop(peak AmperePerMetre, temperature ...Celsius) *Loop {
 	law := m.memory(temperature)
-	return &Loop{must(hyst.Steady(law, peak, nil)), m.Name() + " to " + phys.Format(peak, "A/m")}
+	return &Loop{loop: must(hyst.Steady(law, peak, nil)), name: m.Name() + " to " + phys.Format(peak, "A/m")}
 }
 
 // LoopTo is the steady loop up to a peak flux density, at 25 degC or another temperature.
 func (m *MagneticMaterial) LoopTo(peak Tesla, temperature ...Celsius) *Loop {
 	law := m.memory(temperature)
-	return &Loop{must(hyst.SteadyTo(law, peak, nil)), m.Name() + " to " + phys.Format(peak, "T")}
+	return &Loop{loop: must(hyst.SteadyTo(law, peak, nil)), name: m.Name() + " to " + phys.Format(peak, "T")}
 }
 
 // MinorLoop is a small loop around a bias, the given number of cycles after the field came there from the demagnetised
@@ -51,7 +52,7 @@ func (m *MagneticMaterial) MinorLoop(bias, amplitude AmperePerMetre, cycles Coun
 	wantRange("minor loop of "+m.Name(), "cycles", cycles, 1, 1e6, "")
 	law := m.memory(nil)
 	a := must(hyst.Minor(law, law.Start(), bias, amplitude, int(math.Round(cycles)), nil))
-	return &Loop{a.Loop, fmt.Sprintf("%s about %s", m.Name(), phys.Format(bias, "A/m"))}
+	return &Loop{loop: a.Loop, name: fmt.Sprintf("%s about %s", m.Name(), phys.Format(bias, "A/m"))}
 }
 
 // given refuses the loop that nobody made.
@@ -86,10 +87,29 @@ func (l *Loop) FieldStrengths() []AmperePerMetre {
 func (l *Loop) FluxDensities() []Tesla { l.given(); return append([]float64(nil), l.loop.B...) }
 
 // Centred is the loop moved to lie about zero: what an offset of the measurement added is taken out, and noted.
-func (l *Loop) Centred() *Loop { l.given(); return &Loop{l.loop.Centred(), l.name} }
+func (l *Loop) Centred() *Loop {
+	l.given()
+	next := *l
+	next.loop = l.loop.Centred()
+	return &next
+}
 
 // As gives the loop another name, for pictures.
-func (l *Loop) As(name string) *Loop { l.given(); return &Loop{l.loop, name} }
+func (l *Loop) As(name string) *Loop {
+	l.given()
+	next := *l
+	next.name = name
+	return &next
+}
+
+// Weight gives the loop a weight in a fit, beside the 1 of the others.
+func (l *Loop) Weight(weight Ratio) *Loop {
+	l.given()
+	wantPositive("loop "+l.name, "weight", weight, "")
+	next := *l
+	next.weight = weight
+	return &next
+}
 
 // Notes lists what a reader must know of the loop.
 func (l *Loop) Notes() []Remark { l.given(); return append([]Remark(nil), l.loop.Notes...) }

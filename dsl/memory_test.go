@@ -167,6 +167,18 @@ func TestReadingAndFitting(t *testing.T) {
 	if form := fit.In(Form1986).Parameters().Form; form != Form1986 {
 		t.Errorf("form %v", form)
 	}
+	var rise strings.Builder
+	rise.WriteString("H (A/m), B (mT)\n")
+	for h := 2.0; h < 160; h *= 1.3 {
+		fmt.Fprintf(&rise, "%.6f, %.6f\n", h, truth.FluxDensity(h, 25*degC)*1e3)
+	}
+	os.WriteFile("rise.csv", []byte(rise.String()), 0o644)
+	both := FitJilesAtherton(loops[2].Weight(2)).WithInitial(ReadCurve("rise.csv"))
+	near(t, "k by one loop and the initial curve", both.Parameters().K, 14, 1e-2)
+	contains(t, text(t, both), "rise.csv")
+	if strings.Contains(fmt.Sprint(both.Notes()), "one loop alone") {
+		t.Error("with the initial curve it is not one loop alone")
+	}
 	os.WriteFile("bh.csv", []byte("H (A/m),B (T)\n50,0.15\n100,0.26\n200,0.412\n400,0.398\n"), 0o644)
 	if err := refused(t, func() { ReadCurve("bh.csv") }); err.Error() != "curve bh.csv, row 5: B falls from 0.412 T to 0.398 T while H rises; a magnetisation curve cannot fall" {
 		t.Error(err)

@@ -69,7 +69,7 @@ func (c *CurveData) MIMEBundle() map[string]any {
 // them. A drift of B over the cycle is taken out and noted.
 func ReadLoop(file string) *Loop {
 	p := readPoints(file)
-	return &Loop{must(hyst.NewLoop(file, p.H, p.B)), file}
+	return &Loop{loop: must(hyst.NewLoop(file, p.H, p.B)), name: file}
 }
 
 // readPoints reads a file of the notebook's folder.
