@@ -39,6 +39,8 @@ type Cell struct {
 	ID     string // the notebook's id of the cell; empty: none
 	Number int    // execution count, from 1; names the cell in messages: "cell 4, line 2"
 	Source string
+	// Deleted lists the ids of cells that the user has deleted since the last run, where the front end tells it.
+	Deleted []string
 
 	// Transient marks source that a front end sends beside the notebook: it takes no number and no history.
 	Transient bool

@@ -47,6 +47,7 @@ type run struct {
 	request *request
 	content executeRequest
 	cellID  string
+	deleted []string
 	number  int // names the cell; it is taken only if the cell is stored
 	started time.Time
 	pages   []any   // payload of the reply
@@ -57,7 +58,7 @@ type run struct {
 func (k *Kernel) execute(ctx context.Context, r *request) {
 	x := &run{Kernel: k, request: r, number: int(k.count.Load()) + 1, started: time.Now()}
 	r.busy()
-	x.cellID = cellID(r.message.Metadata)
+	x.cellID, x.deleted = cellID(r.message.Metadata)
 	if err := r.decode(&x.content); err != nil {
 		r.answer(executeError{refusal(err), int(k.count.Load())})
 		r.idle()
@@ -141,7 +142,7 @@ func (x *run) call(ctx context.Context) (outcome Outcome) {
 		defer func() { x.result, x.pages = out.end() }()
 	}
 	c := Cell{
-		ID: x.cellID, Number: x.number, Source: x.content.Code, Transient: !x.content.store(),
+		ID: x.cellID, Deleted: x.deleted, Number: x.number, Source: x.content.Code, Transient: !x.content.store(),
 		Ask: func(askCtx context.Context, prompt string, hidden bool) (string, error) {
 			switch {
 			case ctx.Err() != nil: // interrupted, or the cell has ended
@@ -252,14 +253,22 @@ func (x *run) evaluate(ctx context.Context, expression string) (data map[string]
 	return data, fault
 }
 
-// cellID gives the notebook's id of a cell, which front ends put into the metadata of the request; empty: none.
-func cellID(metadata []byte) string {
+// cellID gives the notebook's id of a cell and the ids of cells deleted since, which front ends put into the metadata of
+// the request; empty: none.
+func cellID(metadata []byte) (id string, deleted []string) {
 	var m struct {
-		Cell any `json:"cellId"`
+		Cell    any `json:"cellId"`
+		Deleted any `json:"deletedCells"`
 	}
 	if err := json.Unmarshal(metadata, &m); err != nil {
-		return ""
+		return "", nil
 	}
-	id, _ := m.Cell.(string)
-	return id
+	id, _ = m.Cell.(string)
+	list, _ := m.Deleted.([]any)
+	for _, d := range list {
+		if s, ok := d.(string); ok {
+			deleted = append(deleted, s)
+		}
+	}
+	return id, deleted
 }

@@ -41,6 +41,7 @@ type Session struct {
 	ableIndex      map[ability]int
 	texts          map[int]string
 	cache          map[string]*unitOfWork
+	ledger         ledger
 	plain          bool     // lowers to a plain program, which is not run
 	late           []string // notes on names that the cell took over
 
@@ -84,7 +85,7 @@ func New(v *Vocabulary, h Hooks) (*Session, error) {
 	s := &Session{
 		voc: v, hooks: h, base: b, scope: &scope{names: map[string]*live{}}, fset: token.NewFileSet(),
 		turn: newTurn(), versions: map[string]int{}, typeNames: map[*types.TypeName]string{}, texts: map[int]string{}, cache: map[string]*unitOfWork{},
-		marks: []mark{{}}, byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
+		marks: []mark{{}}, ledger: newLedger(), byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
 	}
 	if s.machine, err = newMachine(v, s.helpers()); err != nil {
 		return nil, err
@@ -137,10 +138,16 @@ func (s *Session) Run(ctx context.Context, c kernel.Cell, out kernel.Sink) kerne
 	if len(bad) > 0 {
 		return kernel.Outcome{Fault: s.refusal(bad)}
 	}
-	for _, n := range append(late, u.notes...) {
+	reads := s.reads(u)
+	for _, n := range append(append(late, u.notes...), s.ledger.notes(c, reads)...) {
 		s.stream("stderr", n+"\n")
 	}
-	return s.execute(ctx, c, u)
+	o := s.execute(ctx, c, u)
+	if o.Fault == nil {
+		sets, functions := s.sets(u)
+		s.ledger.record(c, sets, functions, reads)
+	}
+	return o
 }
 
 // prepare turns a cell into something that runs and commits its names; a cell that ran before with everything it uses
