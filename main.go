@@ -23,6 +23,7 @@ import (
 	"ampturn/kernel/cell/unit"
 	"ampturn/kernel/page"
 	"ampturn/magcirc/phys"
+	"ampturn/stdlib"
 )
 
 // newEngine joins the cell language and the vocabulary for a fresh notebook.
@@ -79,6 +80,7 @@ func vocabulary() *cell.Vocabulary {
 		Open: "ampturn/dsl", Packages: packages, Functions: si.Functions, Format: phys.Format,
 		Units: &unit.Table{Words: si.Words, Bare: si.Bare, Aliases: si.Aliases, Value: si.Value, Functions: si.Functions,
 			Powers: si.Powers},
+		Texts: map[string]func() []string{"Material": shelf},
 	}
 	for _, s := range si.Symbols {
 		v.Units.Symbols = append(v.Units.Symbols, unit.Symbol(s))
@@ -88,6 +90,15 @@ func vocabulary() *cell.Vocabulary {
 		v.Units.Constants = append(v.Units.Constants, unit.Constant{Name: u.Name, Dim: u.Dim})
 	}
 	return v
+}
+
+// shelf lists the names of the materials.
+func shelf() []string {
+	var names []string
+	for _, m := range stdlib.Materials() {
+		names = append(names, m.Name)
+	}
+	return names
 }
 
 // provenance names the program and the libraries that the numbers rest on.

@@ -30,20 +30,20 @@ func (s *Session) Complete(source string, cursor int) kernel.Completion {
 	prefix := source[start:at]
 	c := kernel.Completion{Start: utf8.RuneCountInString(source[:start]), End: utf8.RuneCountInString(source[:at])}
 	if inText(source[:start]) {
-		return c
+		return s.completeText(source, at)
 	}
 	names := s.scopeAt(source[:start])
 	var found []types.Object
 	if op := operandBefore(source[:start]); op != "" {
 		found = s.membersOf(op, names)
 	} else {
-		found = s.inScope(names)
+		found = s.fitting(s.inScope(names), s.wanted(source[:start], names))
 	}
 	for _, o := range found {
 		if strings.HasPrefix(o.Name(), prefix) {
 			c.Matches = append(c.Matches, o.Name())
 			c.Types = append(c.Types, s.kind(o))
-			c.Signatures = append(c.Signatures, signatureOf(o))
+			c.Signatures = append(c.Signatures, s.labelOf(o))
 		}
 	}
 	if operandBefore(source[:start]) == "" && prefix != "" {
@@ -298,6 +298,30 @@ func (s *Session) kind(o types.Object) string {
 		}
 	}
 	return "variable"
+}
+
+// labelOf gives the signature of an object with the units of arguments and result, or its unit.
+func (s *Session) labelOf(o types.Object) string {
+	label := signatureOf(o)
+	note := ""
+	switch o := o.(type) {
+	case *types.Func:
+		note = s.unitNote(o.Type())
+	case *types.Const:
+		if s.base.objects[o.Name()] == o {
+			return s.base.docs[o.Name()]
+		}
+	case *types.Var:
+		if !o.IsField() && o.Pkg() != nil && o.Pkg().Path() == mainPath {
+			if u := s.unitOf(o); u != "" && u != "?" && u[0] != '{' {
+				note = "in " + u
+			}
+		}
+	}
+	if note != "" {
+		label += " [" + note + "]"
+	}
+	return label
 }
 
 // signatureOf gives parameters and results of a function, the type of anything else.

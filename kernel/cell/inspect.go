@@ -6,7 +6,6 @@ import (
 	"go/parser"
 	"go/token"
 	"go/types"
-	"html"
 	"strings"
 	"unicode"
 
@@ -69,7 +68,7 @@ func (s *Session) describeText(text string, names *scope) (map[string]any, bool)
 			return s.card(o, names.names[x.Name])
 		}
 		if o := types.Universe.Lookup(x.Name); o != nil {
-			return bundle(o.Name()+signatureOf(o), "built into the language"), true
+			return bundle(o.Name()+signatureOf(o), "", "built into the language"), true
 		}
 	case *ast.SelectorExpr:
 		if id, ok := x.X.(*ast.Ident); ok {
@@ -83,12 +82,12 @@ func (s *Session) describeText(text string, names *scope) (map[string]any, bool)
 		if t := s.typeOfText(x.X, names); t != nil {
 			o, _, _ := types.LookupFieldOrMethod(pointerTo(t), true, types.NewPackage(mainPath, "main"), x.Sel.Name)
 			if o != nil && !hiddenMember(o) {
-				return bundle(shortType(t)+"."+o.Name()+signatureOf(o), s.memberDoc(t, o)), true
+				return bundle(shortType(t)+"."+o.Name()+signatureOf(o), s.unitNote(o.Type()), s.memberDoc(t, o)), true
 			}
 		}
 	default:
 		if t := s.typeOfText(x, names); t != nil {
-			return bundle(shortType(t), ""), true
+			return bundle(shortType(t), "", ""), true
 		}
 	}
 	return nil, false
@@ -105,12 +104,11 @@ func (s *Session) memberDoc(t types.Type, o types.Object) string {
 
 // card writes what an object is: its declaration and its documentation.
 func (s *Session) card(o types.Object, l *live) (map[string]any, bool) {
-	doc := ""
-	var head string
+	var head, note, doc string
 	switch o := o.(type) {
 	case *types.Const:
 		if s.base.objects[o.Name()] == o {
-			return bundle(o.Name()+" = "+o.Val().String(), s.base.docs[o.Name()]), true
+			return bundle(o.Name()+" = "+o.Val().String(), "", s.base.docs[o.Name()]), true
 		}
 		head = "const " + o.Name() + " = " + o.Val().String()
 	case *types.TypeName:
@@ -119,11 +117,14 @@ func (s *Session) card(o types.Object, l *live) (map[string]any, bool) {
 			head = "type " + o.Name()
 		}
 	case *types.PkgName:
-		return bundle("package "+o.Imported().Name(), s.voc.Docs[o.Imported().Path()]), true
+		return bundle("package "+o.Imported().Name(), "", s.voc.Docs[o.Imported().Path()]), true
 	case *types.Func:
-		head = "func " + o.Name() + signatureOf(o)
+		head, note = "func "+o.Name()+signatureOf(o), s.unitNote(o.Type())
 	default:
 		head = o.Name() + " " + signatureOf(o)
+		if u := s.unitOf(o); u != "" && u != "?" && u[0] != '{' {
+			note = "in " + u
+		}
 	}
 	switch {
 	case l != nil:
@@ -141,7 +142,7 @@ func (s *Session) card(o types.Object, l *live) (map[string]any, bool) {
 			doc = h
 		}
 	}
-	return bundle(head, doc), true
+	return bundle(head, note, doc), true
 }
 
 // commentAbove gives the comment that ends in the line before a declaration.
@@ -158,20 +159,6 @@ func commentAbove(src *source, line int) string {
 		text += "\n"
 	}
 	return text
-}
-
-// bundle writes a heading and its text for all front ends.
-func bundle(head, doc string) map[string]any {
-	doc = strings.TrimSpace(doc)
-	plain := head
-	if doc != "" {
-		plain += "\n\n" + doc
-	}
-	return map[string]any{
-		"text/plain":    plain,
-		"text/markdown": "```go\n" + head + "\n```\n\n" + doc,
-		"text/html":     "<pre>" + html.EscapeString(head) + "</pre>\n<p>" + strings.ReplaceAll(html.EscapeString(doc), "\n\n", "</p>\n<p>") + "</p>",
-	}
 }
 
 // IsComplete tells whether a cell can be run as it stands.

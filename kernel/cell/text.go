@@ -65,7 +65,7 @@ func hiddenMember(o types.Object) bool {
 		return false
 	}
 	switch o.Name() {
-	case "MIMEBundle", "String", "Error", "CodeName", "GoString", "Format":
+	case "MIMEBundle", "String", "Error", "CodeName", "GoString", "Format", "Completions":
 		return true
 	}
 	return strings.HasSuffix(o.Name(), twinSuffix)

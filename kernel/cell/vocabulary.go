@@ -31,6 +31,8 @@ type Vocabulary struct {
 	Units *unit.Table
 	// Format writes a number with its unit; nil: four significant digits and the unit text.
 	Format func(x float64, unit string) string
+	// Texts gives what the first argument of a function can be: "Material".
+	Texts map[string]func() []string
 	// Help gives what a name means to a reader, as Markdown; nil or "": the documentation of Docs is taken.
 	Help func(name string) string
 }
