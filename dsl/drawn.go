@@ -74,7 +74,7 @@ func (of *roster) part(c *MagneticCircuit) *drawnPart {
 	return p
 }
 
-// tabulate solves the gaps of all circuits ahead whose field would else be solved at every draw.
+// tabulate computes the gaps of all circuits ahead whose field would else be mapped or solved at every draw.
 func (of *roster) tabulate() {
 	for _, c := range of.circuits {
 		p := of.parts[&c.paths[0]]
@@ -91,7 +91,7 @@ func (of *roster) tabulate() {
 	}
 }
 
-// tableError is the relative error of a permeance up to which a table stands for the field solution, whose own uncertainty is
+// tableError is the relative error of a permeance up to which a table stands for the method, whose own uncertainty is
 // hundreds of times larger.
 const tableError = 1e-5
 
@@ -106,7 +106,7 @@ func (c *MagneticCircuit) surface(at place, g GapPart) *gap.Surface {
 		area = beside.across.reach(1)
 	}
 	length := g.spread.reach(g.length)
-	if s.Method != gap.FieldSolve || length == 0 && area == 0 {
+	if s.Method == gap.NoFringe || s.Method == gap.AddTheGap || length == 0 && area == 0 {
 		return nil
 	}
 	t, err := gap.NewSurface(s, g.length-length, g.length+length, 1-area, 1+area)
