@@ -177,6 +177,10 @@ func (v *Verdict) Uncertain(share Ratio) *Verdict {
 	return v
 }
 
+// Uncertainty is that of the value, relative: as stated by [Verdict.Uncertain], else what the methods behind the value leave
+// open; 0 where nothing is known.
+func (v *Verdict) Uncertainty() Ratio { v.given(); return v.kept.Uncertainty }
+
 // Passed says whether the value keeps the bound.
 func (v *Verdict) Passed() bool { v.given(); return v.kept.Status() == review.Pass }
 
