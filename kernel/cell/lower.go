@@ -107,13 +107,20 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 			}
 		}
 	}
-	var funcs, early []string // methods of generic types stand before the variables of such types
+	var funcs, early, generic []string // generic code stands before what uses it
 	for _, f := range r.funcs {
+		text := l.function(f)
 		if genericRecv(f.decl) {
-			early = append(early, l.function(f))
-		} else {
-			funcs = append(funcs, l.function(f))
+			early = append(early, text)
+			s.keepGeneric(s.typeNames[r.after.names[f.recv].obj.(*types.TypeName)], text)
+			continue
 		}
+		if f.live != nil && f.live.obj.Type().(*types.Signature).TypeParams().Len() > 0 {
+			generic = append(generic, text)
+			s.keepGeneric(f.live.lowered, text)
+			continue
+		}
+		funcs = append(funcs, text)
 	}
 	res := &lowered{run: s.version("cell", false)}
 	body := l.statements(res)
@@ -122,7 +129,7 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 		funcs = append(funcs, "func "+res.undo+"() {\n\t"+strings.Join(l.undo, "\n\t")+"\n}\n")
 	}
 	res.imports = l.newImp
-	res.decls = strings.Join(l.types, "\n") + "\n" + strings.Join(early, "\n") + "\n" + strings.Join(l.globals, "\n") + "\n" +
+	res.decls = strings.Join(l.types, "\n") + "\n" + strings.Join(append(generic, early...), "\n") + "\n" + strings.Join(l.globals, "\n") + "\n" +
 		strings.Join(funcs, "\n") + "\n" +
 		"func " + res.run + "() {\n" + prefixed(l.prolog) + body + "}\n"
 	return res

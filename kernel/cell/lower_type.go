@@ -248,6 +248,13 @@ func (l *lowering) results(t *types.Tuple, name func(v *types.Var) string) strin
 
 // literal writes a constant as a literal of its type.
 func (l *lowering) literal(v constant.Value, t types.Type) string {
+	if p, ok := types.Unalias(t).(*types.TypeParam); ok {
+		text := v.ExactString()
+		if v.Kind() == constant.Float {
+			text = floatText(v, false)
+		}
+		return p.Obj().Name() + "(" + text + ")"
+	}
 	under, ok := t.Underlying().(*types.Basic)
 	if !ok { // a type parameter or an interface
 		if types.IsInterface(t) {

@@ -42,8 +42,9 @@ type Session struct {
 	texts          map[int]string
 	cache          map[string]*unitOfWork
 	ledger         ledger
-	plain          bool     // lowers to a plain program, which is not run
-	late           []string // notes on names that the cell took over
+	generic        map[string][]string // by lowered name of generic code: the names in it
+	plain          bool                // lowers to a plain program, which is not run
+	late           []string            // notes on names that the cell took over
 
 	sink      atomic.Pointer[kernel.Sink]
 	now       kernel.Cell                    // the running cell
@@ -85,7 +86,7 @@ func New(v *Vocabulary, h Hooks) (*Session, error) {
 	s := &Session{
 		voc: v, hooks: h, base: b, scope: &scope{names: map[string]*live{}}, fset: token.NewFileSet(),
 		turn: newTurn(), versions: map[string]int{}, typeNames: map[*types.TypeName]string{}, texts: map[int]string{}, cache: map[string]*unitOfWork{},
-		marks: []mark{{}}, ledger: newLedger(), byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
+		marks: []mark{{}}, ledger: newLedger(), generic: map[string][]string{}, byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
 	}
 	if s.machine, err = newMachine(v, s.helpers()); err != nil {
 		return nil, err
@@ -189,6 +190,7 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 		u.low, u.text = low, strings.Join(low.imports, "\n")+"\n"+low.decls
 		s.texts[c.Number] = u.text
 		if !s.plain {
+			s.machine.release(s.keepNames())
 			err = s.compile(u)
 		}
 	}
