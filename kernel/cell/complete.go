@@ -101,13 +101,12 @@ func operandBefore(before string) string {
 	for i >= 0 {
 		switch t := all[i].tok; {
 		case t == token.RPAREN || t == token.RBRACK || t == token.RBRACE:
-			i = opening(all, i)
+			if i = opening(all, i); i < 0 {
+				return ""
+			}
 			want = t == token.RPAREN || t == token.RBRACK
 			if t == token.RPAREN && (i == 0 || all[i-1].tok != token.IDENT && all[i-1].tok != token.RPAREN && all[i-1].tok != token.RBRACK) {
 				want = false
-			}
-			if i < 0 {
-				return ""
 			}
 			if !want {
 				return before[all[i].off : len(before)-1]
