@@ -4,7 +4,9 @@ import (
 	"context"
 	"fmt"
 	"os"
+	"runtime/debug"
 	"strings"
+	"time"
 
 	"ampturn/dsl/manual"
 	"ampturn/dsl/review"
@@ -133,12 +135,16 @@ func (c *removeCommand) Run() error {
 	return nil
 }
 
+// started is when a kernel has started and its front end waits for the user.
+const started = 300 * time.Millisecond
+
 func (c *kernelCommand) Run(ctx context.Context) error {
 	engine, err := newEngine()
 	if err != nil {
 		return err
 	}
 	session.SetLive(true)
+	time.AfterFunc(started, debug.FreeOSMemory) // what only the start needed goes back to the system
 	return kernel.Serve(context.WithoutCancel(ctx), c.Connection, engine, nil)
 }
 
