@@ -18,7 +18,8 @@
 //	Limit Require AtMost AtLeast Within Tolerance     verdicts
 //	  Corner OpenPoint Waive Verdicts Assumptions
 //	Plot Series Line Bars TableOf Span                pictures and tables
-//	Show Note Cite Warn Revision SVG HTML Clear       what stands in the document
+//	Show Note Cite Warn Revision Override             what stands in the document
+//	  SVG HTML Clear
 //	Working Basis                                     the lines of a result; its method, source and validity
 //	Bench SideBySide TestSpec SignOff                 the model against a reading; two circuits; limits for the supplier
 //	Try                                               the failure as a value

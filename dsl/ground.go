@@ -48,6 +48,19 @@ func (c *MagneticCircuit) assumeMethods() {
 	}
 }
 
+// Override records that the author replaced a computed or stated value, why, and who answers for it: the list of overrides
+// in [Assumptions] shows it.
+//
+//	Override("gap of T1: 0.62 mm as measured on sample 3, in place of 0.6 mm", "first bench reading", "A. Smith")
+func Override(what, reason, who string) {
+	if strings.TrimSpace(what) == "" || strings.TrimSpace(reason) == "" || strings.TrimSpace(who) == "" {
+		refuse(magcirc.BadValue, "Override", "wants what was replaced, a reason and who answers for it", `write Override("gap: 0.62 mm as measured", "bench reading", "A. Smith")`)
+	}
+	text := what + "; " + reason + " (" + who + ")"
+	review.Assume(text, review.Override, "this line")
+	say("note", "override: ", text)
+}
+
 // typed is a length as one would type it: "0.45*mm".
 func typed(length float64) string { return phys.Format(length*1e3, "") + "*mm" }
 

@@ -28,6 +28,9 @@ func say(class, lead, text string) {
 // Revision states the revision of the document, its date and what changed. A date is what its author states, never the
 // clock.
 func Revision(name, date, change string) {
+	if strings.TrimSpace(name) == "" || strings.TrimSpace(date) == "" || strings.TrimSpace(change) == "" {
+		refuse(magcirc.BadValue, "Revision", "wants a name, a date and what changed", `write Revision("B", "2026-01-15", "gap from 0.75 to 0.8 mm")`)
+	}
 	say("revision", "revision ", name+", "+date+": "+change)
 }
 

@@ -235,6 +235,18 @@ func TestTestSpec(t *testing.T) {
 	contains(t, refused(t, func() { c.TestSpec().Asked("colour", AtMost(1)) }).Error(), `has no item "colour"`)
 }
 
+func TestOverrideAndRevision(t *testing.T) {
+	session.Reset()
+	out := collect(func() {
+		cell("a", 1, func() { Override("gap: 0.62 mm as measured", "bench reading", "A. Smith") })
+		cell("b", 2, Assumptions)
+	})
+	contains(t, out[len(out)-1].Data["text/plain"].(string), "overrides by the author")
+	contains(t, out[len(out)-1].Data["text/plain"].(string), "gap: 0.62 mm as measured; bench reading (A. Smith)")
+	contains(t, refused(t, func() { Override("gap", "", "A. Smith") }).Error(), "a reason and who answers for it")
+	contains(t, refused(t, func() { Revision("B", "", "gap") }).Error(), "a name, a date and what changed")
+}
+
 func TestSignOff(t *testing.T) {
 	contains(t, text(t, SignOff()), "checked by")
 	contains(t, text(t, SignOff("insulation checked by")), "insulation checked by")

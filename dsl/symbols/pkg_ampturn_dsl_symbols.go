@@ -132,6 +132,7 @@ func init() {
 		"OhmPerMetre":              reflect.ValueOf((*dsl.OhmPerMetre)(nil)),
 		"OpenPoint":                reflect.ValueOf(dsl.OpenPoint),
 		"OperatingPoint":           reflect.ValueOf((*dsl.OperatingPoint)(nil)),
+		"Override":                 reflect.ValueOf(dsl.Override),
 		"Part":                     reflect.ValueOf((*dsl.Part)(nil)),
 		"_Part":                    reflect.ValueOf((*_ampturn_dsl_Part)(nil)),
 		"Pause":                    reflect.ValueOf(dsl.Pause),
