@@ -203,7 +203,7 @@ func (t *TestSheet) rowOf(item testItem) ([]doc.Cell, bool) {
 	guard := t.gauge * math.Abs(nominal)
 	switch {
 	case low == high:
-		return append(row, doc.Text("no tolerance stated"), doc.Text("no tolerance stated"), doc.Text(""), doc.Text(source)), true
+		return append(row, doc.Text("no tolerance stated"), doc.Text("no tolerance stated"), doc.Text(""), doc.Text("")), true
 	case math.IsInf(low, -1):
 		row = append(row, doc.Text("none"), doc.Quantity(high-guard, item.unit))
 	case math.IsInf(high, 1):
