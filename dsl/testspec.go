@@ -101,7 +101,6 @@ func (t *TestSheet) given() {
 // testItem is one measurement.
 type testItem struct {
 	what, connection, bias, unit string
-	at                           float64
 	value                        func(op *OperatingPoint) float64
 	drive                        Currents
 }
