@@ -64,6 +64,7 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"Typed":      reflect.ValueOf(s.typedAt),
 		"Size":       reflect.ValueOf(size),
 
+		"Letters":      reflect.ValueOf(nb.Letters),
 		"SortList":     reflect.ValueOf(nb.SortList),
 		"SortBy":       reflect.ValueOf(nb.SortBy),
 		"SortStableBy": reflect.ValueOf(nb.SortStableBy),

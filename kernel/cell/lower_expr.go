@@ -262,7 +262,13 @@ func (l *lowering) binary(e *ast.BinaryExpr) string {
 	x, y := e.X, e.Y
 	var texts []string
 	if e.Op == token.EQL || e.Op == token.NEQ {
-		texts = l.list([]ast.Expr{x, y}, []types.Type{l.info.TypeOf(x), l.info.TypeOf(y)})
+		tx, ty := l.info.TypeOf(x), l.info.TypeOf(y)
+		if isError(tx) && isCellType(ty) {
+			ty = tx
+		} else if isError(ty) && isCellType(tx) {
+			tx = ty
+		}
+		texts = l.list([]ast.Expr{x, y}, []types.Type{tx, ty})
 		if texts[0] == "nil" {
 			return texts[1] + " " + e.Op.String() + " nil"
 		}
@@ -420,7 +426,7 @@ func (l *lowering) convert(e ast.Expr, to types.Type) string {
 	text := l.expr(e)
 	from := l.info.TypeOf(e)
 	if to != nil && from != nil && types.IsInterface(to) && !types.IsInterface(from) && l.isOperation(e) {
-		return l.hold(text) // the interpreter computes in place, which an interface is not
+		text = l.hold(text) // the interpreter computes in place, which an interface is not
 	}
 	if to == nil || from == nil || text == "nil" || !compiledInterface(to) || types.Identical(from, to) {
 		return text

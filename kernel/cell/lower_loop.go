@@ -217,6 +217,8 @@ func (l *lowering) rangeStmt(s *ast.RangeStmt, label string) {
 			l.rangeInt(s, label)
 			return
 		}
+		l.rangeText(s, label)
+		return
 	case *types.Map:
 		l.rangeMap(s, label, u)
 		return
@@ -271,15 +273,10 @@ func (l *lowering) rangeList(s *ast.RangeStmt, label, x string) {
 // countKey prepares the float64 of a loop over whole numbers or a list.
 func (l *lowering) countKey(s *ast.RangeStmt) *counter {
 	id, ok := s.Key.(*ast.Ident)
-	if !ok || s.Tok != token.DEFINE || id.Name == "_" || l.info.Defs[id] == nil || isText(l.info.TypeOf(s.X)) {
+	if !ok || s.Tok != token.DEFINE || id.Name == "_" || l.info.Defs[id] == nil {
 		return nil
 	}
 	return l.count(l.info.Defs[id], "0", s.Body)
-}
-
-func isText(t types.Type) bool {
-	b, ok := t.Underlying().(*types.Basic)
-	return ok && b.Info()&types.IsString != 0
 }
 
 func (l *lowering) rangeInt(s *ast.RangeStmt, label string) {
@@ -309,6 +306,26 @@ func (l *lowering) rangeInt(s *ast.RangeStmt, label string) {
 	l.line("for %s := %s(0); %s < %s; %s++ {", k, typ, k, end, k)
 	l.loopBody(label, first, c.step(), s.Body.List)
 	l.done(c)
+}
+
+// rangeText lowers a loop over the letters of a text: the interpreter counts letters where Go counts bytes.
+func (l *lowering) rangeText(s *ast.RangeStmt, label string) {
+	x := l.hold(l.expr(s.X))
+	l.flush()
+	at, letters, n := l.name("at"), l.name("letters"), l.name("n")
+	k, first := l.bind(s.Key, s.Tok, s.Body)
+	v, more := l.bind(s.Value, s.Tok, s.Body)
+	l.line("%s, %s := %s(string(%s))", at, letters, l.nb("Letters"), x)
+	l.label(label)
+	l.line("for %s := range %s {", n, at)
+	head := []string{"_ = " + letters + "[" + n + "]"}
+	if k != "_" {
+		head = append(head, k+" := "+at+"["+n+"]")
+	}
+	if v != "_" {
+		head = append(head, v+" := "+letters+"["+n+"]")
+	}
+	l.loopBody(label, append(append(head, first...), more...), nil, s.Body.List)
 }
 
 func (l *lowering) rangeMap(s *ast.RangeStmt, label string, m *types.Map) {

@@ -55,6 +55,46 @@ func field(v reflect.Value, name string, kind reflect.Kind) (reflect.Value, bool
 	return reflect.NewAt(f.Type(), unsafe.Pointer(f.UnsafeAddr())).Elem(), true
 }
 
+// unboxed takes a value of a named type out of what the interpreter puts around it where it is held in an interface.
+func unboxed(v reflect.Value) reflect.Value {
+	for v.IsValid() && v.Kind() == reflect.Struct && v.Type().Name() == "valueInterface" && v.CanInterface() {
+		box := reflect.New(v.Type()).Elem()
+		box.Set(v)
+		inner, ok := field(box, "value", reflect.Struct)
+		if !ok {
+			return v
+		}
+		x, ok := inner.Interface().(reflect.Value)
+		if !ok {
+			return v
+		}
+		v = x
+	}
+	return v
+}
+
+// boxedName gives the lowered name of the type of such a value; "" if nothing is around it.
+func boxedName(v reflect.Value) string {
+	if !v.IsValid() || v.Kind() != reflect.Struct || v.Type().Name() != "valueInterface" || !v.CanInterface() {
+		return ""
+	}
+	box := reflect.New(v.Type()).Elem()
+	box.Set(v)
+	node, ok := field(box, "node", reflect.Pointer)
+	if !ok || node.IsNil() {
+		return ""
+	}
+	typ, ok := field(node.Elem(), "typ", reflect.Pointer)
+	if !ok || typ.IsNil() {
+		return ""
+	}
+	name, ok := field(typ.Elem(), "name", reflect.String)
+	if !ok {
+		return ""
+	}
+	return name.String()
+}
+
 // keepNames lists the lowered names that the text of a later cell can mention: those of the live names, and of the types
 // that they rest on.
 func (s *Session) keepNames() map[string]bool {

@@ -144,7 +144,7 @@ func TestComplete(t *testing.T) {
 		{"math.Sqr", "Sqrt", "(x float64) float64"},
 		{"are", "area", "(p P) float64"},
 		{"NewR", "NewRod", "(name string, length Metre) *Rod"},
-		{"3*new", "newton", "untyped float"},
+		{"3*new", "newton", ""},
 		{"q := rod\nq.Str", "Stretch", "(by Metre)"},
 		{"NewRod(\"b\", 1*mm).Sca", "Scaled", ""},
 	} {

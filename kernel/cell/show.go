@@ -90,7 +90,7 @@ func (s *Session) showHelp(name string) {
 }
 
 // writer writes values as text.
-func (s *Session) writer() nb.Writer { return nb.Writer{Format: s.voc.Format} }
+func (s *Session) writer() nb.Writer { return nb.Writer{Format: s.voc.Format, Bare: unboxed} }
 
 // text writes a value of a static type.
 func (s *Session) text(v reflect.Value, t types.Type, unit string, top bool) string {

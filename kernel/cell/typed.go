@@ -20,6 +20,13 @@ type typed struct {
 
 // typedAt joins a value and its static type where fmt would miss something.
 func (s *Session) typedAt(k int, v any) any {
+	boxed := reflect.ValueOf(v)
+	if r := unboxed(boxed); r.IsValid() && r.CanInterface() {
+		if a := s.ofName(boxedName(boxed)); a != nil && a.text != nil {
+			return worded{r.Interface(), a}
+		}
+		v = r.Interface()
+	}
 	switch reflect.ValueOf(v).Kind() {
 	case reflect.Struct, reflect.Pointer, reflect.Slice, reflect.Array, reflect.Map:
 		if _, ok := v.(fmt.Formatter); ok {
@@ -68,12 +75,16 @@ func (w typedWriter) text(v reflect.Value, t types.Type, depth int, open bool) s
 		}
 		v = v.Elem()
 	}
-	if !v.IsValid() {
+	boxed := boxedName(v)
+	if v = unboxed(v); !v.IsValid() {
 		return "<nil>"
 	}
 	if open && v.CanInterface() {
 		a := w.s.ofType(v.Type())
 		if n := w.s.ofStatic(t); n != nil && !types.IsInterface(t) {
+			a = n
+		}
+		if n := w.s.ofName(boxed); n != nil {
 			a = n
 		}
 		if a != nil && a.text != nil {

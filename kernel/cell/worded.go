@@ -91,6 +91,20 @@ func (s *Session) ofType(t reflect.Type) *abilities {
 	return s.byType[t]
 }
 
+// ofName gives the methods of a type by its lowered name.
+func (s *Session) ofName(name string) *abilities {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	for o, lowered := range s.typeNames {
+		if lowered == name && name != "" {
+			if k, ok := s.ableIndex[ability{o, false}]; ok && k < len(s.abilities) {
+				return s.abilities[k]
+			}
+		}
+	}
+	return nil
+}
+
 // ofStatic gives the methods of a static type.
 func (s *Session) ofStatic(t types.Type) *abilities {
 	s.mu.Lock()

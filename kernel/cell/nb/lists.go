@@ -32,3 +32,11 @@ func SortBy(x any, less func(i, j int) bool) { sort.Slice(x, less) }
 
 // SortStableBy sorts a list in place and keeps equals in their order.
 func SortStableBy(x any, less func(i, j int) bool) { sort.SliceStable(x, less) }
+
+// Letters gives the letters of a text and the byte at which each begins, as a loop over the text does.
+func Letters(text string) (at []int, letters []rune) {
+	for i, r := range text {
+		at, letters = append(at, i), append(letters, r)
+	}
+	return at, letters
+}

@@ -38,6 +38,7 @@ func (unknown) Field(int) (string, Type, bool) { return "", nil, false }
 // Writer writes values as text.
 type Writer struct {
 	Format func(x float64, unit string) string // nil: four significant digits and the unit text
+	Bare   func(v reflect.Value) reflect.Value // takes a value out of what an interpreter puts around it; nil: nothing is around
 }
 
 // number writes a real number with its unit.
@@ -64,6 +65,9 @@ func (w Writer) Text(v reflect.Value, t Type, unit string, top bool) string {
 	}
 	if v.Kind() == reflect.Interface && !v.IsNil() {
 		v = v.Elem()
+	}
+	if w.Bare != nil {
+		v = w.Bare(v)
 	}
 	if own, ok := ownText(v); ok && !t.Own() {
 		return own
