@@ -156,6 +156,9 @@ func (g grid) write(b *strings.Builder) {
 	}
 }
 
+// left aligns words in front ends whose own style aligns all cells of a table to the right.
+const left = ` style="text-align:left"`
+
 // HTML is the table as HTML: class at, numbers in cells of class num with their full value in data-value.
 func (t Table) HTML() string {
 	var b strings.Builder
@@ -171,7 +174,7 @@ func (t Table) HTML() string {
 	}
 	b.WriteString("<thead><tr>")
 	for k, h := range heads {
-		class := ""
+		class := left
 		if right[k] {
 			class = ` class="num"`
 		}
@@ -215,6 +218,9 @@ func (c Cell) open(right bool) string {
 	tag := "<td"
 	if class != "" {
 		tag += ` class="` + class + `"`
+	}
+	if !right {
+		tag += left
 	}
 	if c.Number {
 		tag += ` data-value="` + strconv.FormatFloat(c.Value, 'g', -1, 64) + `"`

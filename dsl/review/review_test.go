@@ -223,7 +223,7 @@ func TestPlaceIsFilled(t *testing.T) {
 	if text := last.Data["text/plain"].(string); !strings.HasPrefix(text, "verdicts: 1 FAIL") {
 		t.Errorf("finished: %q", text)
 	}
-	if html := last.Data["text/html"].(string); !strings.Contains(html, `<td class="fail">FAIL</td>`) {
+	if html := last.Data["text/html"].(string); !strings.Contains(html, `<td class="fail" style="text-align:left">FAIL</td>`) {
 		t.Errorf("status class is missing in %s", html)
 	}
 }
