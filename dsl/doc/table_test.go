@@ -42,7 +42,7 @@ func TestHTML(t *testing.T) {
 		`<table class="at">` + "\n" + `<caption>T1 at 25 degC, main 3.2 A</caption>`,
 		`<th scope="col" class="num">flux (uWb)</th>`,
 		`<td class="num" data-value="4.8123456e-05">48.12` + "\u2007</td>", // the full value stays with the number
-		"<td style="text-align:left">left &lt;yoke&gt;</td>",
+		`<td style="text-align:left">left &lt;yoke&gt;</td>`,
 		`<p class="note">beyond the data</p>`,
 	} {
 		if !strings.Contains(got, want) {
