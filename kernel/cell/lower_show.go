@@ -56,6 +56,9 @@ func (l *lowering) showText(t types.Type, unit, text, typed string, top bool) {
 			}
 		}
 	}
+	if text == "nil" {
+		text = "interface{}(nil)"
+	}
 	l.line("%s(%d, %s)", l.nb("Show"), k, text)
 }
 
