@@ -130,7 +130,11 @@ func (j *JilesAtherton) reach(s *State, beta, goal float64) Point {
 		x, m, chi, i := j.up(x, m, i, beta, goal)
 		return j.point(x, m, chi, i)
 	case goal < now:
-		x, m, chi, i := j.up(-x, -m, mirror(i), beta, -goal)
+		x, m, i = -x, -m, mirror(i)
+		if i < last && x >= langevin[i+1].z0 { // on a place of the table: the cell ahead, whose cubic is exact there
+			i++
+		}
+		x, m, chi, i := j.up(x, m, i, beta, -goal)
 		return j.point(-x, -m, chi, mirror(i))
 	}
 	return j.Now(s)
@@ -225,7 +229,7 @@ func (j *JilesAtherton) within(i int, x, d, end, beta, goal float64) (x1, m1, ch
 		if math.Abs(f) <= eps*(math.Abs(v)+math.Abs(beta)*(math.Abs(l)-dv)) {
 			break
 		}
-		if math.Abs(step) <= 2e-9*math.Min(1, j.k) && v+step > lo && v+step < end { // what is left is its square
+		if step*step <= 1e-17*math.Min(1, j.k)*(v-x) && v+step > lo && v+step < end { // what is left is its square
 			return v + step, m1 + chi*step, chi, 0, true
 		}
 		if f > 0 {

@@ -250,3 +250,19 @@ func TestOnePlayCell(t *testing.T) {
 		t.Errorf("J at the coercivity of M is %v", q.B-phys.Mu0*q.H)
 	}
 }
+
+// Tiny fields keep their digits in both directions: a part of a network without a source of its own stays at rest.
+func TestTinyFields(t *testing.T) {
+	for _, p := range []hyst.Parameters{steel86, steel92, silicon} {
+		l := law(t, p)
+		s := l.Start()
+		slope := l.Now(&s)
+		for _, h := range []float64{1e-25, 1e-18, 1e-12, 1e-9} {
+			up, down := l.ByField(&s, h), l.ByField(&s, -h)
+			near(t, "slope up", up.B/h, slope.Slope(), 1e-8)
+			near(t, "slope down", down.B/-h, slope.Slope(), 1e-8)
+			near(t, "odd", down.B, -up.B, 1e-14)
+			near(t, "inverse", l.ByFluxDensity(&s, -up.B).H, -h, 1e-13)
+		}
+	}
+}

@@ -158,27 +158,52 @@ func (h *History) Trial(ctx context.Context, d Drive) (*Solution, error) {
 	return sol, nil
 }
 
-// own adds to the size of the mmfs on a branch what its legs hold by themselves: a remanent ring has drops that cancel
-// and no winding's mmf beside which its residual is small.
-func (h *History) own(k *task) {
+// eachLeg visits the legs that remember, with their branch and element.
+func (h *History) eachLeg(see func(i, k int, e *Element, m *memory)) {
 	next := 0
 	for i := range h.net.branches {
-		for e := range h.net.branches[i].Elements {
-			el := &h.net.branches[i].Elements[e]
-			if _, ok := el.Law.(remembers); !ok || el.Kind != Leg {
-				continue
+		for k := range h.net.branches[i].Elements {
+			e := &h.net.branches[i].Elements[k]
+			if _, ok := e.Law.(remembers); ok && e.Kind == Leg {
+				see(i, k, e, h.legs[next])
+				next++
 			}
-			m := h.legs[next]
-			now, none := m.law.Now(&m.state), m.law.ByFluxDensity(&m.state, 0)
-			k.size[i] += el.Length * (math.Abs(now.H) + math.Abs(none.H))
-			next++
 		}
 	}
 }
 
-// TrialNodal gives the same state by [Network.SolveNodal], as a check.
+// own adds to the size of the mmfs on a branch what its legs hold by themselves: a remanent ring has drops that cancel
+// and no winding's mmf beside which its residual is small.
+func (h *History) own(k *task) {
+	h.eachLeg(func(i, _ int, e *Element, m *memory) {
+		now, none := m.law.Now(&m.state), m.law.ByFluxDensity(&m.state, 0)
+		k.size[i] += e.Length * (math.Abs(now.H) + math.Abs(none.H))
+	})
+}
+
+// TrialNodal gives the same state by the formulation of [Network.SolveNodal], as a check.
 func (h *History) TrialNodal(ctx context.Context, d Drive) (*Solution, error) {
-	return h.at().SolveNodal(ctx, d, h.set)
+	k, err := h.at().task(d, h.set)
+	if err != nil {
+		return nil, err
+	}
+	f := newNodalForm(k)
+	defer f.release()
+	h.eachLeg(func(i, k int, e *Element, m *memory) { // remanent fluxes that cancel at a node, as own has it for drops
+		if f.topo.carry[i] {
+			now, none := m.law.Now(&m.state), m.law.ByField(&m.state, 0)
+			f.base[f.first[i]+k] += e.Area * (math.Abs(now.B) + math.Abs(none.B))
+		}
+	})
+	ok, err := f.run(ctx, k.tol, k.limit)
+	if err != nil {
+		return nil, err
+	}
+	sol := f.solution()
+	if !ok || !sol.finite() {
+		return nil, k.stalled(&f.descent, sol, f.worstRow())
+	}
+	return sol, nil
 }
 
 // Step goes to the state under a drive. The solution's incremental inductances are those of small signals about the new
@@ -235,20 +260,14 @@ func between(from, to Drive, w float64) Drive {
 func (h *History) commit(s *Solution) {
 	copy(h.flux, s.Flux)
 	next := 0
-	for i := range h.net.branches {
-		for k := range h.net.branches[i].Elements {
-			e := &h.net.branches[i].Elements[k]
-			if _, ok := e.Law.(remembers); !ok || e.Kind != Leg {
-				continue
-			}
-			m := h.legs[next].clone()
-			p := m.law.ByMix(&m.state, e.Air/e.Area, s.Flux[i]/e.Area)
-			m.work += m.law.Work(&m.state, p)
-			m.law.Commit(&m.state, p)
-			h.legs[next] = m
-			next++
-		}
-	}
+	h.eachLeg(func(i, _ int, e *Element, m *memory) {
+		m = m.clone()
+		p := m.law.ByMix(&m.state, e.Air/e.Area, s.Flux[i]/e.Area)
+		m.work += m.law.Work(&m.state, p)
+		m.law.Commit(&m.state, p)
+		h.legs[next] = m
+		next++
+	})
 	s.net = h.at()
 	s.net.eachMemory(func(e *Element, _ hyst.Law) {
 		m := *e.Law.(*memory) // its state is shared and never changes: the next commit makes a new one
