@@ -1,6 +1,7 @@
 package dsl
 
 import (
+	"fmt"
 	"math"
 	"sync"
 
@@ -119,17 +120,24 @@ func (c *MagneticCircuit) solved(d reluct.Drive) *OperatingPoint {
 	return &OperatingPoint{circuit: *c, drive: d, model: m, solution: s, shown: s.Rounded()}
 }
 
-// uncertainty is what the methods behind the number leave open, relative to it; 0 where that is not known.
-func (a *answer) uncertainty() float64 {
+// uncertainty is what the methods behind the number leave open, relative to it; 0 where no method leaves anything open. A
+// method whose error is as large as its result, or a state that cannot be computed at the edge of its error, is an error.
+func (a *answer) uncertainty() (float64, error) {
 	methods := a.op.model.methods(&a.op.circuit)
 	if len(methods) == 0 || a.value == 0 {
-		return 0
+		return 0, nil
+	}
+	for _, in := range methods {
+		if in.Half >= 1 {
+			return 0, fmt.Errorf("%s is uncertain by %s", in.Name, phys.FormatDigits(in.Half, "percent", 2))
+		}
 	}
 	u, err := tol.Propagate(session.Context(), a.again(methods), below(methods))
 	if err != nil {
-		return 0
+		check(session.Context().Err())
+		return 0, err
 	}
-	return u / math.Abs(a.value)
+	return u / math.Abs(a.value), nil
 }
 
 // allInputs are all numbers that can turn a verdict on the answer.
@@ -143,7 +151,7 @@ func (a *answer) flip(margin func(value float64) float64) string {
 	m, ok, err := tol.Flip(session.Context(), a.again(inputs), below(inputs), margin)
 	switch {
 	case err != nil:
-		return ""
+		return "not known: " + err.Error()
 	case !ok:
 		return "no single input within ten times its usual spread"
 	}

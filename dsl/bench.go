@@ -191,7 +191,11 @@ func (b *BenchReading) notes() []string {
 		return []string{"no explanations: the model's value did not come from an operating point as it is"}
 	}
 	var notes []string
-	if u := b.from.uncertainty(); u > 0 && b.model != 0 {
+	u, err := b.from.uncertainty()
+	if err != nil {
+		notes = append(notes, "what the methods for the gaps leave open is not known: "+err.Error())
+	}
+	if u > 0 && b.model != 0 {
 		word := "more than"
 		if math.Abs(b.measured/b.model-1) <= u {
 			word = "within"

@@ -1,6 +1,7 @@
 package dsl
 
 import (
+	"fmt"
 	"strings"
 
 	"ampturn/dsl/doc"
@@ -149,7 +150,7 @@ func trace(v *review.Verdict, conditions []Condition) {
 	for _, c := range conditions {
 		if b, ok := c.(*Band); ok {
 			if b.from != nil && v.Value >= b.min && v.Value <= b.max && (v.Unit == b.unit || v.Unit == "?") { // not a Cpk or a yield
-				v.Uncertainty = b.from.uncertainty()
+				uncertain(v, b.from)
 			}
 			return
 		}
@@ -161,8 +162,20 @@ func trace(v *review.Verdict, conditions []Condition) {
 	if v.Unit == "?" && v.Rule.Unit == "?" {
 		v.Unit, v.Rule.Unit = a.unit, a.unit
 	}
-	v.Uncertainty = a.uncertainty()
+	uncertain(v, a)
 	v.Flip = func() string { return a.flip(v.Rule.Margin) }
+}
+
+// uncertain gives a verdict what the methods behind its value leave open. Where that is not known the verdict says so, and
+// the document lists it.
+func uncertain(v *review.Verdict, a *answer) {
+	u, err := a.uncertainty()
+	if err != nil {
+		v.Unknown = err.Error()
+		review.Assume(fmt.Sprintf("limit %q: uncertainty not known, for %s", v.What, v.Unknown), review.OutOfRange, ".Uncertain(share) at the limit")
+		return
+	}
+	v.Uncertainty = u
 }
 
 // Uncertain states the uncertainty of the value, relative, in place of the one that the methods behind it bring. A PASS with
@@ -173,12 +186,12 @@ func (v *Verdict) Uncertain(share Ratio) *Verdict {
 	if v.kept.Rule.Unit == "degC" {
 		refuse(magcirc.WrongUse, "limit \""+v.kept.What+"\"", "judges a temperature, and a share of one means nothing", "take the uncertainty off the bound: AtMost(95*degC)")
 	}
-	v.kept.Uncertainty = share
+	v.kept.Uncertainty, v.kept.Unknown = share, ""
 	return v
 }
 
 // Uncertainty is that of the value, relative: as stated by [Verdict.Uncertain], else what the methods behind the value leave
-// open; 0 where nothing is known.
+// open; 0 where nothing is known, and the verdict then says so where a method is known to leave something open.
 func (v *Verdict) Uncertainty() Ratio { v.given(); return v.kept.Uncertainty }
 
 // Passed says whether the value keeps the bound.

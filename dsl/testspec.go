@@ -151,8 +151,8 @@ func connection(at string, shorted, all []string) string {
 }
 
 // forecast is the range of an item over the tolerances, widened by what the methods leave open; equal ends where no tolerance
-// is stated.
-func (t *TestSheet) forecast(item testItem) (nominal, low, high float64) {
+// is stated. unknown says why it is not widened where the methods' share is not known.
+func (t *TestSheet) forecast(item testItem) (nominal, low, high float64, unknown string) {
 	c := &t.circuit
 	d := c.driveOf(nil)
 	if item.drive != nil {
@@ -162,11 +162,15 @@ func (t *TestSheet) forecast(item testItem) (nominal, low, high float64) {
 	a := &answer{op: op, value: item.value(op), ask: item.value}
 	spreads := c.spreads()
 	if len(spreads) == 0 {
-		return a.value, a.value, a.value
+		return a.value, a.value, a.value, ""
 	}
 	w := must(tol.WorstCase(session.Context(), a.again(spreads), below(spreads)))
-	u := a.uncertainty() * math.Abs(a.value)
-	return a.value, w.Min - u, w.Max + u
+	u, err := a.uncertainty()
+	if err != nil {
+		unknown = "; without what the methods leave open, which is not known: " + err.Error()
+	}
+	u *= math.Abs(a.value)
+	return a.value, w.Min - u, w.Max + u, unknown
 }
 
 // guarded takes the guard band off limits, and refuses what is left if that is less than a third.
@@ -182,11 +186,11 @@ func (t *TestSheet) guarded(item testItem, nominal, low, high float64) (float64,
 
 // rowOf is the line of one item; false where the model knows nothing of it.
 func (t *TestSheet) rowOf(item testItem) ([]doc.Cell, bool) {
-	nominal, low, high := t.forecast(item)
+	nominal, low, high, unknown := t.forecast(item)
 	if math.Abs(nominal) < 1e-12 {
 		return nil, false
 	}
-	source := "forecast of the tolerances"
+	source := "forecast of the tolerances" + unknown
 	if b, ok := t.demands[item.what]; ok {
 		low, high, source = b.rule.Low, b.rule.High, "asked: "+b.rule.String()
 		if nominal < low || nominal > high {
@@ -235,8 +239,9 @@ func (t *TestSheet) ratios() [][]doc.Cell {
 			ratio := of(op)
 			low, high := ratio, ratio
 			if math.Abs(ratio*n2/n1-1) > 1e-6 {
-				what, source = "ratio of voltages ", "forecast of the tolerances and "+source
-				_, low, high = t.forecast(testItem{value: of})
+				var unknown string
+				_, low, high, unknown = t.forecast(testItem{value: of})
+				what, source = "ratio of voltages ", "forecast of the tolerances and "+source+unknown
 			}
 			half := 0.5 / math.Max(n1, n2)
 			rows = append(rows, []doc.Cell{doc.Text(what + w + " : " + other + ", polarity"), doc.Text("voltage at " + w + "; leave all others open; dots " + dots), doc.Text("ratio meter"),

@@ -81,7 +81,7 @@ func (v *Verdict) row(what string) row {
 	r := row{what: what, value: phys.Format(v.Value, known(v.unit())), limit: v.Rule.String(), margin: v.marginWords(),
 		where: v.Where(), flips: v.flipWords(), words: v.StatusWords(), status: v.Status(), exact: v.Value}
 	r.order = [3]float64{rank[r.status], 1, v.Rule.MarginShare(v.Value)}
-	if v.Thin() {
+	if v.Thin() || v.Unknown != "" {
 		r.order[1] = 0
 	}
 	if math.IsNaN(r.order[2]) {

@@ -32,7 +32,8 @@ type Verdict struct {
 	Rule        Rule
 	Conditions  []string // what the value holds for
 	Corner      string
-	Uncertainty float64       // of the value, relative; 0: not known
+	Uncertainty float64       // of the value, relative; 0: none stated
+	Unknown     string        // why the uncertainty is not known; "" where nothing stands against it
 	Flip        func() string // says which single input turns it, moved how far; nil: not known
 
 	waived *waiver
@@ -70,6 +71,8 @@ func (v *Verdict) StatusWords() string {
 		return v.waived.words()
 	case v.Thin():
 		return "PASS - margin below uncertainty"
+	case s == Pass && v.Unknown != "":
+		return "PASS - uncertainty not known"
 	default:
 		return s.String()
 	}
@@ -86,6 +89,9 @@ func (v *Verdict) Where() string {
 	}
 	if v.Unit == "?" {
 		all = append(all[:len(all):len(all)], "unit not traced")
+	}
+	if v.Unknown != "" {
+		all = append(all[:len(all):len(all)], "uncertainty not known: "+v.Unknown)
 	}
 	return strings.Join(all, "; ")
 }

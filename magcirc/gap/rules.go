@@ -15,11 +15,12 @@ const (
 	lastFactor   = 1.5
 )
 
-// noFringe is F = 1. Its uncertainty is the fringing left out, by the mapping for a square face of equal area.
+// noFringe is F = 1. Its uncertainty is the fringing left out relative to what is counted, by the mapping for a square face
+// of equal area: the permeance is up to (1 + uncertainty) times larger.
 func (s Spec) noFringe() (Result, error) {
 	h, _ := s.side()
 	left := math.Pow(strip(math.Sqrt(s.Face.Gross()), s.Length, h), 2)
-	r := Result{Factor: 1, Uncertainty: 1 - 1/left,
+	r := Result{Factor: 1, Uncertainty: left - 1,
 		Validity: "gap much shorter than the sides of its face",
 		Source:   "uniform field below the face (any textbook)"}
 	if left > simpleFactor {
