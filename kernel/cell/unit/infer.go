@@ -105,6 +105,9 @@ func (in *inference) lookup(obj types.Object) value {
 // state gives what the passes, or earlier cells, know of a key.
 func (in *inference) state(key any) value {
 	v, now := in.env[key]
+	if !now { // of this pass: a chain of variables is followed at once
+		v, now = in.next[key]
+	}
 	old, before := in.kept[key]
 	if obj, ok := key.(types.Object); ok && in.defined[obj] {
 		before = false
