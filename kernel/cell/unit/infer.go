@@ -15,6 +15,7 @@ type inference struct {
 	quote    func(pos, end token.Pos) string
 	declared map[types.Object]value // what was declared with a type that says its unit, or none
 	defined  map[types.Object]bool  // variables that this cell defines: what they were before does not count
+	once     map[types.Object]bool  // variables that are set in one place
 	env      map[any]value          // as the last pass left it
 	next     map[any]value          // as this pass joins it
 	final    bool                   // this is the pass that refuses
@@ -47,6 +48,7 @@ const maxPasses = 12
 
 // run passes over the files until nothing moves, and records the last pass.
 func (in *inference) run(files []*ast.File) {
+	in.once = setOnce(files, in.info)
 	in.env, in.values, in.reads = map[any]value{}, map[ast.Expr]value{}, readers{}
 	for pass := 0; ; pass++ {
 		in.pass(files)
@@ -66,6 +68,50 @@ func (in *inference) run(files []*ast.File) {
 	}
 	in.final = true
 	in.pass(files)
+}
+
+// setOnce finds the variables that are set where they are defined and nowhere else.
+func setOnce(files []*ast.File, info *types.Info) map[types.Object]bool {
+	times := map[types.Object]int{}
+	for _, f := range files {
+		ast.Inspect(f, func(n ast.Node) bool {
+			switch n := n.(type) {
+			case *ast.AssignStmt:
+				for _, x := range n.Lhs {
+					if id, ok := ast.Unparen(x).(*ast.Ident); ok {
+						times[info.ObjectOf(id)]++
+					} else {
+						ast.Inspect(x, func(n ast.Node) bool { // an element or a field
+							if id, ok := n.(*ast.Ident); ok {
+								times[info.ObjectOf(id)] += 2
+							}
+							return true
+						})
+					}
+				}
+			case *ast.ValueSpec:
+				for _, id := range n.Names {
+					times[info.ObjectOf(id)]++
+				}
+			case *ast.RangeStmt:
+				for _, x := range []ast.Expr{n.Key, n.Value} {
+					if id, ok := x.(*ast.Ident); ok {
+						times[info.ObjectOf(id)] += 2
+					}
+				}
+			case *ast.UnaryExpr:
+				if id, ok := ast.Unparen(n.X).(*ast.Ident); ok && n.Op == token.AND {
+					times[info.ObjectOf(id)] += 2
+				}
+			}
+			return true
+		})
+	}
+	once := map[types.Object]bool{}
+	for o, n := range times {
+		once[o] = n == 1
+	}
+	return once
 }
 
 // pass passes over the files once.
@@ -105,8 +151,8 @@ func (in *inference) lookup(obj types.Object) value {
 // state gives what the passes, or earlier cells, know of a key.
 func (in *inference) state(key any) value {
 	v, now := in.env[key]
-	if !now { // of this pass: a chain of variables is followed at once
-		v, now = in.next[key]
+	if obj, ok := key.(types.Object); !now && ok && in.once[obj] {
+		v, now = in.next[key] // of this pass: a chain of variables is followed at once
 	}
 	old, before := in.kept[key]
 	if obj, ok := key.(types.Object); ok && in.defined[obj] {
