@@ -17,6 +17,8 @@ import time
 import urllib.request
 
 from selenium import webdriver
+from selenium.webdriver.common.action_chains import ActionChains
+from selenium.webdriver.common.keys import Keys
 from selenium.webdriver.chrome.options import Options
 from selenium.webdriver.chrome.service import Service
 
@@ -37,6 +39,9 @@ env = dict(os.environ, HOME=str(work / "home"), JUPYTER_CONFIG_DIR=str(work / "c
            JUPYTER_RUNTIME_DIR=str(work / "run"), JUPYTERLAB_SETTINGS_DIR=str(work / "settings"), JUPYTERLAB_WORKSPACES_DIR=str(work / "ws"))
 (work / "home").mkdir()
 (work / "nb").mkdir()
+quiet = work / "settings" / "@jupyterlab" / "apputils-extension"
+quiet.mkdir(parents=True)
+(quiet / "notification.jupyterlab-settings").write_text(json.dumps({"fetchNews": "false"}))
 for b in books:
     shutil.copy(b, work / "nb" / b.name)
 endless = {"cells": [
@@ -154,8 +159,18 @@ try:
     js("window.jupyterapp.commands.execute('completer:invoke-notebook'); return 1;")
     until("the completer pops up", lambda: "Magnetic" in js("const c = document.querySelector('.jp-Completer:not(.lm-mod-hidden)'); return c ? c.innerText : '';"), 20)
     driver.save_screenshot(str(out / "completer-dark.png"))
+    # a hover as a user sees it: Shift-Tab on a name
+    ActionChains(driver).send_keys(Keys.ESCAPE).perform()
+    until("the completer is gone", lambda: js("return !document.querySelector('.jp-Completer:not(.lm-mod-hidden)');"), 10)
+    js(PANEL + "nb.activeCell.model.sharedModel.setSource('Gap(0.6*mm)'); nb.mode = 'edit'; const e = nb.activeCell.editor; e.focus(); e.setCursorPosition({line: 0, column: 2}); return 1;")
+    ActionChains(driver).key_down(Keys.SHIFT).send_keys(Keys.TAB).key_up(Keys.SHIFT).perform()
+    until("a hover is shown", lambda: "length in m" in js("const c = document.querySelector('.jp-Tooltip'); return c ? c.innerText : '';"), 20)
+    driver.save_screenshot(str(out / "hover-dark.png"))
+    command("apputils:change-theme", "{theme: 'JupyterLab Light'}")
+    time.sleep(1)
+    driver.save_screenshot(str(out / "hover-light.png"))
     highlighted = js("return document.querySelectorAll('.cm-content [class*=ͼ]').length;")
-    print(f"endless loop interrupted in {took:.2f} s; completion and hover while it ran; completer seen; {highlighted} highlighted tokens", flush=True)
+    print(f"endless loop interrupted in {took:.2f} s; completion and hover while it ran; completer and hover seen; {highlighted} highlighted tokens", flush=True)
 finally:
     if driver:
         driver.quit()

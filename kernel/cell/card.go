@@ -3,19 +3,23 @@ package cell
 import (
 	"go/doc/comment"
 	"html"
+	"regexp"
 	"strings"
 )
+
+var docLink = regexp.MustCompile(`\[([A-Z][\w.]*)\]`)
 
 // bundle writes a heading, a note under it and a doc comment for all front ends.
 func bundle(head, note, doc string) map[string]any {
 	doc = strings.TrimSpace(doc)
+	words := docLink.ReplaceAllString(doc, "$1")
 	plain := head
-	for _, part := range []string{note, doc} {
+	for _, part := range []string{note, words} {
 		if part != "" {
 			plain += "\n\n" + part
 		}
 	}
-	var p comment.Parser
+	p := comment.Parser{LookupSym: func(recv, name string) bool { return true }} // [Name] is shown as Name
 	parsed := p.Parse(doc)
 	print := comment.Printer{HeadingLevel: 4, DocLinkURL: func(*comment.DocLink) string { return "" }}
 	marked := "```go\n" + head + "\n```\n"
