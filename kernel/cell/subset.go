@@ -81,7 +81,7 @@ func (w *subsetWalk) visit(n ast.Node) bool {
 	case *ast.DeferStmt:
 		w.refuse(n, "a cell has no defer; write the line where it is due, and Try(func() { .. }) where a failure is expected")
 	case *ast.GoStmt:
-		w.refuse(n, "a cell has no goroutines; Sweep runs many circuits at a time")
+		w.refuse(n, "a cell has no goroutines; write a loop (MonteCarlo and WorstCase run many variants at a time)")
 	case *ast.SelectorExpr:
 		if o := w.c.info.Uses[n.Sel]; isSequence(o) && !w.collected[n] {
 			w.refuse(n, "a cell reads the "+strings.ToLower(o.Name())+" of a map with slices.Sorted(maps."+o.Name()+"(m)), or ranges over the map itself, in the order of its keys")
