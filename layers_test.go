@@ -70,12 +70,9 @@ var owners = map[string]string{
 	"github.com/traefik/yaegi":                     "kernel/cell",
 	"gonum.org/v1/plot":                            "dsl/chart",
 	"github.com/yuin/goldmark":                     "kernel/page",
-	"github.com/yuin/goldmark-highlighting":        "kernel/page",
-	"github.com/alecthomas/chroma":                 "kernel/page",
 	"github.com/gohugoio/hugo-goldmark-extensions": "kernel/page",
 	"github.com/google/renameio":                   "kernel/notebook",
 	"github.com/alecthomas/kong":                   ".",
-	"github.com/schollz/progressbar":               ".",
 }
 
 type listed struct {
