@@ -149,30 +149,9 @@ const mostNames = 8
 func nearest(name string, have []string) string {
 	best, least := "", len(name)/2+1
 	for _, h := range have {
-		if d := distance(strings.ToLower(name), strings.ToLower(h)); d < least {
+		if d := magcirc.Distance(name, h); d < least {
 			best, least = h, d
 		}
 	}
 	return best
-}
-
-// distance counts the letters to insert, drop or change between two words (Levenshtein).
-func distance(a, b string) int {
-	row := make([]int, len(b)+1)
-	for j := range row {
-		row[j] = j
-	}
-	for i := 1; i <= len(a); i++ {
-		diagonal := row[0]
-		row[0] = i
-		for j := 1; j <= len(b); j++ {
-			cost := 1
-			if a[i-1] == b[j-1] {
-				cost = 0
-			}
-			next := min(row[j]+1, row[j-1]+1, diagonal+cost)
-			diagonal, row[j] = row[j], next
-		}
-	}
-	return row[len(b)]
 }
