@@ -1,8 +1,11 @@
 package dsl
 
 import (
+	"fmt"
+
 	"ampturn/magcirc"
 	"ampturn/magcirc/material"
+	"ampturn/magcirc/phys"
 )
 
 // Law is a magnetisation law: flux density over field strength. [Linear], [Froehlich], [Langevin], [Arctan], [Curve],
@@ -76,15 +79,11 @@ func initial(elem string, mui, bs float64) {
 		refuseValue(magcirc.BadValue, elem, "initial permeability", mui, 1, "", "is below that of air (1)", "it is a relative permeability")
 	}
 	wantPositive(elem, "saturation polarisation", bs, "T")
-	if bs > maxPolarisation {
-		refuseValue(magcirc.Implausible, elem, "saturation polarisation", bs, maxPolarisation, "T",
-			"is above that of any known material (2.5 T)", "was mT meant?")
+	if bs > material.MostPolarisation {
+		refuseValue(magcirc.Implausible, elem, "saturation polarisation", bs, material.MostPolarisation, "T",
+			fmt.Sprintf("is above that of any known material (%s)", phys.Format(material.MostPolarisation, "T")), "was mT meant?")
 	}
 }
-
-// maxPolarisation is above the 2.45 T of cobalt iron, the largest of all materials at room temperature
-// (Bozorth, Ferromagnetism, 1951, p. 196: 2.43 T).
-const maxPolarisation = 2.5
 
 // boundLaw is a law of the layer below in the words of the vocabulary.
 type boundLaw struct {

@@ -142,11 +142,8 @@ func wantTemperature(elem string, temperature Celsius) {
 	if temperature < -273.15 {
 		refuseValue(magcirc.BadValue, elem, "temperature", temperature, -273.15, "degC", "is below absolute zero", "temperatures are written in degC")
 	}
-	if temperature > maxTemperature {
-		refuseValue(magcirc.Implausible, elem, "temperature", temperature, maxTemperature, "degC",
-			fmt.Sprintf("is above %s", phys.Format(maxTemperature, "degC")), "was kelvin meant?")
+	if temperature > material.MostTemperature {
+		refuseValue(magcirc.Implausible, elem, "temperature", temperature, material.MostTemperature, "degC",
+			fmt.Sprintf("is above %s", phys.Format(material.MostTemperature, "degC")), "was kelvin meant?")
 	}
 }
-
-// maxTemperature is above the Curie point of cobalt, 1121 degC (Bozorth, Ferromagnetism, 1951), the highest of all.
-const maxTemperature = 1200.0

@@ -6,6 +6,7 @@ import (
 
 	"ampturn/magcirc"
 	"ampturn/magcirc/design"
+	"ampturn/magcirc/material"
 	"ampturn/magcirc/phys"
 )
 
@@ -46,9 +47,9 @@ func (op *OperatingPoint) legNotes() []magcirc.Note {
 				continue
 			}
 			s, elem := op.state(place{i, k}), p.full(op.circuit.name, k)
-			if math.Abs(s.B) > maxPolarisation {
+			if math.Abs(s.B) > material.MostPolarisation {
 				notes = append(notes, magcirc.Note{Kind: magcirc.OutOfRange, Elem: elem,
-					Text: phys.Format(s.B, "T") + " is more than any material carries (2.5 T): look at currents, turns and units"})
+					Text: phys.Format(s.B, "T") + " is more than any material carries (" + phys.Format(material.MostPolarisation, "T") + "): look at currents, turns and units"})
 				continue
 			}
 			if share := design.Nearness(leg.material.law(op.circuit.temperature), s.H, s.B); share > saturatedShare {

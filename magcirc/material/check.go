@@ -11,10 +11,19 @@ import (
 // The bounds beyond which a parameter is taken for a slip of a unit.
 const (
 	mostMu = 1e7   // relative permeability; best laboratory values are near 1e6
-	mostBs = 3.0   // T; iron-cobalt saturates at 2.45 T
 	mostMs = 2.4e6 // A/m; the same
 	mostH  = 1e9   // A/m; 1 kT
 )
+
+// MostPolarisation is above the saturation polarisation in T of any material at room temperature: that of cobalt iron is 2.43 T.
+//
+// Source: R. M. Bozorth, Ferromagnetism, 1951, p. 196.
+const MostPolarisation = 2.5
+
+// MostTemperature in degC is above the Curie point of cobalt, 1121 degC, the highest of all: no law is for more.
+//
+// Source: R. M. Bozorth, Ferromagnetism, 1951.
+const MostTemperature = 1200.0
 
 // checkMu refuses a relative permeability below that of air and one above any material's.
 func checkMu(elem, quantity string, mu float64) error {
@@ -34,7 +43,7 @@ func checkMu(elem, quantity string, mu float64) error {
 
 // checkBs refuses a saturation polarisation that is not positive or that no material reaches.
 func checkBs(elem string, bs float64) error {
-	return checkPositive(elem, "saturation", bs, mostBs, "T", fmt.Sprintf("Was %s*mT meant?", phys.FormatDigits(bs, "", 6)))
+	return checkPositive(elem, "saturation", bs, MostPolarisation, "T", fmt.Sprintf("Was %s*mT meant?", phys.FormatDigits(bs, "", 6)))
 }
 
 // checkPositive refuses what is not a positive number, and what is above most with a hint at the likely slip.

@@ -74,7 +74,7 @@ func TestCurveRefusals(t *testing.T) {
 		{bh([]float64{10, math.NaN()}, []float64{0.1, 0.2}), magcirc.BadValue,
 			"curve bh.csv, row 3: H NaN A/m, B 0.2 T is no point"},
 		{bh([]float64{100, 200}, []float64{100, 200}), magcirc.Implausible,
-			"curve bh.csv, row 2: B 100 T is above that of any material (3 T). Are these mT, or are H and B exchanged?"},
+			"curve bh.csv, row 2: B 100 T is above that of any material (2.5 T). Are these mT, or are H and B exchanged?"},
 		{bh([]float64{1e-3, 2e-3}, []float64{0.1, 0.2}), magcirc.Implausible,
 			"curve bh.csv, row 2: B 0.1 T at 1 mA/m means a relative permeability of 79.58e6, above that of any material (10e6). Is H in kA/m or Oe?"},
 		{bh([]float64{0, 20}, []float64{0, 0.2}), magcirc.BadValue,
@@ -112,7 +112,7 @@ func TestLawRefusals(t *testing.T) {
 	first := func(_ material.Law, err error) error { return err }
 	refused(t, first(material.NewLinear(0.5)), magcirc.BadValue, "linear law: relative permeability 0.5 is below 1, that of air")
 	refused(t, first(material.NewLinear(math.NaN())), magcirc.BadValue, "linear law: relative permeability NaN is below 1, that of air")
-	refused(t, first(material.NewFroehlich(2200, 490)), magcirc.Implausible, "Froehlich law: saturation 490 T is above that of any material (3 T). Was 490*mT meant?")
+	refused(t, first(material.NewFroehlich(2200, 490)), magcirc.Implausible, "Froehlich law: saturation 490 T is above that of any material (2.5 T). Was 490*mT meant?")
 	refused(t, first(material.NewArctan(2200, -0.4)), magcirc.BadValue, "arctangent law: saturation -0.4 T is not a positive value")
 	refused(t, first(material.NewArctan(0, 0.4)), magcirc.BadValue, "arctangent law: initial permeability 0 is below 1, that of air")
 	refused(t, first(material.NewLangevin(1.6e6, 651.5, 1.6e-3)), magcirc.BadValue, "Langevin law: the curve folds (alpha Ms/(3a) = 1.31, it must stay below 1); lower alpha or raise a")

@@ -61,7 +61,7 @@ func (m *Material) Also(t float64, law Law) (*Material, error) {
 	switch {
 	case law == nil:
 		return nil, m.refuse(magcirc.BadValue, t, 0, "there is no law for "+phys.Format(t, "degC"), "")
-	case !(t > -273.15) || t > 3000:
+	case !(t > -273.15) || t > MostTemperature:
 		return nil, m.refuse(magcirc.BadValue, t, -273.15, fmt.Sprintf("no material is at %s", phys.Format(t, "degC")), "temperatures are in degC")
 	case slices.ContainsFunc(m.states, func(s state) bool { return s.t == t }):
 		return nil, m.refuse(magcirc.DuplicateName, t, t, "it has a law at "+phys.Format(t, "degC")+" already", "")

@@ -78,9 +78,9 @@ func (p Points) check(i int) error {
 		e.Code, e.Quantity, e.Unit, e.Got, e.Limit = magcirc.NotMonotone, "B", "T", b, p.before(i)
 		e.Msg = fmt.Sprintf("B falls from %s to %s while H rises; a magnetisation curve cannot fall",
 			phys.Format(p.before(i), "T"), phys.Format(b, "T"))
-	case b-phys.Mu0*h > mostBs:
-		e.Code, e.Quantity, e.Unit, e.Got, e.Limit = magcirc.Implausible, "B", "T", b, mostBs
-		e.Msg = fmt.Sprintf("B %s is above that of any material (%s)", phys.Format(b, "T"), phys.Format(mostBs, "T"))
+	case b-phys.Mu0*h > MostPolarisation:
+		e.Code, e.Quantity, e.Unit, e.Got, e.Limit = magcirc.Implausible, "B", "T", b, MostPolarisation
+		e.Msg = fmt.Sprintf("B %s is above that of any material (%s)", phys.Format(b, "T"), phys.Format(MostPolarisation, "T"))
 		e.Hint = "Are these mT, or are H and B exchanged?"
 	default:
 		return nil

@@ -105,9 +105,9 @@ func (t *table) value(h float64) (float64, error) {
 	switch {
 	case math.IsNaN(b) || math.IsInf(b, 0):
 		return 0, refuseFunction(magcirc.BadValue, h, b, 0, fmt.Sprintf("it gives %s at %s", phys.Format(b, "T"), at), "")
-	case b-phys.Mu0*h > mostBs:
-		return 0, refuseFunction(magcirc.Implausible, h, b, mostBs, fmt.Sprintf("B %s at %s is above that of any material (%s)",
-			phys.Format(b, "T"), at, phys.Format(mostBs, "T")), "")
+	case b-phys.Mu0*h > MostPolarisation:
+		return 0, refuseFunction(magcirc.Implausible, h, b, MostPolarisation, fmt.Sprintf("B %s at %s is above that of any material (%s)",
+			phys.Format(b, "T"), at, phys.Format(MostPolarisation, "T")), "")
 	case h > 0 && math.Abs(t.f(-h)+b) > 1e-6*math.Abs(b):
 		return 0, refuseFunction(magcirc.BadValue, h, b, -t.f(-h), fmt.Sprintf("B is %s at %s but %s at -%s",
 			phys.Format(b, "T"), at, phys.Format(t.f(-h), "T"), at), "a law without memory is odd: f(-h) = -f(h)")
