@@ -76,7 +76,13 @@ func (b *Bars) SVG() string {
 	right := width - 84.0
 	x := func(v float64) float64 { return left + (v-r.low)/(r.high-r.low)*(right-left) }
 	b.scale(cv, r, x, top)
-	for _, band := range b.Bands {
+	for i := range b.Names {
+		begin, end := x(b.from(i)*r.factor), x(b.Values[i]*r.factor)
+		y := top + barPitch*float64(i) + (barPitch-barHeight)/2
+		fmt.Fprintf(&cv.body, `<rect x="%s" y="%s" width="%s" height="%d" fill="%s"%s/>`+"\n", num(math.Min(begin, end)), num(y),
+			num(math.Max(math.Abs(end-begin), 1)), barHeight, hex(strokes[0].paint), opacity(sheer(strokes[0].paint)))
+	}
+	for _, band := range b.Bands { // above the bars, which would hide the hatching
 		b.limit(cv, band, r, x, top)
 	}
 	for i, n := range b.Names {
@@ -84,7 +90,6 @@ func (b *Bars) SVG() string {
 		v := b.Values[i] * r.factor
 		begin := x(b.from(i) * r.factor)
 		x0, x1 := math.Min(begin, x(v)), math.Max(begin, x(v))
-		fmt.Fprintf(&cv.body, `<rect x="%s" y="%s" width="%s" height="%d" fill="%s"/>`+"\n", num(x0), num(y), num(math.Max(x1-x0, 1)), barHeight, hex(strokes[0].paint))
 		cv.words(left-8, y+barHeight-4, 0, "end", fontSize, inkHex, shorten(n, left-24))
 		cv.words(x1+5, y+barHeight-4, 0, "start", fontSize, inkHex, phys.Format(b.Values[i], b.Axis.Unit))
 		if b.From != nil {

@@ -98,7 +98,7 @@ func (c *canvas) Stroke(p vg.Path) {
 }
 
 func (c *canvas) Fill(p vg.Path) {
-	fmt.Fprintf(&c.body, `<path d="%s" fill="%s"/>`+"\n", c.path(p), hex(c.now.paint))
+	fmt.Fprintf(&c.body, `<path d="%s" fill="%s"%s/>`+"\n", c.path(p), hex(c.now.paint), opacity(c.now.paint))
 }
 
 // path writes a path's data. Arcs are drawn as short lines: charts hold none but round glyphs.
@@ -179,8 +179,19 @@ func (c *canvas) svg(title, desc string) string {
 
 // hex gives a colour as SVG writes it.
 func hex(p color.Color) string {
+	if c, ok := p.(color.NRGBA); ok {
+		return fmt.Sprintf("#%02x%02x%02x", c.R, c.G, c.B)
+	}
 	r, g, b, _ := p.RGBA()
 	return fmt.Sprintf("#%02x%02x%02x", r>>8, g>>8, b>>8)
+}
+
+// opacity is the attribute of a colour that lets what lies below it through.
+func opacity(p color.Color) string {
+	if c, ok := p.(color.NRGBA); ok && c.A < 0xff {
+		return fmt.Sprintf(` fill-opacity="%.2f"`, float64(c.A)/0xff)
+	}
+	return ""
 }
 
 // num gives a coordinate rounded to 0.01, without a negative zero.

@@ -138,3 +138,33 @@ func TestRefusals(t *testing.T) {
 		}
 	}
 }
+
+// TestLimitsAboveBars: the hatching of a limit is drawn after the bars, which would hide it.
+func TestLimitsAboveBars(t *testing.T) {
+	b := &chart.Bars{Axis: chart.Axis{Label: "inductance", Unit: "H"}, Names: []string{"a", "b"}, Values: []float64{8e-6, 9e-6},
+		Bands: []chart.Band{{Low: math.Inf(-1), High: 5e-6, Text: "at least 5 uH"}}}
+	h := chart.Histogram("draws", chart.Axis{Label: "inductance", Unit: "H"}, []float64{8e-6, 9e-6, 10e-6}, []int{3, 5})
+	h.Bands = []chart.Band{{Low: math.Inf(-1), High: 9e-6, Text: "at least 9 uH", OnX: true}}
+	ink := "#8a6a6a"
+	if s := b.SVG(); strings.LastIndex(s, "<rect") > strings.Index(s, ink) {
+		t.Error("a bar lies over the hatching")
+	}
+	s := h.SVG()
+	for _, picture := range []string{s, b.SVG()} {
+		if !strings.Contains(picture, `fill-opacity="0.45"`) {
+			t.Error("the bars cover in full what lies below")
+		}
+	}
+	if first, fill := strings.Index(s, ink), strings.LastIndex(s, `Z" fill="#`); first < 0 || fill < 0 || first < fill {
+		t.Errorf("the hatching begins at %d, the area of the bars stands at %d", first, fill)
+	}
+}
+
+// TestTwinOfLoop: a line that ends where it began is described by its range.
+func TestTwinOfLoop(t *testing.T) {
+	c := &chart.Chart{X: chart.Axis{Label: "field strength", Unit: "A/m"}, Y: chart.Axis{Label: "flux density", Unit: "T"},
+		Series: []chart.Series{{Name: "loop", X: []float64{600, 0, -600, 0, 600}, Y: []float64{0.3, 0.1, -0.3, -0.1, 0.3}}}}
+	if s := c.Text(); !strings.Contains(s, "field strength from -600 A/m to 600 A/m") {
+		t.Error(s)
+	}
+}

@@ -2,6 +2,7 @@ package chart
 
 import (
 	"fmt"
+	"image/color"
 	"math"
 	"strings"
 
@@ -52,9 +53,19 @@ func (a area) Plot(c draw.Canvas, p *plot.Plot) {
 		path = append(path, vg.PathComp{Type: kind, Pos: vg.Point{X: tx(pt.X), Y: ty(pt.Y)}})
 	}
 	path = append(path, vg.PathComp{Type: vg.CloseComp})
-	c.SetColor(strokes[0].paint)
+	c.SetColor(sheer(strokes[0].paint))
 	c.Fill(path)
 }
+
+// sheer is a colour that lets the hatching of a limit be seen over it, whatever the page's colour.
+func sheer(p color.Color) color.Color {
+	c := color.NRGBAModel.Convert(p).(color.NRGBA)
+	c.A = sheerness
+	return c
+}
+
+// sheerness is the share of 255 by which areas and bars cover what lies below them.
+const sheerness = 0x73
 
 // words are the twin's lines where a chart has words of its own.
 func (c *Chart) words() string {

@@ -42,6 +42,9 @@ func (c *Chart) Text() string {
 	}
 	for _, s := range c.Series {
 		first, last, low, high := c.extremes(s)
+		if closed(s) {
+			first, last = ends(s.X)
+		}
 		fmt.Fprintf(&b, "  %s: %s from %s to %s; lowest %s at %s, highest %s at %s\n", nameOr(s.Name, c.Y.Label), c.X.Label,
 			phys.Format(s.X[first], c.X.Unit), phys.Format(s.X[last], c.X.Unit),
 			phys.Format(s.Y[low], c.Y.Unit), phys.Format(s.X[low], c.X.Unit),
@@ -56,6 +59,25 @@ func (c *Chart) Text() string {
 		}
 	}
 	return strings.TrimRight(b.String(), "\n")
+}
+
+// closed tells whether a line ends where it began, as a loop does: its range says more than its ends.
+func closed(s Series) bool {
+	last := len(s.X) - 1
+	return last > 0 && s.X[0] == s.X[last] && s.Y[0] == s.Y[last]
+}
+
+// ends gives the indices of the smallest and the largest finite number of a list.
+func ends(x []float64) (low, high int) {
+	for i := range x {
+		if bad(x[low]) || x[i] < x[low] {
+			low = i
+		}
+		if bad(x[high]) || x[i] > x[high] {
+			high = i
+		}
+	}
+	return low, high
 }
 
 func nameOr(name, other string) string {
