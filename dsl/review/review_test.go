@@ -246,3 +246,31 @@ func TestAssumptions(t *testing.T) {
 		t.Errorf("after the rerun %v", got)
 	}
 }
+
+// TestFoldSaysWhatIsTrue: equal margins are not more margin, and a thin PASS stands above one with less margin.
+func TestFoldSaysWhatIsTrue(t *testing.T) {
+	at := func(values ...float64) string {
+		session.Reset()
+		cell("a", false, func() {
+			for i, b := range values {
+				v := limit(t, "B", b)
+				if i == 0 {
+					v.Uncertainty = 0.2
+				}
+			}
+		})
+		return review.Table().Text()
+	}
+	for _, c := range []struct {
+		values []float64
+		says   string
+	}{
+		{[]float64{0.31, 0.2, 0.1}, "B: 2 more conditions, all with more margin"},
+		{[]float64{0.31, 0.31, 0.1}, "B: 2 more conditions, none of them worse"},
+		{[]float64{0.3, 0.31}, "B: 1 more condition, not worse"}, // the first is thin, the second has less margin and no doubt
+	} {
+		if s := at(c.values...); !strings.Contains(s, c.says) {
+			t.Errorf("%v: %q is missing in\n%s", c.values, c.says, s)
+		}
+	}
+}

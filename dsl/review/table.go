@@ -165,6 +165,12 @@ func fold(after int, r row) doc.Fold {
 	if len(more) == 1 {
 		f.Summary = r.what + ": 1 more condition, with more margin"
 	}
+	if slices.ContainsFunc(more, func(m row) bool { return m.order[2] <= r.order[2] }) { // equal, or the row is an OPEN or a thin one
+		f.Summary = fmt.Sprintf("%s: %d more conditions, none of them worse", r.what, len(more))
+		if len(more) == 1 {
+			f.Summary = r.what + ": 1 more condition, not worse"
+		}
+	}
 	f.Table.Columns = columns("value")
 	for _, m := range more {
 		f.Table.Rows = append(f.Table.Rows, m.cells())
