@@ -137,8 +137,14 @@ func (a *answer) uncertainty() (float64, error) {
 		check(session.Context().Err())
 		return 0, err
 	}
-	return u / math.Abs(a.value), nil
+	if u /= math.Abs(a.value); u > roundingShare {
+		return u, nil
+	}
+	return 0, nil
 }
+
+// roundingShare is what rounding leaves of a number that does not depend on an input at all.
+const roundingShare = 1e-12
 
 // allInputs are all numbers that can turn a verdict on the answer.
 func (a *answer) allInputs() []input {

@@ -188,7 +188,7 @@ func (b *Band) off(value float64) string {
 	if b.nominal == 0 || value == b.nominal || b.unit == "degC" {
 		return ""
 	}
-	return phys.FormatDigits(value/b.nominal-1, "percent", 3)
+	return phys.FormatDigits((value-b.nominal)/math.Abs(b.nominal), "percent", 3)
 }
 
 func (b *Band) title() string {

@@ -171,7 +171,10 @@ func (p *path) checkPart(circuit string, i int) {
 // slipOfLength asks whether a length was meant a thousand times smaller.
 func slipOfLength(length float64) string {
 	meant := length / 1000
-	return fmt.Sprintf("Was %s*mm or %s*um meant?", phys.Format(meant*1e3, ""), phys.Format(meant*1e6, ""))
+	if meant < 0.1e-3 {
+		return fmt.Sprintf("Was %s*um meant?", phys.Format(meant*1e6, ""))
+	}
+	return fmt.Sprintf("Was %s*mm meant?", phys.Format(meant*1e3, ""))
 }
 
 // beside is the leg whose section a gap takes: the nearest one before it, else after it; nil where the gap has faces

@@ -21,6 +21,7 @@ type BiasCurve struct {
 	name       string // in a picture
 	conditions string
 	remarks    []Remark
+	latest     *[]Remark // of the points computed since it was emptied
 }
 
 // curvePoints is how many currents a bias curve is computed at.
@@ -46,7 +47,8 @@ func (c *MagneticCircuit) BiasCurve(winding string, from, to Ampere, others ...D
 	if len(others) > 0 {
 		b.conditions += ", " + driveWords(c, base)
 	}
-	b.remarks = mergeNotes(nil, m.notes)
+	latest := mergeNotes(nil, m.notes)
+	b.latest = &latest
 	at := func(i float64) (incremental, secant float64, err error) {
 		d := base
 		d.Current = maps.Clone(base.Current)
@@ -55,7 +57,7 @@ func (c *MagneticCircuit) BiasCurve(winding string, from, to Ampere, others ...D
 		if err != nil {
 			return 0, 0, err
 		}
-		b.remarks = mergeNotes(b.remarks, s.Notes)
+		latest = mergeNotes(latest, s.Notes)
 		inc, err := s.Incremental()
 		if err != nil {
 			return 0, 0, err
@@ -69,7 +71,7 @@ func (c *MagneticCircuit) BiasCurve(winding string, from, to Ampere, others ...D
 	curve, err := design.Follow(session.Context(), at, from, to, curvePoints)
 	named(elem, err)
 	b.curve = curve
-	b.remarks = onePerPart(b.remarks)
+	b.remarks = onePerPart(latest)
 	c.keepAssumptions(b.remarks)
 	return b
 }
@@ -102,8 +104,11 @@ func (b *BiasCurve) SecantAt(current Ampere) Henry { _, sec := b.at(current); re
 func (b *BiasCurve) at(current float64) (incremental, secant float64) {
 	b.given()
 	wantFinite(b.elem(), "current", current, "A")
+	*b.latest = nil
 	incremental, secant, err := b.curve.At(current)
 	check(err)
+	b.remarks = onePerPart(mergeNotes(b.remarks, *b.latest))
+	b.circuit.keepAssumptions(b.remarks)
 	return incremental, secant
 }
 

@@ -21,7 +21,7 @@ func TestFaultsByMessage(t *testing.T) {
 	}{
 		{"gap longer than its leg", "Implausible", func() {
 			Magnetic("T1").Path("centre", "bottom -> top", leg, Gap(600*mm))
-		}, "gap T1.centre.gap: length 600 mm is longer than its leg (36 mm). Was 0.6*mm or 600*um meant?"},
+		}, "gap T1.centre.gap: length 600 mm is longer than its leg (36 mm). Was 0.6*mm meant?"},
 		{"unknown path", "UnknownName", func() { op.Flux("center") }, `T1 has no path "center"; it has centre, left, right, window`},
 		{"unknown winding", "UnknownName", func() { op.Inductance("mian") }, `T1 has no winding "mian"; it has main`},
 		{"unknown part", "UnknownName", func() { op.MMF("centre.air") }, `T1 has no part "centre.air"; it has centre.leg, centre.gap, left.leg, right.leg, window.stray`},

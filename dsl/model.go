@@ -78,6 +78,7 @@ func (m *model) path(c *MagneticCircuit, i int) {
 		b.Elements = append(b.Elements, m.part(c, place{i, k}))
 	}
 	m.element = append(m.element, index)
+	m.note(p.turnNotes(c.name)...)
 	m.net.Branch(b)
 }
 
@@ -145,6 +146,30 @@ func (p *path) enclosed(leg LegPart) float64 {
 		}
 	}
 	return max(0, largest-leg.section.Metal())
+}
+
+// turnNotes says where windings of different enclosed areas lie on one path with a leg: the model has one flux a path, so that
+// the largest area counts for all of them.
+func (p *path) turnNotes(circuit string) []magcirc.Note {
+	largest, at, differ, leg := 0.0, "", false, false
+	first := -1.0
+	for k, part := range p.parts {
+		leg = leg || part.part() == legKind
+		w, ok := part.(WindingPart)
+		if !ok {
+			continue
+		}
+		differ = differ || first >= 0 && w.encloses != first
+		first = w.encloses
+		if w.encloses > largest {
+			largest, at = w.encloses, p.names[k]
+		}
+	}
+	if !differ || !leg {
+		return nil
+	}
+	return []magcirc.Note{{Kind: magcirc.Assumed, Elem: "path " + circuit + "." + p.name,
+		Text: fmt.Sprintf("its windings enclose different areas: the air inside winding %s (%s), the largest, counts for all of them; the flux between two windings is a stray path of its own", at, phys.Format(largest, "m2"))}}
 }
 
 // solve gives the state of the model under a drive.

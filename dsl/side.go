@@ -2,9 +2,12 @@ package dsl
 
 import (
 	"fmt"
+	"slices"
+	"strings"
 
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
+	"ampturn/magcirc/reluct"
 )
 
 // SideBySide sets circuits beside each other: the parts in which they differ, and what comes of it without current and in
@@ -18,7 +21,7 @@ func SideBySide(first, second *MagneticCircuit, more ...*MagneticCircuit) *Table
 		c.given()
 		t.Columns = append(t.Columns, doc.Column{Name: c.state(), Mixed: true})
 	}
-	equal := 0
+	equal, notes := 0, sideNotes{}
 	for _, name := range partNames(all) {
 		row := []doc.Cell{doc.Text(name)}
 		same := true
@@ -36,11 +39,12 @@ func SideBySide(first, second *MagneticCircuit, more ...*MagneticCircuit) *Table
 	for _, w := range windingNames(all) {
 		zero, falls := []doc.Cell{doc.Text("inductance of " + w + " without current")}, []doc.Cell{doc.Text("current of " + w + " at which it has fallen by 20 %")}
 		for _, c := range all {
-			zero, falls = append(zero, c.zeroCell(w)), append(falls, c.fallCell(w))
+			zero, falls = append(zero, c.zeroCell(w, &notes)), append(falls, c.fallCell(w, &notes))
 		}
 		t.Rows = append(t.Rows, zero, falls)
 	}
 	t.Notes = append(t.Notes, fmt.Sprintf("%d equal parts", equal))
+	t.Notes = append(t.Notes, notes.lines(all)...)
 	return &TableView{table: t}
 }
 
@@ -87,13 +91,51 @@ func (c *MagneticCircuit) described(name string) string {
 	return "none"
 }
 
+// sideNotes are the notes behind the cells, by their line: which circuits they belong to.
+type sideNotes struct {
+	order []string
+	of    map[string][]*MagneticCircuit
+}
+
+// take enters the notes on the state of a circuit under a drive.
+func (n *sideNotes) take(c *MagneticCircuit, d reluct.Drive) {
+	if n.of == nil {
+		n.of = map[string][]*MagneticCircuit{}
+	}
+	for _, line := range noteLines(c.quiet().solved(d).Notes()) {
+		if n.of[line] == nil {
+			n.order = append(n.order, line)
+		}
+		if !slices.Contains(n.of[line], c) {
+			n.of[line] = append(n.of[line], c)
+		}
+	}
+}
+
+// lines are the notes; one that does not belong to all circuits names its own.
+func (n *sideNotes) lines(all []*MagneticCircuit) []string {
+	var lines []string
+	for _, line := range n.order {
+		if of := n.of[line]; len(of) < len(all) {
+			var names []string
+			for _, c := range of {
+				names = append(names, c.state())
+			}
+			line = strings.Join(names, "; ") + ": " + line
+		}
+		lines = append(lines, line)
+	}
+	return lines
+}
+
 // zeroCell is the inductance of a winding without current.
-func (c *MagneticCircuit) zeroCell(winding string) doc.Cell {
+func (c *MagneticCircuit) zeroCell(winding string, notes *sideNotes) doc.Cell {
 	cell := doc.Text("none")
 	for w, name := range c.windings() {
 		if name == winding {
 			if l, err := c.quiet().zeroBias(w); err == nil {
 				cell = doc.Quantity(l, "H")
+				notes.take(c, reluct.Drive{})
 			} else {
 				cell = doc.Text(reason(err))
 			}
@@ -103,9 +145,9 @@ func (c *MagneticCircuit) zeroCell(winding string) doc.Cell {
 }
 
 // fallCell is the current at which the inductance of a winding has fallen by a fifth.
-func (c *MagneticCircuit) fallCell(winding string) doc.Cell {
+func (c *MagneticCircuit) fallCell(winding string, notes *sideNotes) doc.Cell {
 	cell := doc.Text("none")
-	for _, name := range c.windings() {
+	for w, name := range c.windings() {
 		if name != winding {
 			continue
 		}
@@ -114,6 +156,7 @@ func (c *MagneticCircuit) fallCell(winding string) doc.Cell {
 			var i float64
 			err := Try(func() { i = c.quiet().BiasCurve(winding, 0, most).SaturationCurrent(0.2) })
 			if err == nil {
+				notes.take(c, reluct.Drive{Current: map[int]float64{w: i}})
 				return doc.Quantity(i, "A")
 			}
 			if f, ok := err.(*Fault); !ok || f.Code != magcirc.NoSolution {
