@@ -13,10 +13,13 @@ import (
 	"ampturn/magcirc/reluct"
 )
 
-// GapFor is the length of a gap at which a winding has an inductance without current. It answers and changes nothing:
+// GapFor is the length of a gap at which a winding has an incremental inductance: without current, or as the drives say. Under
+// a current the inductance first rises with the gap, for a core with a short one saturates, and then falls: the length is
+// the one on the falling side. It answers and changes nothing:
 //
 //	T1.With(Length("centre.gap", T1.GapFor("centre.gap", "main", 630*uH)))
-func (c *MagneticCircuit) GapFor(part, winding string, inductance Henry) Metre {
+//	T1.GapFor("centre.gap", "main", 500*uH, Currents{"main": 3*amp})
+func (c *MagneticCircuit) GapFor(part, winding string, inductance Henry, drives ...Drive) Metre {
 	at := c.partOf(part, gapKind)
 	w := c.windingOf(winding)
 	p := &c.paths[at.path]
@@ -26,21 +29,55 @@ func (c *MagneticCircuit) GapFor(part, winding string, inductance Henry) Metre {
 	if beside := p.beside(elem, at.part); beside != nil {
 		most = beside.length
 	}
-	seek := func(length float64) (float64, error) { return c.changed(lengthOf(at, length)).zeroBias(w) }
-	length := must(design.Gap(session.Context(), elem, seek, inductance, p.parts[at.part].(GapPart).length, leastGap, most))
-	c.keepAnswer(c.changed(lengthOf(at, length)), reluct.Drive{})
+	d := c.driveOf(drives)
+	seek := func(length float64) (float64, error) { return c.changed(lengthOf(at, length)).under(d, w) }
+	var length float64
+	if len(drives) == 0 {
+		length = must(design.Gap(session.Context(), elem, seek, inductance, p.parts[at.part].(GapPart).length, leastGap, most))
+	} else {
+		length = must(design.BiasedGap(session.Context(), elem, seek, inductance, leastGap, most))
+	}
+	c.keepAnswer(c.changed(lengthOf(at, length)), d)
 	return length
 }
 
-// keepAnswer enters what a length, current or number of turns that was found rests on: the notes of the state that it leads to.
+// keepAnswer enters what a length, current or number of turns that was found rests on: the notes of the state that it leads
+// to. One that lies beyond data or outside a formula's range is said beside the number, for the number itself carries no
+// notes; in a cell each part says it once.
 func (c *MagneticCircuit) keepAnswer(found *MagneticCircuit, d reluct.Drive) {
-	if !c.drawn {
-		c.keepAssumptions(found.solved(d).Notes())
+	if c.drawn {
+		return
+	}
+	notes := found.solved(d).Notes()
+	c.keepAssumptions(notes)
+	if sampling.Load() > 0 {
+		return
+	}
+	for _, n := range notes {
+		if key := (saidOf{n.Kind, n.Elem}); (n.Kind == magcirc.Extrapolated || n.Kind == magcirc.OutOfRange) && !said[key] {
+			said[key] = true
+			say("note", "note: ", n.String())
+		}
 	}
 }
 
+// saidOf is what a note said beside a number is about.
+type saidOf struct {
+	kind magcirc.NoteKind
+	elem string
+}
+
+// said are the notes that the running cell has said.
+var said = map[saidOf]bool{}
+
+func init() {
+	session.OnReset(func() { clear(said) })
+	session.OnBegin(func(string) { clear(said) })
+}
+
 // CurrentFor is the current of a winding at which the first leg of the circuit reaches a flux density; the other
-// windings carry none.
+// windings carry none. Where a magnet drives more than that already, it is the current that takes the circuit down to it. Of
+// both signs the smaller current is taken.
 func (c *MagneticCircuit) CurrentFor(winding string, fluxDensity Tesla) Ampere {
 	w := c.windingOf(winding)
 	elem := "winding " + c.name + "." + c.windings()[w]
@@ -55,7 +92,9 @@ func (c *MagneticCircuit) CurrentFor(winding string, fluxDensity Tesla) Ampere {
 		most := 0.0
 		for i := range c.paths {
 			if k := op.fullest(i); k >= 0 {
-				most = max(most, math.Abs(op.state(place{i, k}).B))
+				if b := op.state(place{i, k}).B; math.Abs(b) > math.Abs(most) {
+					most = b
+				}
 			}
 		}
 		return most, nil
@@ -68,16 +107,20 @@ func (c *MagneticCircuit) CurrentFor(winding string, fluxDensity Tesla) Ampere {
 // mostCurrent ends the search for a current, A.
 const mostCurrent = 1e7
 
-// TurnsFor is the smallest whole number of turns of a winding that gives at least an inductance without current. Of a
-// winding that lies on several paths it is the number on each of them; one with different numbers is refused.
-func (c *MagneticCircuit) TurnsFor(winding string, inductance Henry) Turns {
+// TurnsFor is the smallest whole number of turns of a winding that gives at least an incremental inductance: without current,
+// or as the drives say. Of a winding that lies on several paths it is the number on each of them; one with different
+// numbers is refused.
+//
+//	T1.TurnsFor("main", 500*uH, Currents{"main": 3*amp})
+func (c *MagneticCircuit) TurnsFor(winding string, inductance Henry, drives ...Drive) Turns {
 	w := c.windingOf(winding)
 	elem := "winding " + c.name + "." + c.windings()[w]
 	wantPositive(elem, "wanted inductance", inductance, "H")
 	c.wantEven(elem, c.windings()[w])
-	seek := func(turns float64) (float64, error) { return c.changed(turnsOf(c.windings()[w], turns)).zeroBias(w) }
+	d := c.driveOf(drives)
+	seek := func(turns float64) (float64, error) { return c.changed(turnsOf(c.windings()[w], turns)).under(d, w) }
 	turns := must(design.Turns(session.Context(), elem, seek, inductance, mostTurns))
-	c.keepAnswer(c.changed(turnsOf(c.windings()[w], turns)), reluct.Drive{})
+	c.keepAnswer(c.changed(turnsOf(c.windings()[w], turns)), d)
 	return turns
 }
 
@@ -103,9 +146,12 @@ func (c *MagneticCircuit) wantEven(elem, winding string) {
 const mostTurns = 1 << 20
 
 // zeroBias is the incremental inductance of a winding without any current.
-func (c *MagneticCircuit) zeroBias(w int) (inductance float64, err error) {
+func (c *MagneticCircuit) zeroBias(w int) (inductance float64, err error) { return c.under(reluct.Drive{}, w) }
+
+// under is the incremental inductance of a winding under a drive.
+func (c *MagneticCircuit) under(d reluct.Drive, w int) (inductance float64, err error) {
 	err = Try(func() {
-		s := c.model().solve(reluct.Drive{})
+		s := c.model().solve(d)
 		inductance = must(s.Incremental()).At(w, w)
 	})
 	return inductance, err
@@ -210,15 +256,20 @@ func (c *MagneticCircuit) With(changes ...Change) *MagneticCircuit {
 	c.given()
 	next := *c
 	next.variant = true
+	var changed []place
 	for _, change := range changes {
 		if change.quantity == "" {
 			refuse(magcirc.BadValue, "With", "is given an empty change", `write With(Length("centre.gap", 0.55*mm))`)
 		}
 		at := next.partOf(change.part, gapKind, legKind, magnetKind)
-		said := next.changes
+		if slices.Contains(changed, at) {
+			refuse(magcirc.DuplicateName, next.paths[at.path].full(c.name, at.part), "is changed twice, and only the last would count", "leave one of the two changes out")
+		}
+		changed = append(changed, at)
+		earlier := next.changes
 		next = *next.changed(lengthOf(at, change.value))
 		p := &next.paths[at.path]
-		next.changes = append(slices.Clone(said), p.name+"."+p.names[at.part]+" "+phys.Format(change.value, "m"))
+		next.changes = append(slices.Clone(earlier), p.name+"."+p.names[at.part]+" "+phys.Format(change.value, "m"))
 		for k := range p.parts {
 			p.checkPart(c.name, k)
 		}

@@ -3,7 +3,8 @@
 // and leaves to them what such a number changes.
 //
 //	Gap       the length at which an inductance is met; inductance falls with the gap
-//	Current   the current at which a flux density is reached; its magnitude rises with the current
+//	Current   the least current, of either sign, at which a flux density is reached
+//	BiasedGap the same under a current, where the inductance first rises with the gap
 //	Turns     the smallest whole number of turns that gives at least an inductance
 //	Follow    incremental and secant inductance over current, and where it has fallen by a share
 //	Nearness  how far a law is driven towards its saturation
@@ -42,39 +43,98 @@ func Gap(ctx context.Context, elem string, inductance Function, want, start, lea
 	return root(ctx, inductance, want, low, high)
 }
 
-// Current gives the current in A at which the magnitude of a flux density in T reaches want.
+// Current gives the current in A of least magnitude, of either sign, at which the magnitude of a flux density in T is want;
+// of two equally large ones the positive.
 //
-// Inputs: elem, the winding as messages name it; density, whose magnitude must rise with the current; want > 0; most,
-// the largest current that is tried.
-// Errors: [magcirc.NoSolution] where even the largest current does not reach it, or where zero current exceeds it.
+// Inputs: elem, the winding as messages name it; density, with its sign; want > 0; most, the largest magnitude that is
+// tried. Where zero current exceeds the demand the search is for the current that takes the flux density down to it.
+// Errors: [magcirc.NoSolution] where no current up to most, of either sign, meets it; those of density.
 func Current(ctx context.Context, elem string, density Function, want, most float64) (float64, error) {
-	magnitude := func(x float64) (float64, error) {
-		b, err := density(x)
-		return math.Abs(b), err
-	}
-	at0, err := magnitude(0)
+	b0, err := density(0)
 	if err != nil {
 		return 0, err
 	}
-	if at0 >= want {
-		return 0, demand(elem, "flux density", want, at0, "T", "without current it is already", "a magnet or another winding has set it")
+	if math.Abs(b0) == want {
+		return 0, nil
 	}
-	low, high := point{x: 0, y: at0}, point{x: firstCurrent}
-	for {
-		if high.y, err = magnitude(high.x); err != nil {
-			return 0, err
+	sides := [2]*side{{sign: 1, last: point{y: b0}}, {sign: -1, last: point{y: b0}}}
+	for step := firstCurrent; ; step = math.Min(4*step, most) {
+		best := math.Inf(1)
+		for _, s := range sides {
+			i, ok, err := s.reach(ctx, density, want, step)
+			switch {
+			case err != nil:
+				return 0, err
+			case ok && math.Abs(i) < math.Abs(best)*(1-1e-9):
+				best = i
+			}
 		}
-		if high.y >= want {
-			return root(ctx, magnitude, want, low, high)
+		if !math.IsInf(best, 1) {
+			return best, nil
 		}
-		if high.x >= most {
-			return 0, demand(elem, "flux density", want, high.y, "T", fmt.Sprintf("even %s gives only", phys.Format(high.x, "A")), "look at the turns and the winding's path")
+		if step >= most || sides[0].err != nil && sides[1].err != nil {
+			break
 		}
 		if err := ctx.Err(); err != nil {
 			return 0, err
 		}
-		low, high.x = high, math.Min(4*high.x, most)
 	}
+	for _, s := range sides {
+		if s.err != nil {
+			return 0, s.err
+		}
+	}
+	says, got := fmt.Sprintf("even %s, of either sign, gives only", phys.Format(most, "A")), math.Max(math.Abs(sides[0].last.y), math.Abs(sides[1].last.y))
+	if math.Abs(b0) > want {
+		says, got = fmt.Sprintf("no current up to %s, of either sign, takes it down from", phys.Format(most, "A")), math.Abs(b0)
+	}
+	return 0, demand(elem, "flux density", want, got, "T", says, "look at the turns and the winding's path")
+}
+
+// side is the search for a current on one side of zero.
+type side struct {
+	sign float64
+	last point // the flux density with its sign
+	err  error // why the search on this side ended
+}
+
+// reach looks between the last current and a further one.
+func (s *side) reach(ctx context.Context, density Function, want, step float64) (float64, bool, error) {
+	if s.err != nil {
+		return 0, false, nil
+	}
+	next := point{x: s.sign * step}
+	if next.y, s.err = density(next.x); s.err != nil {
+		return 0, false, nil
+	}
+	last := s.last
+	s.last = next
+	// Between two flux densities of different sign the magnitude passes through zero: the demand is met before that.
+	toward, over := math.Copysign(1, last.y), math.Abs(last.y) > want
+	if last.y == 0 {
+		toward = math.Copysign(1, next.y)
+	}
+	if (toward*next.y > want) == over && toward*next.y != want {
+		if !over && next.y*toward < -want { // through zero to beyond the demand on the other toward
+			toward = -toward
+		} else {
+			return 0, false, nil
+		}
+	}
+	f := func(x float64) (float64, error) {
+		b, err := density(x)
+		return toward * b, err
+	}
+	last.y, next.y = toward*last.y, toward*next.y
+	i, err := root(ctx, f, want, last, next)
+	if err != nil {
+		return 0, false, err
+	}
+	b, err := density(i)
+	if err != nil || math.Abs(math.Abs(b)-want) > 1e-6*want {
+		return 0, false, err // a jump from one leg to another, not a crossing
+	}
+	return i, true, nil
 }
 
 // firstCurrent begins the search for a current, A.
@@ -82,16 +142,30 @@ const firstCurrent = 1e-3
 
 // Turns gives the smallest whole number of turns at which the inductance in H is at least want.
 //
-// Inputs: elem, the winding as messages name it; inductance, which must rise with the turns; most, the largest number
-// that is tried.
-// Errors: [magcirc.NoSolution] where even that number does not give it.
+// Inputs: elem, the winding as messages name it; inductance, which rises with the turns, or under a bias current rises,
+// falls where they saturate the core, and rises again; most, the largest number that is tried.
+// Errors: [magcirc.NoSolution] where even that number does not give it, or only one far in saturation, at which the
+// inductance is beyond its fall.
 func Turns(ctx context.Context, elem string, inductance Function, want, most float64) (float64, error) {
 	low, high := 0.0, 1.0
+	var before, at point // the two numbers tried before
 	for {
 		l, err := inductance(high)
 		if err != nil {
 			return 0, err
 		}
+		if l < at.y { // fallen: the core saturates
+			best, err := wholeCrest(ctx, inductance, before.x+1, high)
+			if err != nil {
+				return 0, err
+			}
+			if best.y < want {
+				return 0, demand(elem, "inductance", want, best.y, "H", fmt.Sprintf("at this current even the best number of turns, %s, gives only", phys.Format(best.x, "")), "a longer gap, a larger section or less current")
+			}
+			low, high = before.x, best.x
+			break
+		}
+		before, at = at, point{x: high, y: l}
 		if l >= want {
 			break
 		}

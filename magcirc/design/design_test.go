@@ -79,7 +79,7 @@ func TestCurrent(t *testing.T) {
 	if err != nil || math.Abs(got-exact) > 1e-9*exact {
 		t.Errorf("got %g, %v, closed form %g", got, err, exact)
 	}
-	if _, err := design.Current(ctx, "winding T1.main", density, 0.6, 1e6); err == nil || !strings.Contains(err.Error(), "gives only 0.5 T") {
+	if _, err := design.Current(ctx, "winding T1.main", density, 0.6, 1e6); err == nil || !strings.Contains(err.Error(), "of either sign, gives only 0.5 T") {
 		t.Errorf("above saturation: %v", err)
 	}
 }
@@ -159,5 +159,99 @@ func TestNearness(t *testing.T) {
 	linear, _ := material.NewLinear(1000)
 	if got := design.Nearness(linear, 1000, 1000*1000*phys.Mu0); got > 1e-3 {
 		t.Errorf("a linear law is near saturation: %g", got)
+	}
+}
+
+// TestCurrentOfEitherSign: a magnet's flux density that a current raises or takes down; closed forms.
+func TestCurrentOfEitherSign(t *testing.T) {
+	magnet := func(i float64) (float64, error) { return 0.3 + 0.5*math.Tanh(i/20), nil }
+	for _, c := range []struct{ want, exact float64 }{
+		{0.1, 20 * math.Atanh(-0.4)},   // down to it
+		{0.01, 20 * math.Atanh(-0.58)}, // a demand that a coarse step jumps over, sign and all
+		{0.15, 20 * math.Atanh(-0.3)},
+		{0.5, 20 * math.Atanh(0.4)}, // up to it; -0.5 T is never reached
+		{0.3, 0},
+	} {
+		got, err := design.Current(ctx, "winding", magnet, c.want, 1e6)
+		if err != nil || math.Abs(got-c.exact) > 1e-9*math.Abs(c.exact) {
+			t.Errorf("%g T: %g A, %v, closed form %g A", c.want, got, err, c.exact)
+		}
+	}
+	against := func(i float64) (float64, error) { return 0.3 - 0.5*math.Tanh(i/20), nil }
+	if got, err := design.Current(ctx, "winding", against, 0.5, 1e6); err != nil || math.Abs(got+20*math.Atanh(0.4)) > 1e-8 {
+		t.Errorf("wound against the magnet: %g A, %v", got, err)
+	}
+	weak := func(i float64) (float64, error) { return 0.3 + 0.1*math.Tanh(i/20), nil }
+	if _, err := design.Current(ctx, "winding", weak, 0.1, 1e6); err == nil || !strings.Contains(err.Error(), "takes it down from 0.3 T") {
+		t.Errorf("out of reach: %v", err)
+	}
+}
+
+// saturating is the inductance of n turns at current i on a core of reluctance rc, with a gap of length g and area a, that
+// saturates smoothly: L = n^2/(rc + rg) / (1 + (n i/((rc + rg) f))^4), f the flux of the knee.
+func saturating(n, i, g float64) float64 {
+	const rc, a, knee = 2e5, 183e-6, 60e-6
+	r := rc + g/(phys.Mu0*a)
+	return n * n / r / (1 + math.Pow(n*i/(r*knee), 4))
+}
+
+// TestBiasedGap: the length on the falling side, against bisection there; between the two lengths of a demand the
+// inductance is above it.
+func TestBiasedGap(t *testing.T) {
+	f := func(g float64) (float64, error) { return saturating(34, 3, g), nil }
+	crest, at := 0.0, 0.0
+	for g := 1e-7; g < 36e-3; g *= 1.0005 {
+		if l := saturating(34, 3, g); l > crest {
+			crest, at = l, g
+		}
+	}
+	for _, want := range []float64{100e-6, 0.5 * crest, 0.9 * crest, 0.99999 * crest} {
+		got, err := design.BiasedGap(ctx, "gap", f, want, 1e-7, 36e-3)
+		if err != nil {
+			t.Fatal(err)
+		}
+		low, high := at, 36e-3
+		for range 80 {
+			if mid := (low + high) / 2; saturating(34, 3, mid) > want {
+				low = mid
+			} else {
+				high = mid
+			}
+		}
+		if got < at*0.999 || math.Abs(got-low) > 1e-6*low {
+			t.Errorf("%g H: gap %g m, bisection %g m, crest at %g m", want, got, low, at)
+		}
+	}
+	if _, err := design.BiasedGap(ctx, "gap", f, 1.001*crest, 1e-7, 36e-3); err == nil || !strings.Contains(err.Error(), "even the best gap") {
+		t.Errorf("above the crest: %v", err)
+	}
+	if _, err := design.BiasedGap(ctx, "gap", f, 1e-9, 1e-7, 36e-3); err == nil || !strings.Contains(err.Error(), "still gives") {
+		t.Errorf("below the longest: %v", err)
+	}
+}
+
+// TestTurnsUnderBias: the smallest number on the rising side, against trying them all.
+func TestTurnsUnderBias(t *testing.T) {
+	f := func(n float64) (float64, error) { return saturating(n, 3, 1e-3) + 1e-9*n*n, nil }
+	crest := 0.0
+	for n := 1.0; n < 200; n++ {
+		if l, _ := f(n); l > crest {
+			crest = l
+		}
+	}
+	for _, want := range []float64{1e-6, 0.3 * crest, 0.9 * crest, crest} {
+		got, err := design.Turns(ctx, "winding", f, want, 1<<20)
+		first := 1.0
+		for ; ; first++ {
+			if l, _ := f(first); l >= want {
+				break
+			}
+		}
+		if err != nil || got != first {
+			t.Errorf("%g H: %g turns, %v; trying all gives %g", want, got, err, first)
+		}
+	}
+	if _, err := design.Turns(ctx, "winding", f, 1.01*crest, 1<<20); err == nil || !strings.Contains(err.Error(), "even the best number of turns") {
+		t.Errorf("above the crest: %v", err)
 	}
 }
