@@ -42,6 +42,7 @@ const (
 	linkageKind     answerKind = "linkage"
 	energyKind      answerKind = "energy"
 	coenergyKind    answerKind = "co-energy"
+	workKind        answerKind = "work since the demagnetised state"
 )
 
 // answers are the latest numbers that the operating points of the notebook gave, by their value.

@@ -177,9 +177,9 @@ func (b *Band) tables() []doc.Table {
 			how = "more tolerances than corners can be computed for: those that the slopes point to, improved one by one"
 		}
 		t.Notes = append(t.Notes, how)
-		if w.Inside {
-			t.Notes = append(t.Notes, "an extreme lies with a tolerance between its limits: the range may be a little larger than shown")
-		}
+	}
+	for _, n := range b.inside() {
+		t.Notes = append(t.Notes, n.Text)
 	}
 	return []doc.Table{t, b.effectTable()}
 }
@@ -283,11 +283,29 @@ func (b *Band) basis() []basisRow {
 	return rows
 }
 
-// Notes lists what a reader must know about the result at nominal values.
+// Notes lists what a reader must know about the result: at nominal values, and of its range.
 func (b *Band) Notes() []Remark {
 	b.given()
 	if b.from == nil {
+		return b.inside()
+	}
+	return append(b.from.op.Notes(), b.inside()...)
+}
+
+// inside notes that the corners of a worst case do not hold its extremes.
+func (b *Band) inside() []Remark {
+	if b.worst == nil || !b.worst.Inside {
 		return nil
 	}
-	return b.from.op.Notes()
+	return []Remark{{Kind: magcirc.OutOfRange, Elem: "worst case of " + b.quantity(),
+		Text: "an extreme lies with a tolerance between its limits: the range can be larger than shown; MonteCarlo looks between the limits"}}
+}
+
+// doubts are the notes on the range that go with a verdict on it.
+func (b *Band) doubts() []string {
+	var words []string
+	for _, n := range b.inside() {
+		words = append(words, n.Text)
+	}
+	return words
 }

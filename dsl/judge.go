@@ -152,6 +152,7 @@ func trace(v *review.Verdict, conditions []Condition) {
 			if b.from != nil && v.Value >= b.min && v.Value <= b.max && (v.Unit == b.unit || v.Unit == "?") { // not a Cpk or a yield
 				uncertain(v, b.from)
 			}
+			v.Conditions = append(v.Conditions, b.doubts()...)
 			return
 		}
 	}

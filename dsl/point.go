@@ -3,10 +3,12 @@ package dsl
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
+	"ampturn/magcirc/hyst"
 	"ampturn/magcirc/induct"
 	"ampturn/magcirc/phys"
 	"ampturn/magcirc/reluct"
@@ -144,18 +146,30 @@ func (op *OperatingPoint) Linkage(winding string) Weber {
 }
 
 // Energy is the magnetic energy of the circuit: the integral of H dB over its volume. A magnet counts as its recoil
-// reluctance, with its remanence as a source outside, so that a circuit with a magnet has energy without current. After a
-// [MagneticCircuit.History] it is the work since the demagnetised state, of which a part is heat by then.
+// reluctance, with its remanence as a source outside, so that a circuit with a magnet has energy without current. Where legs
+// remember it is the work put in since the demagnetised state, of which a part is heat by then: not what is stored.
 func (op *OperatingPoint) Energy() Joule {
 	op.given()
 	ask := func(op *OperatingPoint) float64 { return op.solution.Energy() }
-	return op.keep(energyKind, "J", ask(op), ask)
+	kind := energyKind
+	if op.remembers() {
+		kind = workKind
+	}
+	return op.keep(kind, "J", ask(op), ask)
+}
+
+// remembers tells whether a leg's law has a memory, so that energy is no function of the state.
+func (op *OperatingPoint) remembers() bool {
+	return op.memories > 0 || slices.ContainsFunc(op.model.notes, func(n magcirc.Note) bool { return n.Text == hyst.InitialNote })
 }
 
 // Coenergy is the magnetic co-energy of the circuit: the integral of B dH over its volume; magnets as for
-// [OperatingPoint.Energy].
+// [OperatingPoint.Energy]. After a [MagneticCircuit.History] there is none: what the integral gives depends on the way.
 func (op *OperatingPoint) Coenergy() Joule {
 	op.given()
+	if op.memories > 0 {
+		refuse(magcirc.WrongUse, "circuit "+op.circuit.name, "has no co-energy where legs remember", "ask for Energy, the work put in since the demagnetised state")
+	}
 	ask := func(op *OperatingPoint) float64 { return op.solution.Coenergy() }
 	return op.keep(coenergyKind, "J", ask(op), ask)
 }
@@ -288,7 +302,7 @@ func (op *OperatingPoint) pathTable() doc.Table {
 }
 
 func (op *OperatingPoint) windingTable() doc.Table {
-	t := doc.Table{Caption: fmt.Sprintf("windings of %s; energy %s, co-energy %s", op.circuit.name, phys.Format(op.Energy(), "J"), phys.Format(op.Coenergy(), "J")), Columns: []doc.Column{{Name: "winding"}, {Name: "current", Unit: "A"},
+	t := doc.Table{Caption: "windings of " + op.circuit.name + "; " + op.energyWords(), Columns: []doc.Column{{Name: "winding"}, {Name: "current", Unit: "A"},
 		{Name: "linkage", Unit: "Wb"}, {Name: "inductance, incremental", Unit: "H"}}}
 	for w, name := range op.circuit.windings() {
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(name), doc.Num(op.shown.Current[w]), doc.Num(op.shown.Linkage[w]), doc.Num(op.Inductance(name))})
@@ -297,6 +311,17 @@ func (op *OperatingPoint) windingTable() doc.Table {
 		t.Notes = append(t.Notes, "energies: "+magnetEnergy.method)
 	}
 	return t
+}
+
+// energyWords says the energies of the point; where legs remember, what they are instead.
+func (op *OperatingPoint) energyWords() string {
+	switch {
+	case op.memories > 0:
+		return fmt.Sprintf("%s %s, heat in the core included", workKind, phys.Format(op.Energy(), "J"))
+	case op.remembers():
+		return fmt.Sprintf("%s %s, heat in the core included; co-energy along the initial curve %s", workKind, phys.Format(op.Energy(), "J"), phys.Format(op.Coenergy(), "J"))
+	}
+	return fmt.Sprintf("energy %s, co-energy %s", phys.Format(op.Energy(), "J"), phys.Format(op.Coenergy(), "J"))
 }
 
 // Balance shows how well flux and mmf balance at the solution, and what the solution took.

@@ -146,7 +146,9 @@ func (c *MagneticCircuit) wantEven(elem, winding string) {
 const mostTurns = 1 << 20
 
 // zeroBias is the incremental inductance of a winding without any current.
-func (c *MagneticCircuit) zeroBias(w int) (inductance float64, err error) { return c.under(reluct.Drive{}, w) }
+func (c *MagneticCircuit) zeroBias(w int) (inductance float64, err error) {
+	return c.under(reluct.Drive{}, w)
+}
 
 // under is the incremental inductance of a winding under a drive.
 func (c *MagneticCircuit) under(d reluct.Drive, w int) (inductance float64, err error) {
