@@ -134,6 +134,7 @@ func (s *Session) Run(ctx context.Context, c kernel.Cell, out kernel.Sink) kerne
 	s.mu.Lock()
 	s.late = nil
 	u, bad := s.prepare(c)
+	s.forgetFiles()
 	late := s.late
 	s.mu.Unlock()
 	if len(bad) > 0 {
