@@ -1,6 +1,7 @@
 package dsl
 
 import (
+	"slices"
 	"strings"
 
 	"ampturn/dsl/doc"
@@ -19,9 +20,12 @@ func Material(name string) *MagneticMaterial {
 	return &MagneticMaterial{below: m}
 }
 
-// Materials lists the shelf: what it carries, at which temperatures, by which law, and where each row comes from. Names
-// that hold one of the words given are listed alone: Materials("ferrite").
+// Materials lists the shelf by kinds of material. Given words, it lists those whose name or class holds one of them, each
+// with its temperatures, its law and where it comes from: Materials("power ferrite").
 func Materials(words ...string) *TableView {
+	if len(words) == 0 {
+		return kinds()
+	}
 	t := doc.Table{Caption: "materials of the shelf: " + stdlib.Representative, Columns: []doc.Column{{Name: "name"}, {Name: "class"},
 		{Name: "degC"}, {Name: "law, at the first of them"}, {Name: "source"}}}
 	for _, r := range stdlib.Materials() {
@@ -40,6 +44,29 @@ func Materials(words ...string) *TableView {
 	}
 	if len(t.Rows) == 0 {
 		refuse(magcirc.UnknownName, "shelf of materials", "holds nothing of "+strings.Join(words, ", "), "Materials() lists it all")
+	}
+	return &TableView{table: t}
+}
+
+// kinds lists the names on the shelf, a row for each kind.
+func kinds() *TableView {
+	t := doc.Table{Caption: "materials of the shelf: " + stdlib.Representative, Columns: []doc.Column{{Name: "kind"}, {Name: "grades"}, {Name: "degC"}},
+		Notes: []string{`a name is kind and grade: Material("power ferrite PW3a")`, `Materials("power ferrite") shows class, law and source`}}
+	for _, kind := range stdlib.Kinds() {
+		var grades, at []string
+		for _, r := range stdlib.Materials() {
+			k, grade := r.Kind()
+			if k != kind {
+				continue
+			}
+			grades = append(grades, grade)
+			for _, temperature := range r.Temperatures {
+				if words := phys.Format(temperature, ""); !slices.Contains(at, words) {
+					at = append(at, words)
+				}
+			}
+		}
+		t.Rows = append(t.Rows, []doc.Cell{doc.Text(kind), doc.Text(strings.Join(grades, "; ")), doc.Text(strings.Join(at, ", "))})
 	}
 	return &TableView{table: t}
 }

@@ -17,6 +17,11 @@ func TestShelf(t *testing.T) {
 	contains(t, text(t, op), "representative of its class; replace by your supplier's data")
 	contains(t, text(t, Materials()), "power ferrite PW3a")
 	contains(t, text(t, Materials()), "25, 100")
+	contains(t, text(t, Materials()), "PW2b; PW3a")
+	if lines := strings.Count(text(t, Materials()), "\n"); lines > 20 {
+		t.Errorf("the shelf fills %d lines", lines)
+	}
+	contains(t, text(t, Materials("power ferrite")), "IEC 61332")
 	contains(t, text(t, fer), "mu_i at 100 degC is taken as at 25 degC")
 	contains(t, text(t, Materials("NiZn")), "nickel-zinc ferrite 80")
 	if all := text(t, Materials("NiZn")); strings.Contains(all, "power ferrite") {

@@ -50,15 +50,50 @@ func Materials() []MaterialRow {
 	return rows
 }
 
+// Kind is the class of material that the name begins with, and grade what distinguishes it there: "power ferrite", "PW3a".
+func (r MaterialRow) Kind() (kind, grade string) {
+	words := strings.Fields(r.Name)
+	n := slices.IndexFunc(words, func(w string) bool { return strings.ContainsAny(w, "0123456789") })
+	if n < 0 {
+		n = len(words)
+	}
+	return strings.Join(words[:n], " "), strings.Join(words[n:], " ")
+}
+
 // Material gives a material of the shelf by its name.
 //
-// Errors: [magcirc.UnknownName], with the names nearest to it.
+// Errors: [magcirc.UnknownName], with the names nearest to it; where none is near, with those that share a word with it, or
+// with the kinds that the shelf holds.
 func Material(name string) (*material.Material, error) {
 	if m, ok := shelf().material[name]; ok {
 		return m, nil
 	}
-	return nil, &magcirc.Error{Code: magcirc.UnknownName, Elem: "shelf of materials",
-		Msg: fmt.Sprintf("there is no %q; nearest to it are %s", name, strings.Join(nearest(name, shelf().order, 3), ", ")), Hint: "Materials() lists them all"}
+	says, hint := suggest(name)
+	return nil, &magcirc.Error{Code: magcirc.UnknownName, Elem: "shelf of materials", Msg: fmt.Sprintf("there is no %q; %s", name, says), Hint: hint}
+}
+
+// suggest says what the shelf holds in place of a name.
+func suggest(name string) (says, hint string) {
+	names := shelf().order
+	if near(name, names) {
+		return "nearest to it are " + strings.Join(nearest(name, names, 3), ", "), "Materials() lists them all"
+	}
+	if alike := shares(name, Materials()); len(alike) > 0 {
+		return "of its kind are " + strings.Join(nearest(name, alike, 4), ", "), "Materials() lists them all"
+	}
+	kinds := Kinds()
+	return "the shelf holds classes, no makers' grades: " + strings.Join(kinds, ", "), fmt.Sprintf("Materials(%q) lists the names of one; your supplier's curve goes into NewMaterial", kinds[0])
+}
+
+// Kinds lists the kinds of material on the shelf, each once, in the order of its table.
+func Kinds() []string {
+	var kinds []string
+	for _, r := range Materials() {
+		if kind, _ := r.Kind(); !slices.Contains(kinds, kind) {
+			kinds = append(kinds, kind)
+		}
+	}
+	return kinds
 }
 
 // materials is the table as read.

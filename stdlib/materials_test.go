@@ -118,3 +118,25 @@ func TestFaultyTable(t *testing.T) {
 		}
 	}
 }
+
+// TestSuggestionsByKind: a grade that no letter resembles gets the kinds of the shelf, one that names its kind the names of that.
+func TestSuggestionsByKind(t *testing.T) {
+	for typed, says := range map[string]string{
+		"X7":               `there is no "X7"; the shelf holds classes, no makers' grades: power ferrite, `,
+		"ferrite, grade 9": `of its kind are "`,
+		"MnZn":             `of its kind are "`,
+	} {
+		_, err := Material(typed)
+		if err == nil || !strings.Contains(err.Error(), says) {
+			t.Errorf("%s: %v", typed, err)
+		}
+		if err != nil && typed != "X7" && strings.Contains(err.Error(), "powder") {
+			t.Errorf("%s: powders are of another kind: %v", typed, err)
+		}
+	}
+	for name, want := range map[string][2]string{"power ferrite PW3 flat": {"power ferrite", "PW3 flat"}, "Fe-Si powder 26": {"Fe-Si powder", "26"}, "air": {"air", ""}} {
+		if kind, grade := (MaterialRow{Name: name}).Kind(); kind != want[0] || grade != want[1] {
+			t.Errorf("%s: %q, %q", name, kind, grade)
+		}
+	}
+}

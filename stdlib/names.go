@@ -27,3 +27,23 @@ func distance(a, b string) int {
 	}
 	return d
 }
+
+// near tells whether one of the names differs from a mistyped one in no more than a third of its letters.
+func near(name string, names []string) bool {
+	return slices.ContainsFunc(names, func(have string) bool { return distance(name, have) <= len(name)/3 })
+}
+
+// shares lists the names of the materials that have a word of three letters or more in common with a name, in their own
+// name or their class.
+func shares(name string, rows []MaterialRow) []string {
+	var alike []string
+	for _, r := range rows {
+		words := strings.FieldsFunc(strings.ToLower(r.Name+" "+r.Class), func(c rune) bool { return c == ' ' || c == ',' || c == '-' })
+		for _, w := range strings.FieldsFunc(strings.ToLower(name), func(c rune) bool { return c == ' ' || c == ',' || c == '-' }) {
+			if len(w) >= 3 && slices.Contains(words, w) && !slices.Contains(alike, r.Name) {
+				alike = append(alike, r.Name)
+			}
+		}
+	}
+	return alike
+}
