@@ -145,7 +145,7 @@ func (c *kernelCommand) Run(ctx context.Context) error {
 	}
 	session.SetLive(true)
 	time.AfterFunc(started, debug.FreeOSMemory) // what only the start needed goes back to the system
-	return kernel.Serve(context.WithoutCancel(ctx), c.Connection, engine, nil)
+	return kernel.Serve(context.WithoutCancel(ctx), c.Connection, engine, &kernel.Options{Version: version()})
 }
 
 // wrongUse says what is wrong with the command line.

@@ -101,6 +101,14 @@ func shelf() []string {
 	return names
 }
 
+// version is that of the program as Go has built it; "devel" outside a released one.
+func version() string {
+	if info, ok := debug.ReadBuildInfo(); ok && info.Main.Version != "" && info.Main.Version != "(devel)" {
+		return info.Main.Version
+	}
+	return "devel"
+}
+
 // provenance names the program and the libraries that the numbers rest on.
 func provenance() []page.Row {
 	info, ok := debug.ReadBuildInfo()
