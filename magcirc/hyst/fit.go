@@ -14,7 +14,23 @@ import (
 
 // Interval is a value with the limits between which it lies with 95 percent confidence, as far as the deviations of the
 // fit are independent errors.
-type Interval struct{ Value, Low, High float64 }
+type Interval struct {
+	Value, Low, High float64
+	Open             bool // the records do not determine it: the limits say nothing
+}
+
+// open says whether limits are none: not finite, or six decades apart.
+func (i Interval) open() bool {
+	return math.IsNaN(i.Low+i.High) || math.IsInf(i.High, 0) || !(i.High <= 1e6*i.Low)
+}
+
+// words gives the limits in words.
+func (i Interval) words(name, unit string) string {
+	if i.Open {
+		return name + " is not determined"
+	}
+	return fmt.Sprintf("%s lies between %s and %s", name, phys.FormatDigits(i.Low, unit, 3), phys.FormatDigits(i.High, unit, 3))
+}
 
 // Fitted says how the law follows one record.
 type Fitted struct {
@@ -35,6 +51,7 @@ type JAFit struct {
 	Ms, A, K, Alpha, C Interval
 	RMS                float64 // over all records, relative to their largest B
 	Records            []Fitted
+	Starts             int // searches, each from a start of its own
 	Evaluations        int // runs of the law
 	Notes              []magcirc.Note
 }
@@ -50,7 +67,8 @@ type FitSettings struct {
 // the mean square deviation of B relative to the record's largest B is smallest, each record with its weight.
 //
 // The search runs in ln Ms, ln a, ln k, logit c and logit (alpha Ms/(3a)): every law on the way is one that cannot
-// fold (Form1986: c/(1+c) for c).
+// fold (Form1986: c/(1+c) for c). It begins at up to eight places that a grid over the scales of the records finds most
+// promising, always the same ones, and ends with the first that leaves nothing but noise, else with the best of all.
 //
 // Several loops of different height, or a loop with the initial curve, determine the parameters; one loop alone does not,
 // and the fit says so. The fit says too how far the law can follow: real cores are no Jiles-Atherton laws.
@@ -64,29 +82,28 @@ func FitJilesAtherton(records []Record, set *FitSettings) (*JAFit, error) {
 	if err := f.prepare(); err != nil {
 		return nil, err
 	}
-	start := f.start()
+	starts := f.starts
 	if set.Start != nil {
 		if err := set.Start.check(); err != nil {
 			return nil, err
 		}
-		start = f.coordinates(*set.Start)
+		starts = func() [][]float64 { return [][]float64{f.coordinates(*set.Start)} }
 	}
-	best := num.LeastSquares(f.residuals, start, f.count, 60, 1e-9)
-	runs := best.Evaluations
-	if set.Start == nil && best.Sum > follows*follows*f.weight {
-		for _, other := range f.others(start) {
-			l := num.LeastSquares(f.residuals, other, f.count, 60, 1e-9)
-			runs += l.Evaluations
-			if l.Sum < best.Sum {
-				best = l
-			}
+	var best *num.Least
+	runs, tried := 0, 0
+	for _, x := range starts() {
+		l := num.LeastSquares(f.residuals, x, f.count, 60, 1e-9)
+		runs += l.Evaluations
+		tried++
+		if best == nil || l.Sum < best.Sum {
+			best = l
+		}
+		if f.settled(l) {
+			break
 		}
 	}
-	return f.conclude(best, runs)
+	return f.conclude(best, tried, runs)
 }
-
-// follows is the relative deviation above which other starts are tried too.
-const follows = 0.02
 
 // jaSearch is a fit on its way.
 type jaSearch struct {
@@ -174,41 +191,14 @@ func logit(p float64) float64 {
 	return math.Log(p / (1 - p))
 }
 
-// start gives the coordinates of a law with the records' largest B and coercivity.
-func (f *jaSearch) start() []float64 {
-	b, h, hc := 0.0, 0.0, 0.0
-	for i := range f.records {
-		r := &f.records[i]
-		b = math.Max(b, r.peak())
-		for k := range r.H {
-			h = math.Max(h, math.Abs(r.H[k]))
-		}
-		for k := 1; k < len(r.H); k++ { // between points: a sample beside the crossing may have H = 0
-			if a, c := r.B[k-1], r.B[k]; a*c < 0 {
-				hc = math.Max(hc, math.Abs(r.H[k-1]+(r.H[k]-r.H[k-1])*a/(a-c)))
-			}
-		}
-	}
-	hc = math.Max(hc, h/200)
-	return []float64{math.Log(1.2 * b / phys.Mu0), math.Log(hc), math.Log(1.2 * hc), logit(0.2), logit(0.4)}
-}
-
-// others gives further starts: softer, less coupled, more reversible.
-func (f *jaSearch) others(x []float64) [][]float64 {
-	shift := func(a, k, c, ratio float64) []float64 {
-		return []float64{x[0], x[1] + a, x[2] + k, logit(c), logit(ratio)}
-	}
-	return [][]float64{shift(1, 0, 0.5, 0.05), shift(0.7, 1, 0.7, 0.01), shift(-0.5, 0, 0.05, 0.2), shift(1.5, 0.5, 0.1, 0.7), shift(0.5, 1.5, 0.9, 0.4)}
-}
-
 // conclude gives the fit at the end of the search.
-func (f *jaSearch) conclude(l *num.Least, runs int) (*JAFit, error) {
+func (f *jaSearch) conclude(l *num.Least, tried, runs int) (*JAFit, error) {
 	p := f.parameters(l.X)
 	law, err := NewJilesAtherton(p)
 	if err != nil {
 		return nil, err
 	}
-	fit := &JAFit{Law: law, RMS: math.Sqrt(l.Sum / f.weight), Evaluations: runs, Records: Follow(law, f.records)}
+	fit := &JAFit{Law: law, RMS: math.Sqrt(l.Sum / f.weight), Starts: tried, Evaluations: runs, Records: Follow(law, f.records)}
 	f.intervals(fit, p, l)
 	fit.note(f.records)
 	return fit, nil
@@ -225,7 +215,11 @@ func (f *jaSearch) intervals(fit *JAFit, p Parameters, l *num.Least) {
 		v := mat.NewVecDense(5, g)
 		return z * math.Sqrt(math.Max(0, mat.Inner(v, cov, v)))
 	}
-	around := func(v, s float64) Interval { return Interval{v, v * math.Exp(-s), v * math.Exp(s)} }
+	around := func(v, s float64) Interval {
+		i := Interval{Value: v, Low: v * math.Exp(-s), High: v * math.Exp(s)}
+		i.Open = i.open()
+		return i
+	}
 	fit.Ms, fit.A, fit.K = around(p.Ms, spread(1, 0, 0, 0, 0)), around(p.A, spread(0, 1, 0, 0, 0)), around(p.K, spread(0, 0, 1, 0, 0))
 	c := func(x float64) float64 {
 		v := logistic(x)
@@ -235,7 +229,8 @@ func (f *jaSearch) intervals(fit *JAFit, p Parameters, l *num.Least) {
 		return v
 	}
 	s := spread(0, 0, 0, 1, 0)
-	fit.C = Interval{p.C, c(l.X[3] - s), c(l.X[3] + s)}
+	fit.C = Interval{Value: p.C, Low: c(l.X[3] - s), High: c(l.X[3] + s)}
+	fit.C.Open = !(logistic(l.X[3]+s)-logistic(l.X[3]-s) < 0.98)  // nearly all that it can be
 	fit.Alpha = around(p.Alpha, spread(-1, 1, 0, 0, 1-p.Ratio())) // ln alpha = ln a - ln Ms + ln ratio
 }
 
@@ -278,10 +273,21 @@ func (f *Fitted) String() string {
 func percent(x float64) string { return phys.FormatDigits(x, "percent", 2) }
 
 func off(got, want float64) string {
-	return fmt.Sprintf("%+.2g %%", 100*(got/want-1))
+	d := got/want - 1
+	if math.IsNaN(d) || math.IsInf(d, 0) {
+		return "not comparable"
+	}
+	sign := "+"
+	if d < 0 {
+		sign = "-"
+	}
+	return sign + percent(math.Abs(d))
 }
 
-// Statement says in a sentence how far the law can follow what was measured.
+// poor is the relative deviation above which a law does not follow a core.
+const poor = 0.03
+
+// Statement says in a sentence how far a law follows what was measured.
 func Statement(rms float64, records []Fitted) string {
 	if rms < 1e-6 {
 		return "follows the records to their last digits"
@@ -296,10 +302,7 @@ func Statement(rms float64, records []Fitted) string {
 	if at >= 0 {
 		s += fmt.Sprintf("; the loop area is %s off at worst (%s)", off(records[at].LawArea, records[at].Area), records[at].Name)
 	}
-	switch {
-	case rms >= 0.03:
-		s += ": the law cannot follow this core closely"
-	case worst > 0.1:
+	if rms < poor && worst > 0.1 {
 		s += ": good for flux, not for losses"
 	}
 	return s
@@ -311,8 +314,12 @@ func (fit *JAFit) note(records []Record) {
 	add := func(kind magcirc.NoteKind, text string) {
 		fit.Notes = append(fit.Notes, magcirc.Note{Kind: kind, Elem: elem, Text: text})
 	}
-	add(magcirc.Remark, Statement(fit.RMS, fit.Records))
-	name, widest := "", 1.0
+	text := Statement(fit.RMS, fit.Records)
+	if fit.RMS >= poor {
+		text += fmt.Sprintf(": the closest that %s found, which is not close; other parameters may follow better, or the law does not suit what was measured", searches(fit.Starts))
+	}
+	add(magcirc.Remark, text)
+	widest, at := 1.0, ""
 	var loose []string
 	for _, q := range [...]struct {
 		name string
@@ -320,21 +327,31 @@ func (fit *JAFit) note(records []Record) {
 		unit string
 	}{{"Ms", fit.Ms, "A/m"}, {"a", fit.A, "A/m"}, {"k", fit.K, "A/m"}, {"alpha", fit.Alpha, ""}, {"c", fit.C, ""}} {
 		w := q.i.High / q.i.Low
-		if w > 1.5 || math.IsNaN(w) {
-			loose = append(loose, fmt.Sprintf("%s (%s to %s)", q.name, phys.FormatDigits(q.i.Low, q.unit, 3), phys.FormatDigits(q.i.High, q.unit, 3)))
+		if q.i.Open {
+			w = math.Inf(1)
+		}
+		if w > 1.5 {
+			loose = append(loose, q.i.words(q.name, q.unit))
 		}
 		if w > widest {
-			name, widest = fmt.Sprintf("%s lies between %s and %s", q.name, phys.FormatDigits(q.i.Low, q.unit, 3), phys.FormatDigits(q.i.High, q.unit, 3)), w
+			widest, at = w, q.i.words(q.name, q.unit)
 		}
 	}
 	if len(records) == 1 && records[0].Cyclic {
 		text := "one loop alone does not determine the parameters"
-		if name != "" {
-			text += ": " + name + " by this loop's own noise, and other loops may ask for other values"
+		if at != "" {
+			text += ": " + at + " by this loop's own noise, and other loops may ask for other values"
 		}
 		add(magcirc.OutOfRange, text+". Add loops of other height, or the initial curve")
 	} else if len(loose) > 0 {
-		add(magcirc.Remark, "the records leave open "+strings.Join(loose, ", "))
+		add(magcirc.Remark, "what the records leave open: "+strings.Join(loose, ", "))
 	}
 	fit.Notes = append(fit.Notes, fit.Law.notes...)
+}
+
+func searches(n int) string {
+	if n == 1 {
+		return "one search"
+	}
+	return fmt.Sprintf("%d searches", n)
 }

@@ -70,7 +70,11 @@ func FitPlay(records []Record, name string) (*PlayFit, error) {
 	note := func(kind magcirc.NoteKind, text string) {
 		fit.Notes = append(fit.Notes, magcirc.Note{Kind: kind, Elem: law.elem(), Text: text})
 	}
-	note(magcirc.Remark, Statement(fit.RMS, fit.Records))
+	text := Statement(fit.RMS, fit.Records)
+	if fit.RMS >= poor {
+		text += ": the cells of the dictionary follow no closer"
+	}
+	note(magcirc.Remark, text)
 	if len(records) == 1 && records[0].Cyclic {
 		note(magcirc.OutOfRange, "one loop alone does not determine the cells: smaller loops may go otherwise. Add loops of other height")
 	}
@@ -79,7 +83,7 @@ func FitPlay(records []Record, name string) (*PlayFit, error) {
 
 // dictionary gives the cells to choose from, of 1 A/m each.
 func dictionary(f *jaSearch) []PlayCell {
-	hc := math.Exp(f.start()[1])
+	hc := f.scales().coercivity
 	peak, least := 0.0, math.Inf(1)
 	for i := range f.records {
 		own := 0.0
@@ -89,15 +93,15 @@ func dictionary(f *jaSearch) []PlayCell {
 		peak, least = math.Max(peak, own), math.Min(least, own)
 	}
 	var cells []PlayCell
-	ladder := func(lo, hi float64, n, i int) float64 { return lo * math.Pow(hi/lo, float64(i)/float64(n-1)) }
 	lo := math.Min(hc, least) / 15
+	kappas, as := ladder(lo, math.Max(math.Min(peak, 8*hc), 2*lo), frictions), ladder(math.Min(least, hc)/8, 2*peak, shapes)
 	for i := -1; i < frictions; i++ {
 		kappa := 0.0
 		if i >= 0 {
-			kappa = ladder(lo, math.Max(math.Min(peak, 8*hc), 2*lo), frictions, i)
+			kappa = kappas[i]
 		}
-		for k := range shapes {
-			cells = append(cells, PlayCell{Ms: 1, A: ladder(math.Min(least, hc)/8, 2*peak, shapes, k), Kappa: kappa})
+		for _, a := range as {
+			cells = append(cells, PlayCell{Ms: 1, A: a, Kappa: kappa})
 		}
 	}
 	return cells

@@ -17,7 +17,7 @@ type Least struct {
 
 // LeastSquares finds parameters x that make the sum of squares of the residuals f(x, r), len(r) = m, smallest near a
 // start, by Levenberg's and Marquardt's method with differences for derivatives. The parameters are of order one: their
-// step of difference is 1e-6. It stops when a step promises less than tol of the sum.
+// step of difference is 1e-6, and no step goes further than 2. It stops when a step promises less than tol of the sum.
 //
 // Source: D. W. Marquardt, SIAM J. 11 (1963) 431-441; the rule for the damping: H. B. Nielsen, IMM-REP-1999-05, DTU
 // (from memory).
@@ -48,15 +48,20 @@ func LeastSquares(f func(x, r []float64), start []float64, m, limit int, tol flo
 			}
 			var ch mat.Cholesky
 			var step mat.VecDense
-			promise := 0.0
+			promise, longest := 0.0, 0.0
 			if ch.Factorize(damped) && ch.SolveVecTo(&step, g) == nil {
 				for i := range n {
 					try[i] = l.X[i] - step.AtVec(i)
+					longest = math.Max(longest, math.Abs(step.AtVec(i)))
 					promise += step.AtVec(i) * (damp*a.At(i, i)*step.AtVec(i) + g.AtVec(i))
 				}
 				if promise <= tol*l.Sum {
 					l.Converged = true
 					return l
+				}
+				if longest > 2 {
+					damp *= 4 // the model is not known that far away
+					continue
 				}
 				if sum := eval(try, r); sum < l.Sum {
 					gain := (l.Sum - sum) / promise
