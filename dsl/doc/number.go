@@ -36,12 +36,16 @@ func (t Table) column(k int, digit, point rune) (head string, texts []string, ri
 	if unit != "" && numbers > 0 {
 		head += " (" + unit + ")"
 	}
+	counts := t.counts(k)
 	behind, powers := 0, false
 	for i, row := range t.Rows {
 		if k >= len(row) {
 			continue
 		}
 		texts[i] = row[k].print(c, factor)
+		if counts && row[k].Number && !row[k].Printed {
+			texts[i] = strconv.FormatInt(int64(row[k].Value), 10)
+		}
 		if row[k].Number && !c.Mixed {
 			behind = max(behind, decimals(texts[i]))
 			powers = powers || strings.ContainsRune(texts[i], 'e')
@@ -53,6 +57,20 @@ func (t Table) column(k int, digit, point rune) (head string, texts []string, ri
 		}
 	}
 	return head, texts, numbers > 0 && !c.Mixed
+}
+
+// counts tells whether the numbers of a column are turns or other counts: without a unit that takes a prefix, and all whole.
+func (t Table) counts(k int) bool {
+	c := t.Columns[k]
+	if c.Mixed || c.Unit != "" && c.Unit != "turn" {
+		return false
+	}
+	for _, row := range t.Rows {
+		if k < len(row) && row[k].Number && (row[k].Value != math.Trunc(row[k].Value) || math.Abs(row[k].Value) >= 1e7) { // infinite and not a number too
+			return false
+		}
+	}
+	return true
 }
 
 // scale gives the factor to print a column by and its unit: with a prefix, or, where the unit takes none and the numbers

@@ -123,3 +123,27 @@ func TestPowersOfTenStandRight(t *testing.T) {
 		t.Errorf("blanks behind the zero:\n%s", page)
 	}
 }
+
+// TestCountsAreWhole: a column of whole numbers without a unit shows no decimals; one with a fraction among them, and
+// quantities, keep theirs.
+func TestCountsAreWhole(t *testing.T) {
+	column := func(unit string, values ...float64) string {
+		table := doc.Table{Columns: []doc.Column{{Name: "x", Unit: unit}}}
+		for _, v := range values {
+			table.Rows = append(table.Rows, []doc.Cell{doc.Num(v)})
+		}
+		return strings.Join(strings.Fields(table.Text()), " ")
+	}
+	for _, c := range []struct{ got, want string }{
+		{column("", 20, 7, 1250), "20 7 1250"},
+		{column("turn", 20, 34), "20 34"},
+		{column("", 20, 7.5), "20.00 7.500"},
+		{column("A", 20, 7), "20.00 7.000"},
+		{column("", math.NaN(), 7), "not a number 7.000"},
+		{column("", math.Copysign(0, -1), 1), "0 1"},
+	} {
+		if !strings.HasSuffix(c.got, c.want) {
+			t.Errorf("%q does not end in %q", c.got, c.want)
+		}
+	}
+}
