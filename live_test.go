@@ -7,6 +7,7 @@ import (
 	"testing"
 	"time"
 
+	"ampturn/dsl/session"
 	"ampturn/kernel"
 	"ampturn/kernel/kerneltest"
 )
@@ -313,5 +314,41 @@ func TestRestartedKernel(t *testing.T) {
 	e := fr.Run("6*7")
 	if got := e.Text("stderr"); !strings.Contains(got, "ended in cell 4: it was killed from outside") || e.Result() != "42" {
 		t.Errorf("%q, %q", got, e.Result())
+	}
+}
+
+// TestLongSweepTellsHowFarItIs lets a compiled computation of more than a second count in a display while somebody looks
+// on, and in none otherwise.
+func TestLongSweepTellsHowFarItIs(t *testing.T) {
+	const circuit = "T1 := Magnetic(\"T1\")\nT1.Ring(\"core\", Leg(NewMaterial(\"lot 12\", Froehlich(2200, 0.4*tesla)), 46*mm, Disc(8.9*mm)), Gap(0.45*mm).PlusMinus(0.02*mm), Winding(\"N\", 7*turn))"
+	const long = "k := 0\nMonteCarlo(12, 1, func(s *Sample) Henry {\n\tif k++; k > 1 {\n\t\tPause(0.12*second)\n\t}\n\treturn s.Part(T1).Solve(Currents{\"N\": 13*amp}).Inductance(\"N\")\n})"
+	for _, live := range []bool{true, false} {
+		session.SetLive(live)
+		defer session.SetLive(false)
+		f := front(t)
+		if e := f.Run(circuit); e.Status() != "ok" {
+			t.Fatal(e.Reply)
+		}
+		e := f.Run(long)
+		if e.Status() != "ok" {
+			t.Fatal(e.Reply)
+		}
+		bars, updates := e.Find("display_data"), e.Find("update_display_data")
+		if !live {
+			if len(bars)+len(updates) > 0 {
+				t.Errorf("nobody looks on: %v", bars)
+			}
+			continue
+		}
+		if len(bars) != 1 || len(updates) == 0 {
+			t.Fatalf("displays %v, updates %v", bars, updates)
+		}
+		last := updates[len(updates)-1].Content
+		if text := last["data"].(map[string]any)["text/plain"]; text != "MonteCarlo: 12 of 12 done" {
+			t.Errorf("at the end: %v", text)
+		}
+		if own, _ := last["metadata"].(map[string]any)["ampturn"].(map[string]any); own["progress"] != true {
+			t.Errorf("not marked as progress: %v", last["metadata"])
+		}
 	}
 }

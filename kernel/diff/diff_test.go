@@ -198,3 +198,15 @@ func TestRevisions(t *testing.T) {
 		t.Errorf("the limit that moved: %q", r.Verdicts[1].Note)
 	}
 }
+
+// TestProgressIsNoResult: a display that told how far a cell was, which a run without a reader does not show, counts for
+// nothing.
+func TestProgressIsNoResult(t *testing.T) {
+	counted := display(map[string]any{"text/plain": "400 of 400 done"}, map[string]any{"ampturn": map[string]any{"progress": true}})
+	if got, _ := diff.Default.Outputs([]*notebook.Output{counted, plain("L 630 uH")}, []*notebook.Output{plain("L 630 uH")}); len(got) > 0 {
+		t.Errorf("%v", got)
+	}
+	if got, _ := diff.Default.Outputs([]*notebook.Output{counted}, []*notebook.Output{plain("L 630 uH")}); len(got) == 0 {
+		t.Error("a missing result is not found")
+	}
+}

@@ -14,6 +14,7 @@ import (
 // Outputs compares what a cell shows: number and kind of outputs, words, numbers, pictures by their twin in words and by
 // their drawing. It gives the changes and how many numbers it compared.
 func (t Tolerance) Outputs(saved, now []*notebook.Output) (changes []Change, numbers int) {
+	saved, now = results(saved), results(now)
 	if len(saved) != len(now) {
 		return []Change{{Place: "outputs", Old: fmt.Sprint(len(saved)), New: fmt.Sprint(len(now))}}, 0
 	}
@@ -28,6 +29,14 @@ func (t Tolerance) Outputs(saved, now []*notebook.Output) (changes []Change, num
 		}
 	}
 	return changes, numbers
+}
+
+// results leaves out displays that only told how far a cell was while somebody looked on.
+func results(all []*notebook.Output) []*notebook.Output {
+	return slices.DeleteFunc(slices.Clone(all), func(o *notebook.Output) bool {
+		own, _ := o.Metadata["ampturn"].(map[string]any)
+		return own["progress"] == true
+	})
 }
 
 func (t Tolerance) output(a, b *notebook.Output) compared {
