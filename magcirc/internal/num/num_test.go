@@ -160,6 +160,28 @@ func TestRoot(t *testing.T) {
 	})
 }
 
+// Newton's steps leap across this root and back, 0.4 percent nearer each time, where |f| is a third of what it is on the
+// other side: every other step halves |f|, and none leads anywhere.
+func TestRootBetweenTwoSteps(t *testing.T) {
+	for _, want := range []float64{1, -7.3, 250} {
+		for _, ratio := range []float64{3, 1, 1.0 / 3, 100} {
+			calls := 0
+			f := func(x float64) (float64, float64) {
+				calls++
+				const p = 0.501
+				d := x - want
+				if d < 0 {
+					return -math.Pow(-d, p), p * math.Pow(-d, p-1)
+				}
+				return ratio * math.Pow(d, p), ratio * p * math.Pow(d, p-1)
+			}
+			if got := num.Root(f, want-1000, want+1100, want-1, 1e-12); math.Abs(got-want) > 1e-11*math.Abs(want) || calls > 170 {
+				t.Errorf("root %v, ratio %v: %v after %d steps", want, ratio, got, calls)
+			}
+		}
+	}
+}
+
 func BenchmarkLangevin(b *testing.B) {
 	s := 0.0
 	for i := range b.N {

@@ -3,8 +3,8 @@ package num
 import "math"
 
 // Root finds x in [lo, hi] with f(x) = 0 for an increasing f that gives value and slope, by Newton steps from x
-// kept inside a bracket that shrinks with every step; a step that does not halve |f| twice running is replaced by
-// bisection. It stops when a step is shorter than tol relative to x, or when f is zero. f(lo) <= 0 <= f(hi).
+// kept inside a bracket that shrinks with every step; where two steps running have not halved the smallest |f| met, the
+// next is a bisection, so that steps to and fro across the root come to an end too. It stops when a step is shorter than tol relative to x, or when f is zero. f(lo) <= 0 <= f(hi).
 func Root(f func(x float64) (y, slope float64), lo, hi, x, tol float64) float64 {
 	if !(lo <= hi) {
 		panic("num: Root without a bracket")
@@ -12,7 +12,7 @@ func Root(f func(x float64) (y, slope float64), lo, hi, x, tol float64) float64 
 	if !(x >= lo && x <= hi) {
 		x = lo + (hi-lo)/2
 	}
-	last, slow := math.Inf(1), 0
+	best, slow := math.Inf(1), 0
 	for range 200 {
 		y, slope := f(x)
 		switch {
@@ -23,16 +23,16 @@ func Root(f func(x float64) (y, slope float64), lo, hi, x, tol float64) float64 
 		default:
 			hi = x
 		}
-		if slow++; math.Abs(y) <= 0.5*last {
+		if slow++; math.Abs(y) <= 0.5*best {
 			slow = 0
 		}
-		last = math.Abs(y)
+		best = math.Min(best, math.Abs(y))
 		next := x - y/slope
 		if !(next > lo && next < hi) || slow >= 2 {
 			if math.Abs(next-x) <= tol*math.Abs(x) {
 				return math.Min(math.Max(next, lo), hi)
 			}
-			next = lo + (hi-lo)/2
+			next, slow = lo+(hi-lo)/2, 0
 		}
 		if math.Abs(next-x) <= tol*math.Abs(x) || next == x {
 			return next
