@@ -88,6 +88,10 @@ func TestMessagesOfOutput(t *testing.T) {
 	if p := e.Reply.Content["payload"].([]any); len(p) != 1 || p[0].(map[string]any)["source"] != "page" {
 		t.Errorf("page: %v", e.Reply)
 	}
+	e = f.Run(`Help("inductance")`)
+	if p := e.Reply.Content["payload"].([]any); len(p) != 1 || !strings.Contains(p[0].(map[string]any)["data"].(map[string]any)["text/plain"].(string), "OperatingPoint.Inductance") {
+		t.Errorf("page on a topic: %v", e.Reply)
+	}
 	e = f.Run("for i := range 20000 {\n\tfmt.Println(\"line\", i)\n}")
 	if n := strings.Count(e.Text("stdout"), "\n"); n != 20000 || len(e.Find("stream")) > 50 {
 		t.Errorf("%d lines in %d messages", n, len(e.Find("stream")))

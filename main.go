@@ -37,7 +37,7 @@ func newEngine() (kernel.Engine, error) {
 	if err != nil {
 		return nil, err
 	}
-	session.Serve(session.Runner{Ask: s.Ask, Later: s.Later, Aside: s.Aside, Names: names(s), Help: s.Help})
+	session.Serve(session.Runner{Ask: s.Ask, Later: s.Later, Aside: s.Aside, Names: names(s), Help: help(s)})
 	return s, nil
 }
 

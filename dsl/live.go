@@ -58,10 +58,12 @@ func Names() *TableView {
 }
 
 // Help explains a name: signature, units, formula, validity and source, as its comment has them. It takes a name of the
-// vocabulary, a method of it or a name of the notebook, quoted or not.
+// vocabulary, a method of it or a name of the notebook, quoted or not. A word that is no name lists the names whose comments
+// speak of it.
 //
 //	Help(Gap)
 //	Help("OperatingPoint.Flux")
+//	Help("leakage")
 func Help(name string) {
 	data, ok := session.Help(name)
 	if !ok {
