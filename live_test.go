@@ -143,13 +143,15 @@ func TestLater(t *testing.T) {
 		}
 	}
 	// An interrupt ends what goes on without end, between cells and from a cell that waits for its turn.
-	f.Run("Later(func() {\n\tfor {\n\t}\n})\nLater(func() { fmt.Println(\"never\") })")
+	f.Run("Later(func() {\n\tfmt.Println(\"begun\")\n\tfor {\n\t}\n})\nLater(func() { fmt.Println(\"never\") })")
+	late("begun")
 	f.Ask(kernel.Control, "interrupt_request", map[string]any{})
 	if got := f.Run("n").Result(); got != "2" {
 		t.Errorf("after the interrupt: %q", got)
 	}
 	late("what cell 3 left for later was interrupted")
-	f.Run("Later(func() {\n\tfor {\n\t}\n})")
+	f.Run("Later(func() {\n\tfmt.Println(\"again\")\n\tfor {\n\t}\n})")
+	late("again")
 	id := f.Start("n")
 	f.Running(id)
 	f.Ask(kernel.Control, "interrupt_request", map[string]any{})

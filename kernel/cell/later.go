@@ -161,9 +161,10 @@ func (s *Session) evaluate(w *work, done chan struct{}) {
 		}
 	}()
 	s.runner.Store(goroutine())
-	if w.ctx.Err() == nil {
-		w.f()
+	if w.ctx.Err() != nil {
+		panic(interrupted{})
 	}
+	w.f()
 }
 
 // workFault words what stopped work that a cell left.
@@ -244,7 +245,6 @@ func (s *Session) Interrupt() {
 	for _, w := range l.queue {
 		w.cancel()
 	}
-	l.queue = nil
 	if l.now != nil {
 		l.now.cancel()
 	}
