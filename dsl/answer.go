@@ -154,6 +154,9 @@ func (a *answer) allInputs() []input {
 
 // flip says which single input, moved how far, uses up a margin: "length of gap L1.core.gap +43 um, to 493 um".
 func (a *answer) flip(margin func(value float64) float64) string {
+	if session.Context().Err() != nil { // asked after its cell has ended
+		return ""
+	}
 	inputs := a.allInputs()
 	m, ok, err := tol.Flip(session.Context(), a.again(inputs), below(inputs), margin)
 	switch {

@@ -115,13 +115,16 @@ func (v *Verdict) Line() string {
 	return s
 }
 
-// flipWords says which single input turns the verdict; it is computed once.
+// flipWords says which single input turns the verdict; it is computed once, and asked again where there was no time for it.
 func (v *Verdict) flipWords() string {
 	if v.Flip == nil {
 		return ""
 	}
 	if v.flips == nil {
 		words := v.Flip()
+		if words == "" {
+			return ""
+		}
 		v.flips = &words
 	}
 	return *v.flips
