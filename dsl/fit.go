@@ -2,11 +2,14 @@ package dsl
 
 import (
 	"fmt"
+	"math"
+	"strings"
 
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
 	"ampturn/magcirc/hyst"
 	"ampturn/magcirc/material"
+	"ampturn/magcirc/phys"
 )
 
 // JAFit is a Jiles-Atherton law fitted to measured loops: the law, how well it follows each loop, and how far its
@@ -84,14 +87,26 @@ func (f *JAFit) FluxDensity(field AmperePerMetre) Tesla {
 // Notes says how far the law can follow the loops, and what they leave open.
 func (f *JAFit) Notes() []Remark { f.given(); return append([]Remark(nil), f.fit.Notes...) }
 
-// Plot draws measured loops and those of the law: the smallest and the largest.
+// Plot draws measured loops and those of the law, the smallest and the largest; without a loop the initial curve.
 func (f *JAFit) Plot() *Figure {
 	f.given()
+	if len(f.loops) == 0 {
+		p := f.initial.points
+		return curvePlot("initial curve", p.H, p.B, f.bound.FluxDensity)
+	}
 	return fitPlot("Jiles-Atherton fit", f.loops, f.fit.Records)
 }
 
 // Residuals draws law less measurement over the field strength, for five loops at most.
-func (f *JAFit) Residuals() *Figure { f.given(); return residualPlot(f.loops, f.fit.Records) }
+func (f *JAFit) Residuals() *Figure {
+	f.given()
+	if len(f.loops) == 0 {
+		p := residualPlot(nil, nil)
+		p.add("initial curve", f.initial.points.H, f.fit.Records[0].Residual)
+		return p
+	}
+	return residualPlot(f.loops, f.fit.Records)
+}
 
 // MIMEBundle shows parameters with their confidence, and each loop's figures measured and fitted.
 func (f *JAFit) MIMEBundle() map[string]any {
@@ -110,15 +125,34 @@ func (f *JAFit) MIMEMetadata() map[string]any {
 }
 
 func (f *JAFit) tables() []doc.Table {
-	t := doc.Table{Caption: fmt.Sprintf("Jiles-Atherton, %s, fitted to %s", f.fit.Law.Parameters().Form, counted(len(f.loops), "loop")),
+	t := doc.Table{Caption: fmt.Sprintf("Jiles-Atherton, %s, fitted to %s", f.fit.Law.Parameters().Form, f.data()),
 		Columns: []doc.Column{{Name: "parameter"}, {Name: "value", Mixed: true}, {Name: "from (95 %)", Mixed: true}, {Name: "to (95 %)", Mixed: true}}}
 	for _, p := range []struct {
 		name, unit string
 		i          hyst.Interval
 	}{{"Ms", "A/m", f.fit.Ms}, {"a", "A/m", f.fit.A}, {"k", "A/m", f.fit.K}, {"alpha", "", f.fit.Alpha}, {"c", "", f.fit.C}} {
-		t.Rows = append(t.Rows, []doc.Cell{doc.Text(p.name), doc.Quantity(p.i.Value, p.unit), doc.Quantity(p.i.Low, p.unit), doc.Quantity(p.i.High, p.unit)})
+		factor, unit := phys.Scale(p.i.Value, p.unit) // one for the three
+		cell := func(x float64) doc.Cell {
+			return doc.Cell{Value: x, Number: true, Unit: p.unit, Words: strings.TrimSpace(doc.Number(x*factor, 4) + " " + unit), Printed: true}
+		}
+		row := []doc.Cell{doc.Text(p.name), cell(p.i.Value), cell(p.i.Low), cell(p.i.High)}
+		if p.i.Open {
+			row = append(row[:2], doc.Text("not determined"), doc.Text("not determined"))
+		}
+		t.Rows = append(t.Rows, row)
 	}
 	return []doc.Table{t, followTable(f.fit.Records, f.fit.Notes)}
+}
+
+// data says what the law was fitted to.
+func (f *JAFit) data() string {
+	switch {
+	case f.initial == nil:
+		return counted(len(f.loops), "loop")
+	case len(f.loops) == 0:
+		return "an initial curve"
+	}
+	return counted(len(f.loops), "loop") + " and an initial curve"
 }
 
 func counted(n int, what string) string {
@@ -131,14 +165,17 @@ func counted(n int, what string) string {
 // followTable shows how a law follows loops.
 func followTable(list []hyst.Fitted, notes []magcirc.Note) doc.Table {
 	t := doc.Table{Caption: "measured, and of the law", Columns: []doc.Column{{Name: "loop"}, {Name: "deviation, rms", Unit: "percent", Digits: 2}, {Name: "at worst", Unit: "percent", Digits: 2},
-		{Name: "Br", Unit: "T"}, {Name: "law", Unit: "T"}, {Name: "Hc", Unit: "A/m"}, {Name: "law", Unit: "A/m"},
-		{Name: "area", Unit: "J/m3"}, {Name: "law", Unit: "J/m3"}}, Notes: noteLines(notes)}
+		{Name: "Br", Unit: "T", Beside: "Br"}, {Name: "law", Unit: "T", Beside: "Br"}, {Name: "Hc", Unit: "A/m", Beside: "Hc"},
+		{Name: "law", Unit: "A/m", Beside: "Hc"}, {Name: "area", Unit: "J/m3", Beside: "area"}, {Name: "law", Unit: "J/m3", Beside: "area"}}, Notes: noteLines(notes)}
 	for i := range list {
 		f := &list[i]
 		row := []doc.Cell{doc.Text(f.Name), doc.Num(f.RMS), doc.Num(f.Worst)}
 		for _, x := range []float64{f.Br, f.LawBr, f.Hc, f.LawHc, f.Area, f.LawArea} {
 			cell := doc.Text("") // an initial curve has none
-			if f.Loop {
+			switch {
+			case f.Loop && math.IsNaN(x):
+				cell = doc.Text("none") // its branches do not cross the axis
+			case f.Loop:
 				cell = doc.Num(x)
 			}
 			row = append(row, cell)

@@ -167,7 +167,7 @@ func (m *MagneticMaterial) input() input {
 	in := newInput("permeability of "+m.Name()+", factor", "", 1, lot, commonPermeability)
 	in.Least, in.Most = 0.02, 50
 	in.parts = func(paths []path, x float64) {
-		other := &MagneticMaterial{must(m.below.Scaled(x)), m.lot}
+		other := &MagneticMaterial{must(m.below.Scaled(x)), m.lot, m.sheet}
 		for i := range paths {
 			for k, part := range paths[i].parts {
 				if leg, ok := part.(LegPart); ok && leg.material == m {

@@ -16,6 +16,9 @@ type Loop struct {
 	loop   *hyst.Loop
 	name   string
 	weight float64 // in a fit; 0: 1
+
+	split     *hyst.Split // of [MagneticMaterial.DynamicLoop]
+	frequency float64
 }
 
 // memory gives the law with memory of a material at a temperature.
@@ -151,5 +154,6 @@ func (l *Loop) table() doc.Table {
 		{"coercivity", l.Coercivity(), "A/m"}, {"area, loss of a cycle", l.Area(), "J/m3"}} {
 		t.Rows = append(t.Rows, []doc.Cell{doc.Text(r.name), doc.Quantity(r.value, r.unit)})
 	}
+	t.Rows = append(t.Rows, l.splitRows()...)
 	return t
 }

@@ -7,6 +7,7 @@ import (
 	"ampturn/dsl/doc"
 	"ampturn/magcirc"
 	"ampturn/magcirc/design"
+	"ampturn/magcirc/hyst"
 	"ampturn/magcirc/material"
 	"ampturn/magcirc/phys"
 )
@@ -19,7 +20,8 @@ const roomTemperature = 25.0
 // methods give a new one.
 type MagneticMaterial struct {
 	below *material.Material
-	lot   spread // how its permeability is spread, as far as Normal and Together say it
+	lot   spread      // how its permeability is spread, as far as Normal and Together say it
+	sheet *hyst.Sheet // its laminations, as far as Sheet says them
 }
 
 // NewMaterial makes a material of a law at 25 degC.
@@ -41,20 +43,20 @@ func (m *MagneticMaterial) Also(temperature Celsius, law Law) *MagneticMaterial 
 	wantTemperature(elem, temperature)
 	next, err := m.below.Also(temperature, lawBelow(elem, law))
 	named(elem, err)
-	return &MagneticMaterial{next, m.lot}
+	return &MagneticMaterial{next, m.lot, m.sheet}
 }
 
 // Extrapolate allows temperatures further than 20 K beyond the data; every result then says how far.
 func (m *MagneticMaterial) Extrapolate() *MagneticMaterial {
 	m.given()
-	return &MagneticMaterial{m.below.Extrapolate(), m.lot}
+	return &MagneticMaterial{m.below.Extrapolate(), m.lot, m.sheet}
 }
 
 // Tolerance states the spread of the permeability, relative: what the maker guarantees.
 func (m *MagneticMaterial) Tolerance(spread Ratio) *MagneticMaterial {
 	m.given()
 	wantRange("material "+m.Name(), "tolerance", spread, 0, 1, "")
-	return &MagneticMaterial{m.below.Tolerance(spread), m.lot}
+	return &MagneticMaterial{m.below.Tolerance(spread), m.lot, m.sheet}
 }
 
 // Name is the name it was given.
@@ -126,6 +128,9 @@ func (m *MagneticMaterial) MIMEBundle() map[string]any {
 		t.Rows = append(t.Rows, row)
 	}
 	t.Notes = noteLines(remarks)
+	if m.sheet != nil {
+		t.Notes = append(t.Notes, fmt.Sprintf("laminations of %s, %s", phys.Format(m.sheet.Thickness, "m"), phys.Format(m.sheet.Resistivity, "ohm m")))
+	}
 	return t.Bundle()
 }
 

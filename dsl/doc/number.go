@@ -19,13 +19,11 @@ const (
 func (t Table) column(k int, digit, point rune) (head string, texts []string, right bool) {
 	c := t.Columns[k]
 	texts = make([]string, len(t.Rows))
-	largest, numbers := 0.0, 0
-	for _, row := range t.Rows {
-		if k < len(row) && row[k].Number {
-			numbers++
-			if v := math.Abs(row[k].Value); !math.IsInf(v, 0) && v > largest {
-				largest = v
-			}
+	largest, numbers := t.largest(k)
+	for i, other := range t.Columns {
+		if c.Beside != "" && i != k && other.Beside == c.Beside && other.Unit == c.Unit {
+			v, _ := t.largest(i)
+			largest = math.Max(largest, v)
 		}
 	}
 	factor, unit := 1.0, c.Unit
@@ -71,6 +69,19 @@ func (t Table) counts(k int) bool {
 		}
 	}
 	return true
+}
+
+// largest gives the largest finite magnitude in column k and how many numbers it has.
+func (t Table) largest(k int) (largest float64, numbers int) {
+	for _, row := range t.Rows {
+		if k < len(row) && row[k].Number {
+			numbers++
+			if v := math.Abs(row[k].Value); !math.IsInf(v, 0) && v > largest {
+				largest = v
+			}
+		}
+	}
+	return largest, numbers
 }
 
 // scale gives the factor to print a column by and its unit: with a prefix, or, where the unit takes none and the numbers

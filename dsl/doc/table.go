@@ -12,6 +12,7 @@ type Column struct {
 	Name   string
 	Unit   string // SI unit of its numbers; the header shows it with the prefix that fits them all
 	Digits int    // significant digits, 0 for four
+	Beside string // columns of one word here, and of one unit, are compared and share a prefix
 	Mixed  bool   // its numbers differ in unit: each cell carries its own and is printed with it
 }
 

@@ -36,6 +36,20 @@ func TestTextAlignsAtThePoint(t *testing.T) {
 	}
 }
 
+// Columns that are compared share a prefix: 90 mT beside 1.2 T is read as 0.09 T.
+func TestComparedColumnsShareAPrefix(t *testing.T) {
+	table := func(beside string) string {
+		return doc.Table{Columns: []doc.Column{{Name: "measured", Unit: "T", Beside: beside}, {Name: "law", Unit: "T", Beside: beside}},
+			Rows: [][]doc.Cell{{doc.Num(1.2), doc.Num(0.09)}}}.Text()
+	}
+	if s := table("Br"); !strings.Contains(s, "law (T)") || !strings.Contains(s, "0.09") {
+		t.Error(s)
+	}
+	if s := table(""); !strings.Contains(s, "law (mT)") {
+		t.Error(s)
+	}
+}
+
 func TestHTML(t *testing.T) {
 	got := sample().HTML()
 	for _, want := range []string{
