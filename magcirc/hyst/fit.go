@@ -339,7 +339,7 @@ func (fit *JAFit) note(records []Record) {
 	}
 	if len(records) == 1 && records[0].Cyclic {
 		text := "one loop alone does not determine the parameters"
-		if at != "" {
+		if widest > 1.01 { // else the loop has no noise
 			text += ": " + at + " by this loop's own noise, and other loops may ask for other values"
 		}
 		add(magcirc.OutOfRange, text+". Add loops of other height, or the initial curve")

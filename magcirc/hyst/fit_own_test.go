@@ -63,6 +63,20 @@ func TestFitsLoopsOfItsOwnLaw(t *testing.T) {
 	}
 }
 
+// Play cells follow loops of another law too, small ones that saturate nothing among them. A loop computed with a point at
+// B = 0 shows its coercivity as any other does.
+func TestFitsPlayToLoopsOfAnotherLaw(t *testing.T) {
+	p := hyst.Parameters{Ms: 1.6e6, A: 1100, K: 400, Alpha: 1.6e-3, C: 0.2}
+	for _, peaks := range [][]float64{{600}, {2000}, {600, 6000}, {600, 2000, 6000}} {
+		fit, err := hyst.FitPlay(family(t, p, peaks...), "")
+		if err != nil {
+			t.Error(err)
+		} else if fit.RMS > 2e-3 {
+			t.Errorf("loops to %v: residual %.2g, %s", peaks, fit.RMS, fit.Law.Describe())
+		}
+	}
+}
+
 // Families of one to four noisy loops of random heights of forty random cores: each fit reaches the residual of the truth.
 func TestFitsNoisyFamilies(t *testing.T) {
 	for seed := range int64(40) {

@@ -38,12 +38,16 @@ func FitPlay(records []Record, name string) (*PlayFit, error) {
 	if err := f.prepare(); err != nil {
 		return nil, err
 	}
-	cells := dictionary(f)
-	gram, rhs := f.equations(cells)
-	x := num.NonNegative(gram, rhs)
-	total := 0.0
-	for _, w := range x {
-		total += w
+	var cells []PlayCell
+	var x []float64
+	total, reach := math.Inf(1), 2.0
+	for ; total > mostMs && reach > 0.1; reach /= 1.4 { // loops that do not saturate ask for soft cells of any Ms
+		cells = dictionary(f, reach)
+		gram, rhs := f.equations(cells)
+		x, total = num.NonNegative(gram, rhs), 0
+		for _, w := range x {
+			total += w
+		}
 	}
 	var chosen []PlayCell
 	for i, w := range x {
@@ -81,8 +85,8 @@ func FitPlay(records []Record, name string) (*PlayFit, error) {
 	return fit, nil
 }
 
-// dictionary gives the cells to choose from, of 1 A/m each.
-func dictionary(f *jaSearch) []PlayCell {
+// dictionary gives the cells to choose from, of 1 A/m each, with shapes up to reach times the largest field strength.
+func dictionary(f *jaSearch, reach float64) []PlayCell {
 	hc := f.scales().coercivity
 	peak, least := 0.0, math.Inf(1)
 	for i := range f.records {
@@ -94,7 +98,7 @@ func dictionary(f *jaSearch) []PlayCell {
 	}
 	var cells []PlayCell
 	lo := math.Min(hc, least) / 15
-	kappas, as := ladder(lo, math.Max(math.Min(peak, 8*hc), 2*lo), frictions), ladder(math.Min(least, hc)/8, 2*peak, shapes)
+	kappas, as := ladder(lo, math.Max(math.Min(peak, 8*hc), 2*lo), frictions), ladder(math.Min(least, hc)/8, reach*peak, shapes)
 	for i := -1; i < frictions; i++ {
 		kappa := 0.0
 		if i >= 0 {

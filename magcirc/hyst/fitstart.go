@@ -33,7 +33,7 @@ func (f *jaSearch) scales() scales {
 			s.field = math.Max(s.field, math.Abs(r.H[k]))
 		}
 		for k := 1; k < len(r.H); k++ { // between points: a sample beside the crossing may have H = 0
-			if a, c := r.B[k-1], r.B[k]; a*c < 0 {
+			if a, c := r.B[k-1], r.B[k]; a*c < 0 || c == 0 && a != 0 {
 				s.coercivity = math.Max(s.coercivity, math.Abs(r.H[k-1]+(r.H[k]-r.H[k-1])*a/(a-c)))
 			}
 		}
