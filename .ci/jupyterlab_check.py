@@ -42,6 +42,8 @@ env = dict(os.environ, HOME=str(work / "home"), JUPYTER_CONFIG_DIR=str(work / "c
 quiet = work / "settings" / "@jupyterlab" / "apputils-extension"
 quiet.mkdir(parents=True)
 (quiet / "notification.jupyterlab-settings").write_text(json.dumps({"fetchNews": "false"}))
+for b in books:  # with the data beside it
+    shutil.copytree(b.parent, work / "nb", ignore=shutil.ignore_patterns("*.ipynb", ".ipynb_checkpoints"), dirs_exist_ok=True)
 for b in books:
     shutil.copy(b, work / "nb" / b.name)
 endless = {"cells": [
