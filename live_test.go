@@ -3,6 +3,7 @@ package main
 import (
 	"os"
 	"os/exec"
+	"path/filepath"
 	"strings"
 	"testing"
 	"time"
@@ -10,6 +11,7 @@ import (
 	"ampturn/dsl/session"
 	"ampturn/kernel"
 	"ampturn/kernel/kerneltest"
+	"ampturn/kernel/notebook"
 )
 
 // front gives a front end in memory, joined to a kernel with the whole vocabulary.
@@ -68,6 +70,21 @@ func TestMessagesOfCells(t *testing.T) {
 	}
 	if e := f.Run(`fmt.Print("\xff\xfe bad\n")`); e.Text("stdout") != "\uFFFD bad\n" && !strings.HasSuffix(e.Text("stdout"), " bad\n") {
 		t.Errorf("not UTF-8: %q", e.Text("stdout"))
+	}
+}
+
+// TestBandIsNoNumber: a result with several numbers, given where one is wanted, names those that it has.
+func TestBandIsNoNumber(t *testing.T) {
+	f := front(t)
+	f.Run(`b := WorstCase(func(s *Sample) Henry { return s.Of("x", 8*uH, 5*percent) })`)
+	e := f.Run(`Limit("L", b, AtLeast(7*uH), b)`)
+	said := e.Reply.Content["evalue"]
+	if s, _ := said.(string); !strings.Contains(s, "b is no number; ") || !strings.Contains(s, "b.Min()") || !strings.Contains(s, "b.Max()") {
+		t.Errorf("said %v", said)
+	}
+	e = f.Run(`Limit("L", "8 uH", AtLeast(7*uH))`)
+	if s, _ := e.Reply.Content["evalue"].(string); !strings.Contains(s, "cannot use") {
+		t.Errorf("a text: %v", s)
 	}
 }
 
@@ -356,5 +373,51 @@ func TestLongSweepTellsHowFarItIs(t *testing.T) {
 		if own, _ := last["metadata"].(map[string]any)["ampturn"].(map[string]any); own["progress"] != true {
 			t.Errorf("not marked as progress: %v", last["metadata"])
 		}
+	}
+}
+
+// TestCompletionEverywhere asks for completions and explanations at places all over the cells of the examples, cut off
+// there and whole: nothing panics, and what is offered begins with what is typed.
+func TestCompletionEverywhere(t *testing.T) {
+	e, err := newEngine()
+	if err != nil {
+		t.Fatal(err)
+	}
+	paths, err := filepath.Glob("notebooks-examples/*.ipynb")
+	if err != nil || len(paths) == 0 {
+		t.Fatal(paths, err)
+	}
+	asked, offered := 0, 0
+	for _, path := range paths {
+		nb, err := notebook.Read(path)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, c := range nb.Cells {
+			if c.Kind != notebook.Code {
+				continue
+			}
+			text := []rune(c.Source)
+			for at := asked % 11; at <= len(text); at += 11 {
+				for _, source := range []string{c.Source, string(text[:at])} {
+					got := e.Complete(source, at)
+					if got.Start > at || got.End != at {
+						t.Fatalf("%s at %d: replaces %d to %d", source, at, got.Start, got.End)
+					}
+					for _, m := range got.Matches {
+						if !strings.HasPrefix(m, string(text[got.Start:at])) {
+							t.Fatalf("%s at %d: %s is offered", source, at, m)
+						}
+					}
+					e.Inspect(source, at)
+					e.IsComplete(source)
+					asked++
+					offered += len(got.Matches)
+				}
+			}
+		}
+	}
+	if asked < 500 || offered < asked {
+		t.Errorf("asked %d times, offered %d names", asked, offered)
 	}
 }

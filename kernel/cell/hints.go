@@ -165,6 +165,8 @@ func (c *checking) hint(r *checked, e types.Error, b problem) problem {
 				b.text += " and cannot be called"
 			}
 		}
+	case notNumber.MatchString(e.Msg):
+		b.text = c.numberHint(e.Pos, b.text)
 	case strings.HasPrefix(e.Msg, "assignment mismatch"):
 	case truncated.MatchString(e.Msg):
 		b.text = c.wholeHint(r, e.Pos, b.text)
