@@ -68,5 +68,8 @@ func (s *Session) Lower(text string) (ok bool, err error) {
 		}
 		return report.Text(e)
 	})
+	if _, refused := err.(cannot); refused {
+		return false, nil
+	}
 	return err == nil, err
 }

@@ -28,6 +28,10 @@ func (s *Session) forgetFiles() {
 		keep(m.function)
 	}
 	removeFiles(s.fset, live)
+	if len(s.generic) > 0 {
+		delete(s.texts, s.now.Number-keptTexts)
+		return // the interpreter asks for the file of generic code each time that it gets new types
+	}
 	if f, ok := field(reflect.ValueOf(s.machine.i).Elem(), "fset", reflect.Pointer); ok {
 		if fset, ok := f.Interface().(*token.FileSet); ok {
 			removeFiles(fset, nil)

@@ -62,6 +62,7 @@ func (s *Session) helpers() map[string]reflect.Value {
 		"Unwrap":     reflect.ValueOf(func(k int, zero any, f func(any) error) { s.able(k, zero).unwrap = f }),
 		"Is":         reflect.ValueOf(func(k int, zero any, f func(any, error) bool) { s.able(k, zero).is = f }),
 		"Typed":      reflect.ValueOf(s.typedAt),
+		"Same":       reflect.ValueOf(same),
 		"Size":       reflect.ValueOf(size),
 
 		"Letters":      reflect.ValueOf(nb.Letters),

@@ -100,7 +100,15 @@ func (l *lowering) listFunc(o types.Object, args *types.TypeList) string {
 	for i := range params.Len() {
 		filled[params.At(i).Obj().Name()] = texts[i]
 	}
-	l.globals = append(l.globals, fillIn(decl, name+open, filled))
+	text := fillIn(decl, name+open, filled)
+	for i := range args.Len() {
+		if boxes(args.At(i), 0) {
+			text = strings.NewReplacer("s[i] == v", l.nb("Same")+`(s[i], v, "", "")`, "s1[i] != s2[i]", "!"+l.nb("Same")+`(s1[i], s2[i], "", "")`,
+				"v1 != v2", "!"+l.nb("Same")+`(v1, v2, "", "")`).Replace(text)
+			break
+		}
+	}
+	l.globals = append(l.globals, text)
 	return name + given
 }
 

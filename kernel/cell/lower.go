@@ -135,6 +135,42 @@ func (s *Session) lower(r *checked, unit func(ast.Expr) string) *lowered {
 	return res
 }
 
+// methodName gives the lowered name of a method. The interpreter finds the methods of generic types by their name and
+// types alone; a name that another generic type of the notebook has is changed.
+func (l *lowering) methodName(m types.Object) string {
+	f, ok := m.(*types.Func)
+	if !ok || l.s.plain || foreign(m) || f.Signature().Recv() == nil {
+		return m.Name()
+	}
+	n, ok := types.Unalias(deref(f.Signature().Recv().Type())).(*types.Named)
+	if !ok || n.Origin().TypeParams().Len() == 0 {
+		return m.Name()
+	}
+	o := n.Origin().Obj()
+	owner := l.s.methodOwner[m.Name()]
+	if owner == nil {
+		l.s.methodOwner[m.Name()] = o
+	}
+	if owner == nil || owner == o {
+		return m.Name()
+	}
+	return m.Name() + "__" + l.s.typeNames[o]
+}
+
+// renamed tells whether a generic type has a method whose name was changed, so that it cannot be held in an interface.
+func (l *lowering) renamed(t types.Type) bool {
+	n, ok := types.Unalias(deref(t)).(*types.Named)
+	if !ok || foreign(n.Obj()) || n.Obj().Pkg() == nil || n.TypeArgs().Len() == 0 {
+		return false
+	}
+	for i := range n.NumMethods() {
+		if m := n.Method(i); l.methodName(m) != m.Name() {
+			return true
+		}
+	}
+	return false
+}
+
 func prefixed(lines []string) string {
 	var b strings.Builder
 	for _, s := range lines {

@@ -83,7 +83,7 @@ func (l *lowering) methodCall(e *ast.CallExpr, f *ast.SelectorExpr, sel *types.S
 	if s, ok := sel.Obj().Type().(*types.Signature); ok && s.Recv() != nil && isPointer(s.Recv().Type()) && !isPointer(l.receiverType(sel)) {
 		l.capture(f.X)
 	}
-	return l.called(e, l.receiver(f, sel), sel, sig, sel.Obj().Name(), "")
+	return l.called(e, l.receiver(f, sel), sel, sig, l.methodName(sel.Obj()), "")
 }
 
 func (l *lowering) called(e *ast.CallExpr, recv string, sel *types.Selection, sig *types.Signature, name, units string) string {

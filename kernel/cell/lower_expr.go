@@ -1,6 +1,7 @@
 package cell
 
 import (
+	"fmt"
 	"go/ast"
 	"go/token"
 	"go/types"
@@ -216,7 +217,7 @@ func (l *lowering) methodValue(e *ast.SelectorExpr, sel *types.Selection) string
 	r := l.hold(recv)
 	params, args := l.forward(sel.Type().(*types.Signature))
 	f := l.name("f")
-	l.before("%s := func(%s)%s { %s%s.%s(%s) }", f, params, l.results(sig.Results(), nil), returning(sig), r, sel.Obj().Name(), args)
+	l.before("%s := func(%s)%s { %s%s.%s(%s) }", f, params, l.results(sig.Results(), nil), returning(sig), r, l.methodName(sel.Obj()), args)
 	return f
 }
 
@@ -251,7 +252,7 @@ func (l *lowering) methodExpr(sel *types.Selection) string {
 	recv := "r__" + l.path(sel, index[:len(index)-1])
 	f := l.name("f")
 	l.before("%s := func(%s)%s { %s%s.%s(%s) }", f, joinComma("r__ "+l.typ(sel.Recv()), params), l.results(sig.Results(), nil),
-		returning(sig), recv, sel.Obj().Name(), args)
+		returning(sig), recv, l.methodName(sel.Obj()), args)
 	return f
 }
 
@@ -272,6 +273,9 @@ func (l *lowering) binary(e *ast.BinaryExpr) string {
 		if texts[0] == "nil" {
 			return texts[1] + " " + e.Op.String() + " nil"
 		}
+		if texts[1] != "nil" && !l.s.plain && (boxes(tx, 0) || boxes(ty, 0)) {
+			return l.same(e.Op, tx, ty, texts)
+		}
 	} else {
 		texts = l.list([]ast.Expr{x, y}, []types.Type{l.info.TypeOf(x), l.info.TypeOf(y)})
 	}
@@ -279,6 +283,29 @@ func (l *lowering) binary(e *ast.BinaryExpr) string {
 		texts[0], texts[1] = l.beside(x, y, texts[0]), l.beside(y, x, texts[1])
 	}
 	return l.wrap(x, texts[0]) + " " + e.Op.String() + " " + l.wrap(y, texts[1])
+}
+
+// same compares two values of which one is held in an interface.
+func (l *lowering) same(op token.Token, tx, ty types.Type, texts []string) string {
+	name := func(t types.Type) string {
+		if n, ok := types.Unalias(t).(*types.Named); ok && !types.IsInterface(t) && isCellType(t) {
+			return l.typ(n)
+		}
+		return ""
+	}
+	text := fmt.Sprintf("%s(%s, %s, %q, %q)", l.nb("Same"), texts[0], texts[1], name(tx), name(ty))
+	if op == token.NEQ {
+		text = "!" + text
+	}
+	return text
+}
+
+// sameAs compares the tag of a switch, held in an interface, with a case.
+func (l *lowering) sameAs(tag string, t types.Type, e ast.Expr) string {
+	if isNil(e) {
+		return tag + " == nil"
+	}
+	return l.same(token.EQL, t, l.info.TypeOf(e), []string{tag, l.expr(e)})
 }
 
 // shortCircuit keeps the right side of && and || from being evaluated early.
@@ -425,6 +452,9 @@ func (l *lowering) convert(e ast.Expr, to types.Type) string {
 	}
 	text := l.expr(e)
 	from := l.info.TypeOf(e)
+	if to != nil && from != nil && types.IsInterface(to) && !isAny(to) && !types.IsInterface(from) && l.renamed(from) {
+		panic(cannot(shortType(from) + " has a method whose name another generic type of the notebook has, and cannot be held in an interface: give the method another name"))
+	}
 	if to != nil && from != nil && types.IsInterface(to) && !types.IsInterface(from) && l.isOperation(e) {
 		text = l.hold(text) // the interpreter computes in place, which an interface is not
 	}

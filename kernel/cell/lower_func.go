@@ -40,7 +40,8 @@ func (l *lowering) method(f *fnUnit) string {
 		if len(recv.Names) > 0 && recv.Names[0].Name != "_" {
 			name = l.local(l.info.Defs[recv.Names[0]])
 		}
-		return "func (" + name + " " + l.typ(rt) + ") " + f.name + l.funcBody(fr, decl.Type, nil, decl.Body)
+		m, _, _ := types.LookupFieldOrMethod(rt, true, named.obj.Pkg(), f.name)
+		return "func (" + name + " " + l.typ(rt) + ") " + l.methodName(m) + l.funcBody(fr, decl.Type, nil, decl.Body)
 	}
 	if f.own && !l.usesNotebook(decl.Body) {
 		name := "r__"

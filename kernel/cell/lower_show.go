@@ -46,12 +46,12 @@ func (l *lowering) showText(t types.Type, unit, text, typed string, top bool) {
 	k := len(l.s.shows) - 1
 	if isCellType(t) && !types.IsInterface(t) {
 		if has(t, "MIMEBundle", "map[string]any") {
-			l.line("%s(%d, %s.MIMEBundle())", l.nb("ShowBundle"), k, text)
+			l.line("%s(%d, %s.%s())", l.nb("ShowBundle"), k, text, l.methodOf(t, "MIMEBundle"))
 			return
 		}
 		for _, m := range []string{"String", "Error"} {
 			if has(t, m, "string") {
-				l.line("%s(%d, %s.%s())", l.nb("ShowText"), k, text, m)
+				l.line("%s(%d, %s.%s())", l.nb("ShowText"), k, text, l.methodOf(t, m))
 				return
 			}
 		}
@@ -105,4 +105,10 @@ func (l *lowering) showHelp(name string) {
 		text, _ := data["text/plain"].(string)
 		l.line("%s(%q)", l.nb("Write"), text+"\n")
 	}
+}
+
+// methodOf gives the lowered name of a method of a type.
+func (l *lowering) methodOf(t types.Type, name string) string {
+	m, _, _ := types.LookupFieldOrMethod(t, true, nil, name)
+	return l.methodName(m)
 }

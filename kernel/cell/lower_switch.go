@@ -23,12 +23,15 @@ func (l *lowering) switchStmt(s *ast.SwitchStmt, label string) {
 		tagType = l.info.TypeOf(s.Tag)
 		tag = l.hold(l.expr(s.Tag))
 	}
+	held := s.Tag != nil && !l.s.plain && boxes(tagType, 0)
 	var heads []string
 	for _, c := range s.Body.List {
 		var list []string
 		for _, e := range c.(*ast.CaseClause).List {
 			if s.Tag == nil {
 				list = append(list, l.expr(e))
+			} else if held {
+				list = append(list, l.sameAs(tag, tagType, e))
 			} else {
 				list = append(list, l.convert(e, tagType))
 			}
@@ -37,7 +40,7 @@ func (l *lowering) switchStmt(s *ast.SwitchStmt, label string) {
 	}
 	l.flush()
 	l.label(label)
-	if s.Tag == nil {
+	if s.Tag == nil || held {
 		l.line("switch {")
 	} else {
 		l.line("switch %s {", tag)

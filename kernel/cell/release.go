@@ -40,7 +40,11 @@ func (m *machine) release(keep map[string]bool) {
 		return
 	}
 	for _, name := range sym.MapKeys() {
-		if n := name.String(); !keep[n] && !strings.HasPrefix(n, "nb__") && !strings.HasPrefix(n, "p_") {
+		n := name.String()
+		if base, _, ok := strings.Cut(n, "["); ok && keep[strings.TrimPrefix(base, "main.")] {
+			continue // a generic type with its types filled in
+		}
+		if !keep[n] && !strings.HasPrefix(n, "nb__") && !strings.HasPrefix(n, "p_") {
 			sym.SetMapIndex(name, reflect.Value{})
 		}
 	}
@@ -185,4 +189,75 @@ func (s *Session) keepTypes(t types.Type, keep map[string]bool, seen map[types.T
 			walk(t.Term(i).Type())
 		}
 	}
+}
+
+// same compares two values as Go does; x and y are the lowered names of their types where these are known.
+func same(a, b any, x, y string) bool {
+	va, vb := reflect.ValueOf(a), reflect.ValueOf(b)
+	if n := boxedName(va); n != "" {
+		x = n
+	}
+	if n := boxedName(vb); n != "" {
+		y = n
+	}
+	return sameValue(unboxed(va), unboxed(vb), x, y)
+}
+
+func sameValue(a, b reflect.Value, x, y string) bool {
+	if !a.IsValid() || !b.IsValid() {
+		return a.IsValid() == b.IsValid()
+	}
+	if a.Type() != b.Type() {
+		return false
+	}
+	inner := func(a, b reflect.Value) bool {
+		if a.Kind() == reflect.Interface {
+			a, b = a.Elem(), b.Elem()
+		}
+		return sameValue(unboxed(a), unboxed(b), boxedName(a), boxedName(b))
+	}
+	switch a.Kind() {
+	case reflect.Struct:
+		for i := range a.NumField() {
+			if !inner(a.Field(i), b.Field(i)) {
+				return false
+			}
+		}
+		return true
+	case reflect.Array:
+		for i := range a.Len() {
+			if !inner(a.Index(i), b.Index(i)) {
+				return false
+			}
+		}
+		return true
+	case reflect.Pointer:
+		return a.Pointer() == b.Pointer()
+	}
+	return (x == "" || y == "" || x == y) && a.Interface() == b.Interface()
+}
+
+// boxes tells whether the interpreter puts something around values of a type, or around parts of them: interfaces which may
+// hold values of a cell's types.
+func boxes(t types.Type, depth int) bool {
+	if t == nil || depth > 6 {
+		return false
+	}
+	if _, ok := types.Unalias(t).(*types.TypeParam); ok {
+		return false
+	}
+	if types.IsInterface(t) {
+		return isAny(t) || isCellType(t)
+	}
+	switch u := t.Underlying().(type) {
+	case *types.Struct:
+		for i := range u.NumFields() {
+			if boxes(u.Field(i).Type(), depth+1) {
+				return true
+			}
+		}
+	case *types.Array:
+		return boxes(u.Elem(), depth+1)
+	}
+	return false
 }

@@ -42,9 +42,10 @@ type Session struct {
 	texts          map[int]string
 	cache          map[string]*unitOfWork
 	ledger         ledger
-	generic        map[string][]string // by lowered name of generic code: the names in it
-	plain          bool                // lowers to a plain program, which is not run
-	late           []string            // notes on names that the cell took over
+	methodOwner    map[string]*types.TypeName // by method: the first generic type that has it
+	generic        map[string][]string        // by lowered name of generic code: the names in it
+	plain          bool                       // lowers to a plain program, which is not run
+	late           []string                   // notes on names that the cell took over
 
 	sink      atomic.Pointer[kernel.Sink]
 	now       kernel.Cell                    // the running cell
@@ -86,7 +87,7 @@ func New(v *Vocabulary, h Hooks) (*Session, error) {
 	s := &Session{
 		voc: v, hooks: h, base: b, scope: &scope{names: map[string]*live{}}, fset: token.NewFileSet(),
 		turn: newTurn(), versions: map[string]int{}, typeNames: map[*types.TypeName]string{}, texts: map[int]string{}, cache: map[string]*unitOfWork{},
-		marks: []mark{{}}, ledger: newLedger(), generic: map[string][]string{}, byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
+		marks: []mark{{}}, ledger: newLedger(), methodOwner: map[string]*types.TypeName{}, generic: map[string][]string{}, byType: map[reflect.Type]*abilities{}, ableIndex: map[ability]int{},
 	}
 	if s.machine, err = newMachine(v, s.helpers()); err != nil {
 		return nil, err
@@ -195,6 +196,9 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 			err = s.compile(u)
 		}
 	}
+	if c, ok := err.(cannot); ok {
+		return nil, []problem{{src: p.src, text: string(c)}}
+	}
 	if err != nil {
 		return nil, []problem{{src: p.src, text: "this cell is not supported here (" + err.Error() + "); please report it with its text", name: "InternalError"}}
 	}
@@ -212,9 +216,18 @@ func (s *Session) prepare(c kernel.Cell) (*unitOfWork, []problem) {
 	return u, nil
 }
 
+// cannot is what keeps a cell that passed the check from being lowered, in words for its author.
+type cannot string
+
+func (c cannot) Error() string { return string(c) }
+
 func (s *Session) lowerSafe(r *checked, text func(ast.Expr) string) (low *lowered, err error) {
 	defer func() {
-		if x := recover(); x != nil {
+		switch x := recover().(type) {
+		case nil:
+		case cannot:
+			err = x
+		default:
 			err = fmt.Errorf("lowering: %v", x)
 		}
 	}()

@@ -21,16 +21,26 @@ func (c *checking) subset(r *checked) []problem {
 		}
 	}
 	for _, s := range c.p.stmts {
-		if ret, ok := unlabel(s).(*ast.ReturnStmt); ok {
-			w.refuse(ret, "return stands in functions only; a cell ends with its last line")
-			continue
-		}
+		w.returns(s)
 		w.top = true
 		ast.Inspect(s, w.visit)
 	}
 	w.order()
 	w.bad = append(w.bad, c.divisions(r)...)
 	return w.bad
+}
+
+// returns refuses a return outside functions.
+func (w *subsetWalk) returns(s ast.Stmt) {
+	ast.Inspect(s, func(n ast.Node) bool {
+		switch n := n.(type) {
+		case *ast.FuncLit:
+			return false
+		case *ast.ReturnStmt:
+			w.refuse(n, "return stands in functions only; a cell ends with its last line")
+		}
+		return true
+	})
 }
 
 type subsetWalk struct {
@@ -107,6 +117,10 @@ func (w *subsetWalk) visit(n ast.Node) bool {
 		}
 	case *ast.StructType:
 		w.structType(n)
+	case *ast.MapType:
+		if t := w.typeOf(n.Key); t != nil && boxes(t, 0) {
+			w.refuse(n.Key, "a map of a cell cannot have an interface in its key; use a text, a number or a struct of such")
+		}
 	case *ast.TypeAssertExpr:
 		if n.Type != nil {
 			w.assertion(n, n.X, n.Type)
