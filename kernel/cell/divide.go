@@ -40,6 +40,9 @@ func (c *checking) divisions(r *checked) (bad []problem) {
 			if n.Op == token.QUO && !meant {
 				bad = append(bad, c.division(r, n)...)
 			}
+			if n.Op == token.XOR && isIntLit(n.Y) {
+				c.noteCaret(r, n)
+			}
 		case *ast.AssignStmt:
 			if n.Tok == token.QUO_ASSIGN && (&widening{c: c}).isInt(n.Lhs[0]) {
 				c.noteDivision(r, n.Pos(), n.Lhs[0], n.Rhs[0])
@@ -105,6 +108,38 @@ func (c *checking) noteDivision(r *checked, pos token.Pos, x, y ast.Expr) {
 	left, right := r.src.quote(x.Pos(), x.End()), r.src.quote(y.Pos(), y.End())
 	r.notes = append(r.notes, "note: line "+itoa(line)+": "+left+"/"+right+
 		" divides whole numbers and drops the remainder; for the ratio write float64("+left+")/"+right)
+}
+
+// noteCaret notes that x^2 flips bits: it is valid Go, and seldom what is meant.
+func (c *checking) noteCaret(r *checked, n *ast.BinaryExpr) {
+	off, ok := r.src.offset(n.Pos())
+	if !ok {
+		return
+	}
+	line, _ := r.src.place(off)
+	x, y := nearestFactor(n)
+	r.notes = append(r.notes, "note: line "+itoa(line)+": "+c.quote(n)+" flips the bits of whole numbers; a power is math.Pow("+c.quote(x)+", "+c.quote(y)+")")
+}
+
+// nearestFactor gives what the author of x^y meant as base and exponent: ^ binds like + in Go, so that a*b^2*c is
+// (a*b)^(2*c).
+func nearestFactor(n *ast.BinaryExpr) (base, exponent ast.Expr) {
+	base, exponent = n.X, n.Y
+	for {
+		b, ok := base.(*ast.BinaryExpr)
+		if !ok {
+			break
+		}
+		base = b.Y
+	}
+	for {
+		b, ok := exponent.(*ast.BinaryExpr)
+		if !ok {
+			break
+		}
+		exponent = b.X
+	}
+	return base, exponent
 }
 
 // wholeConst tells whether a constant is a whole number by the way it is written.

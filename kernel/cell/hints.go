@@ -145,8 +145,9 @@ func (c *checking) hint(r *checked, e types.Error, b problem) problem {
 	case notEnough.MatchString(e.Msg), tooMany.MatchString(e.Msg):
 		b.text = c.arguments(e.Msg, e.Pos, b)
 	case caretOperator.MatchString(e.Msg):
-		if x, ok := node.(*ast.BinaryExpr); ok {
-			b.text = "a power is math.Pow(" + c.quote(x.X) + ", " + c.quote(x.Y) + ")"
+		if x := c.caretFrom(e.Pos); x != nil {
+			base, exponent := nearestFactor(x)
+			b.text = "a power is math.Pow(" + c.quote(base) + ", " + c.quote(exponent) + ")"
 		} else {
 			b.text = "a power is math.Pow(x, n); ^ is for the bits of whole numbers"
 		}
@@ -229,6 +230,21 @@ func (c *checking) nodeAt(pos token.Pos) (found ast.Node) {
 			}
 		case *ast.AssignStmt, *ast.RangeStmt, *ast.IncDecStmt:
 			found = n
+		}
+		return true
+	}
+	for _, d := range c.p.decls {
+		ast.Inspect(d, visit)
+	}
+	ast.Inspect(c.p.body, visit)
+	return found
+}
+
+// caretFrom finds the x^y that begins at a position, however long its factors are.
+func (c *checking) caretFrom(pos token.Pos) (found *ast.BinaryExpr) {
+	visit := func(n ast.Node) bool {
+		if x, ok := n.(*ast.BinaryExpr); ok && x.Op == token.XOR && (x.Pos() == pos || x.OpPos == pos) {
+			found = x
 		}
 		return true
 	}

@@ -105,6 +105,19 @@ func (in *inference) refuseSum(op token.Token, ex ast.Expr, x value, ey ast.Expr
 	in.refuseSpan(ex.Pos(), ey.End(), sx+" "+op.String()+" "+sy+" "+text+in.word(first.quantity)+link+in.word(second.quantity)+sumHint(x.dim, y.dim))
 }
 
+// bareTerm refuses a bare literal as a term beside a quantity that is written with a unit: 5*mm + 1. Temperatures are
+// left out, for empirical formulas are written in their numbers, and so is a quantity without a unit of its own.
+func (in *inference) bareTerm(e ast.Expr, v, other value) {
+	bare := isLiteral(e) && v.kind == known && v.dim == Number
+	if !bare || other.kind != known || other.dim == Number || other.dim.Point || in.bare[other.dim] || len(in.units[other.dim]) == 0 {
+		return
+	}
+	if in.text(other.dim) == "K" {
+		return
+	}
+	in.refuse(e, "a term beside "+in.word(other.quantity)+"; "+in.bareHint(e, other.quantity))
+}
+
 // sumHint tells temperatures and their differences apart in a sum.
 func sumHint(x, y Dim) string {
 	if x.Point != y.Point && x.difference() == y.difference() {

@@ -202,6 +202,8 @@ func (in *inference) operate(op token.Token, ex ast.Expr, x value, ey ast.Expr, 
 		if !ok {
 			in.refuseSum(op, ex, x, ey, y)
 		}
+		in.bareTerm(ex, x, y)
+		in.bareTerm(ey, y, x)
 		return v
 	case token.MUL, token.MUL_ASSIGN:
 		if in.isPoint(ey) && (x.plain() || x.kind == zero) {
