@@ -123,8 +123,8 @@ func (l *lowering) openTypes(args *types.TypeList) (declared, given string) {
 		case *types.TypeParam:
 			if !seen[t] {
 				seen[t] = true
-				names = append(names, t.Obj().Name())
-				list = append(list, t.Obj().Name()+" "+l.constraint(t.Constraint()))
+				names = append(names, paramName(t))
+				list = append(list, paramName(t)+" "+l.constraint(t.Constraint()))
 			}
 		case *types.Slice:
 			walk(t.Elem())

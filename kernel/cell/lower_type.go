@@ -26,7 +26,7 @@ func (l *lowering) typ(t types.Type) string {
 	case *types.Named:
 		return l.named(t)
 	case *types.TypeParam:
-		return t.Obj().Name()
+		return paramName(t)
 	case *types.Pointer:
 		return "*" + l.typ(t.Elem())
 	case *types.Slice:
@@ -124,10 +124,13 @@ func (l *lowering) typeDecl(o *types.TypeName, name string) {
 func (l *lowering) typeParams(tp *types.TypeParamList) string {
 	var list []string
 	for i := 0; i < tp.Len(); i++ {
-		list = append(list, tp.At(i).Obj().Name()+" "+l.constraint(tp.At(i).Constraint()))
+		list = append(list, paramName(tp.At(i))+" "+l.constraint(tp.At(i).Constraint()))
 	}
 	return "[" + strings.Join(list, ", ") + "]"
 }
+
+// paramName gives the lowered name of a type parameter, which no type has: the interpreter mixes the two up.
+func paramName(p *types.TypeParam) string { return p.Obj().Name() + "__p" }
 
 func (l *lowering) constraint(t types.Type) string {
 	if i, ok := t.(*types.Interface); ok && i.IsImplicit() && i.NumEmbeddeds() == 1 {
@@ -253,7 +256,7 @@ func (l *lowering) literal(v constant.Value, t types.Type) string {
 		if v.Kind() == constant.Float {
 			text = floatText(v, false)
 		}
-		return p.Obj().Name() + "(" + text + ")"
+		return paramName(p) + "(" + text + ")"
 	}
 	under, ok := t.Underlying().(*types.Basic)
 	if !ok { // a type parameter or an interface
