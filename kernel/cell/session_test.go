@@ -3,7 +3,9 @@ package cell_test
 import (
 	"context"
 	"fmt"
+	"os"
 	"runtime"
+	"runtime/debug"
 	"strings"
 	"testing"
 	"time"
@@ -111,7 +113,7 @@ func TestAgain(t *testing.T) {
 		runtime.ReadMemStats(&m)
 		return m.HeapAlloc
 	}
-	before := heap()
+	before, held := heap(), resident()
 	for range 1000 {
 		n.must(src)
 	}
@@ -123,14 +125,33 @@ func TestAgain(t *testing.T) {
 	for i := range 1000 {
 		n.must(strings.Replace(src, "3.0", fmt.Sprintf("%d.5", i), 1))
 	}
+	t.Logf("resident memory of both: %d bytes more", resident()-held)
 	t.Logf("changed cell: %d bytes a run", (int64(heap())-int64(before))/1000)
 	if grown := int64(heap()) - int64(before); grown > 20<<20 {
 		t.Errorf("heap grew by %d bytes with a cell that changes", grown)
+	}
+	if grown := resident() - held; grown > 30<<20 {
+		t.Errorf("resident memory grew by %d bytes", grown)
 	}
 	if got := n.must("f(2)"); !strings.HasPrefix(got, "4") {
 		t.Error(got)
 	}
 	runtime.KeepAlive(n)
+}
+
+// resident gives the resident memory of the process in bytes after what is free has been given back; 0 where the system
+// does not tell it in /proc.
+func resident() int64 {
+	debug.FreeOSMemory()
+	text, err := os.ReadFile("/proc/self/statm")
+	if err != nil {
+		return 0
+	}
+	var size, pages int64
+	if _, err := fmt.Sscan(string(text), &size, &pages); err != nil {
+		return 0
+	}
+	return pages * int64(os.Getpagesize())
 }
 
 // TestComplete completes members with signatures, names in scope and units, also while a cell runs.
