@@ -73,3 +73,6 @@ func (s *Session) Lower(text string) (ok bool, err error) {
 	}
 	return err == nil, err
 }
+
+// Racing tells whether races are looked for, which takes memory and time.
+const Racing = racing
