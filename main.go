@@ -87,7 +87,7 @@ func vocabulary() *cell.Vocabulary {
 	}
 	for _, u := range append(si.Units[:len(si.Units):len(si.Units)], si.Constants...) {
 		v.Constants = append(v.Constants, cell.Constant(u))
-		v.Units.Constants = append(v.Units.Constants, unit.Constant{Name: u.Name, Dim: u.Dim})
+		v.Units.Constants = append(v.Units.Constants, unit.Constant{Name: u.Name, Dim: u.Dim, Value: u.Value})
 	}
 	return v
 }

@@ -48,6 +48,9 @@ func (in *inference) bareHint(from ast.Expr, want quantity) string {
 	if t := in.info.TypeOf(from); len(units) == 0 || t == nil || !numeric(t) {
 		return s
 	}
+	if base := in.base[want.dim]; base != "" && isLiteral(from) && strings.ContainsAny(in.source(from), "eE") {
+		return s + ": write " + in.times(from, base) + " if it is in SI" // a power of ten is seldom meant in millimetres
+	}
 	s += ": write " + in.times(from, units[0])
 	if more := units[1:min(len(units), maxUnits)]; len(more) > 0 {
 		s += " (or " + strings.Join(more, ", ") + ")"

@@ -43,8 +43,9 @@ type Symbol struct {
 
 // Constant is a unit constant of the vocabulary.
 type Constant struct {
-	Name string // "mm"
-	Dim  string // "m"
+	Name  string // "mm"
+	Dim   string // "m"
+	Value string // in SI, as typed: "1e-3"; may be left out
 }
 
 // table is a Table with its texts read.
@@ -56,6 +57,7 @@ type table struct {
 	aliases   map[string]quantity
 	bare      map[Dim]bool
 	units     map[Dim][]string // the unit constants of a dimension
+	base      map[Dim]string   // the one whose value is 1
 }
 
 // constantOf is a constant's dimension with the text it was listed under.
@@ -74,7 +76,7 @@ type quantity struct {
 func (t *Table) read() (*table, error) {
 	r := &table{
 		Table: t, symbols: map[string]Dim{}, texts: map[Dim]string{}, constants: map[string]constantOf{},
-		aliases: map[string]quantity{}, bare: map[Dim]bool{}, units: map[Dim][]string{},
+		aliases: map[string]quantity{}, bare: map[Dim]bool{}, units: map[Dim][]string{}, base: map[Dim]string{},
 	}
 	if err := r.readSymbols(); err != nil {
 		return nil, err
@@ -98,6 +100,9 @@ func (t *Table) read() (*table, error) {
 		r.constants[c.Name] = constantOf{quantity{d, c.Dim}, c.Name}
 		if d != Number || c.Dim == radian {
 			r.units[d] = append(r.units[d], c.Name)
+			if c.Value == "1" {
+				r.base[d] = c.Name
+			}
 		}
 	}
 	for _, name := range sortedKeys(t.Aliases) {
