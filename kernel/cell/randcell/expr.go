@@ -139,6 +139,16 @@ func (w *writer) inner(more []local, write func() string) string {
 	return s
 }
 
+// shadowed tells whether a later local has the name of local i.
+func (w *writer) shadowed(i int) bool {
+	for _, l := range w.locals[i+1:] {
+		if l.name == w.locals[i].name {
+			return true
+		}
+	}
+	return false
+}
+
 // element reads a slice, which is never empty.
 func (w *writer) element(t *typ) string {
 	s := w.variable(t, false)
@@ -147,8 +157,8 @@ func (w *writer) element(t *typ) string {
 	}
 	w.count("slice element")
 	index := pick(w, []string{"0", "len(" + s + ")-1", "len(" + s + ")/2"})
-	for _, l := range w.locals {
-		if l.fixed && l.typ == intType && w.chance(50) {
+	for i, l := range w.locals {
+		if l.fixed && l.typ == intType && w.chance(50) && !w.shadowed(i) {
 			index = l.name + "%len(" + s + ")"
 		}
 	}
